@@ -1,0 +1,150 @@
+package result
+
+// CheckSchema names the form of an [Answer].
+const CheckSchema = "padproof.check.1"
+
+// An Answer is what padproof says of one unit.
+type Answer struct {
+	Schema  string `json:"schema"`
+	Unit    string `json:"unit"`
+	Pad     string `json:"pad"`
+	Rig     string `json:"rig"`
+	Verdict string `json:"verdict"` // PASS, FAIL or UNPROVEN
+	Reason  string `json:"reason"`
+
+	Checks    []Check   `json:"checks"`
+	Suspects  []Suspect `json:"suspects"`
+	Unseen    []Unseen  `json:"unseen"`
+	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
+	Simulated bool      `json:"simulated"`
+	Found     *Found    `json:"found,omitempty"`
+	Budget    []Term    `json:"budget"`
+	Captures  []Capture `json:"captures"`
+
+	Assumed  []string `json:"assumed"`  // cautious figures taken because the rig sheet leaves them out
+	Notes    []string `json:"notes"`    // what the answer does not cover
+	Warnings []string `json:"warnings"` // odd files and the like: nothing that changed a figure
+
+	BenchEnds   *Ends `json:"bench_ends,omitempty"`
+	ServiceEnds *Ends `json:"service_ends,omitempty"`
+}
+
+// Ends are the impedances and the wiring a pad stands between.
+type Ends struct {
+	SourceOhms Number `json:"source_ohms"`
+	Drive      string `json:"drive"`
+	LoadOhms   Number `json:"load_ohms"`
+	Sense      string `json:"sense"`
+	CablePF    Number `json:"cable_pf"`
+}
+
+// A Check is one figure held against its limits. Verdict is "" where no limit
+// is set. A check with one limit leaves the other null.
+type Check struct {
+	Name        string  `json:"name"`
+	Verdict     string  `json:"verdict"`
+	Unit        string  `json:"unit"`
+	Measured    Number  `json:"measured"`
+	Expected    Number  `json:"expected"`
+	Low         Number  `json:"low"`
+	High        Number  `json:"high"`
+	Uncertainty Number  `json:"uncertainty"`
+	Reason      string  `json:"reason"`
+	Ratio       Number  `json:"tolerance_ratio"` // half-width of the limits over the uncertainty
+	Bench       *Figure `json:"bench,omitempty"`
+	Spread      *Spread `json:"spread,omitempty"`
+}
+
+// A Figure is a reading beside what the drawing gives.
+type Figure struct {
+	Measured    Number `json:"measured"`
+	Expected    Number `json:"expected"`
+	Uncertainty Number `json:"uncertainty"`
+}
+
+// A Spread is what sound units may show, by the tolerances of their parts.
+type Spread struct {
+	WorstLow  Number `json:"worst_low"`
+	WorstHigh Number `json:"worst_high"`
+	Low95     Number `json:"low_95"`
+	High95    Number `json:"high_95"`
+}
+
+// A Tone is the loss at one of several tones, as recorded on the bench.
+type Tone struct {
+	FreqHz      Number `json:"tone_hz"`
+	Measured    Number `json:"measured"`
+	Expected    Number `json:"expected"`
+	Uncertainty Number `json:"uncertainty"`
+}
+
+// A Suspect is a fault that would explain what was measured.
+type Suspect struct {
+	Fault     string            `json:"fault"`
+	Parts     []string          `json:"parts"`
+	Weight    Number            `json:"weight"`
+	Predicted map[string]Number `json:"predicted"`
+	Confirm   Confirm           `json:"confirm"`
+}
+
+// Confirm is the ohmmeter reading that tells a suspect from a sound unit.
+type Confirm struct {
+	Pins      []string `json:"pins"`
+	GoodOhms  Number   `json:"good_ohms"`
+	FaultOhms Number   `json:"fault_ohms"`
+	How       string   `json:"how"`
+}
+
+// Unseen is a part that this bench could not prove sound, and what would.
+type Unseen struct {
+	Part string `json:"part"`
+	Text string `json:"text"`
+}
+
+// Found is what the takes told of the rig itself, with expanded uncertainty.
+type Found struct {
+	SourceOhms    Number `json:"source_ohms"`
+	SourceOhmsU   Number `json:"source_ohms_u"`
+	FullScaleDBu  Number `json:"full_scale_dbu"`
+	FullScaleDBuU Number `json:"full_scale_dbu_u"`
+}
+
+// A Term is one line of an uncertainty budget. DOF is null where infinite.
+type Term struct {
+	Check       string `json:"check"`
+	Source      string `json:"source"`
+	StandardU   Number `json:"standard_uncertainty"`
+	Sensitivity Number `json:"sensitivity"`
+	DOF         Number `json:"dof"`
+}
+
+// A Capture is one take as it was read.
+type Capture struct {
+	Role      string    `json:"role"`
+	File      string    `json:"file"`
+	SHA256    string    `json:"sha256"`
+	RateHz    int       `json:"rate_hz"`
+	Channels  int       `json:"channels"`
+	Channel   int       `json:"channel"`
+	Bits      int       `json:"bits"`
+	Encoding  string    `json:"encoding"`
+	Seconds   Number    `json:"seconds"`
+	ToneHz    Number    `json:"tone_hz"`
+	LevelDBFS Number    `json:"level_dbfs"`
+	ScatterDB Number    `json:"scatter_db"`
+	NoiseDBFS Number    `json:"noise_dbfs"` // 20 Hz to 20 kHz beside the tone and its harmonics
+	SNRDB     Number    `json:"snr_db"`
+	RMSDBFS   Number    `json:"rms_dbfs"` // everything in the steady part
+	PeakDBFS  Number    `json:"peak_dbfs"`
+	FromSec   Number    `json:"steady_from_s"`
+	ToSec     Number    `json:"steady_to_s"`
+	Harmonics []Number  `json:"harmonics_db"` // 2nd to 10th, relative to the tone
+	Problems  []Problem `json:"problems"`
+}
+
+// A Problem is something seen in a take that makes it lie, or might.
+type Problem struct {
+	Problem string `json:"problem"`
+	AtSec   Number `json:"at_s"`
+	Text    string `json:"text"`
+}
