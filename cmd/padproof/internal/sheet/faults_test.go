@@ -143,6 +143,7 @@ func TestPartFaults(t *testing.T) {
 		{"tolerance without its sign", one(`{ ref = "R1", value = "1", tolerance = "1", ` + between + ` }`), 3, `"1" is no tolerance`, `"1%"`},
 		{"tolerance and letter", one(`{ ref = "R1", value = "4R7K", tolerance = "1%", ` + between + ` }`), 3, "differ", "keep one"},
 		{"ref twice", one("{ ref = \"R1\", value = \"1\", " + between + " },\n{ ref = \"R1\", value = \"1\", " + between + " }"), 4, "part R1 is there twice (line 3", ""},
+		{"ref twice but for case", one("{ ref = \"Ra\", value = \"1\", " + between + " },\n{ ref = \"RA\", value = \"1\", " + between + " }"), 4, "part RA is there twice (line 3", ""},
 		{"no place in a custom network", one(`{ ref = "R1", value = "1" }`), 3, "part R1 does not say where it sits", "between ="},
 		{"one node", one(`{ ref = "R1", value = "1", between = ["in.hot"] }`), 3, "is not two nodes", ""},
 		{"nodes of numbers", one(`{ ref = "R1", value = "1", between = [1, 2] }`), 3, "is not two nodes", ""},

@@ -8,7 +8,7 @@ import (
 // place is a part that a network must have.
 type place struct{ ref, where string }
 
-// networks are the networks with their parts (DESIGN: pad.toml), in signal
+// networks are the networks with their parts, in signal
 // order, hot before cold. custom has no parts of its own.
 var networks = []struct {
 	name  string

@@ -46,7 +46,7 @@ func orUsual(word string, unbalanced bool) string {
 	return "balanced"
 }
 
-// The words for drive and sense (DESIGN: rig.toml).
+// The words for drive and sense.
 var (
 	drives = []string{"balanced", "floating", "impedance-balanced", "unbalanced"}
 	senses = []string{"balanced", "floating", "unbalanced"}

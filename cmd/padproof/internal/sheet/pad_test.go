@@ -24,7 +24,7 @@ func sameFigure(t *testing.T, name string, got *float64, want float64) {
 	}
 }
 
-// The drawing that the design gives as its example, every key of it.
+// The example drawing, every key that a sheet can have.
 func TestReadPadExample(t *testing.T) {
 	p, err := ReadPad("testdata/saltmarsh_pad.toml")
 	if err != nil {
@@ -96,7 +96,7 @@ func padOf(network string, refs ...string) string {
 	return b.String() + "]\n"
 }
 
-// Every network of the design reads with its own refs, and without any one of
+// Every network reads with its own refs, and without any one of
 // them the error says which is missing.
 func TestNetworkRefs(t *testing.T) {
 	refs := []string{"R1", "R2", "R3", "R4", "R5"}

@@ -21,7 +21,7 @@ func figure(t *testing.T, name string, got, want float64) {
 	}
 }
 
-// The bench that the design gives as its example states every figure.
+// The example bench states every figure.
 func TestReadRigExample(t *testing.T) {
 	r, err := ReadRig("testdata/saltmarsh_rig.toml")
 	if err != nil {
@@ -75,7 +75,7 @@ func TestReadRigBench(t *testing.T) {
 	}
 }
 
-// The cautious defaults, figure by figure as the design lists them.
+// The cautious defaults, figure by figure.
 func TestRigDefaults(t *testing.T) {
 	check := func(r *Rig, tolFrac float64) {
 		t.Helper()

@@ -2,7 +2,7 @@ package sheet
 
 import "fmt"
 
-// The cautious defaults of a rig (DESIGN: rig.toml). A range from nil to a
+// The cautious defaults of a rig. A range from nil to a
 // largest value is held as its middle and half-width.
 const (
 	usualSourceOhms  = 150.0

@@ -3,7 +3,6 @@ package sheet
 import (
 	"fmt"
 	"maps"
-	"math"
 	"slices"
 	"strconv"
 	"unicode"
@@ -111,8 +110,9 @@ type span struct {
 	mend     string // what to write, where the range alone does not say
 }
 
+// holds tells whether x lies in the span; NaN lies in none.
 func (s span) holds(x float64) bool {
-	return !math.IsNaN(x) && x <= s.to && (x > s.from || (x == s.from && !s.open))
+	return x <= s.to && (x > s.from || (x == s.from && !s.open))
 }
 
 func (s span) String() string {

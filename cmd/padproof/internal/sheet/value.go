@@ -60,7 +60,7 @@ func ParseOhms(text string) (Amount, error) {
 		return Amount{}, &Error{Text: quoted(text) + " is unclear: a small m is milli to some and mega to others",
 			Hint: "write a large M for megohms (4M7), or milliohms with the unit (4.7 mΩ)"}
 	}
-	if m := ohmCode.FindStringSubmatch(bare); m != nil && m[1]+m[3] != "" {
+	if m := ohmCode.FindStringSubmatch(bare); m != nil {
 		return amount(text, m[1]+"."+m[3], m[2], m[4], Resistor)
 	}
 	if m := ohmDecimal.FindStringSubmatch(bare); m != nil {

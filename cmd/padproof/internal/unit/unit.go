@@ -1,0 +1,195 @@
+package unit
+
+import (
+	"path/filepath"
+
+	"padproof/cmd/padproof/internal/nearest"
+)
+
+// Unit is one pad under test and its files.
+type Unit struct {
+	Serial    string            // the folder's name, or what stands before the role; "" if not known
+	Folder    string            // where it lies, as it was given; "" for files named one by one
+	PadFile   string            // "" if there is none
+	RigFile   string            // "" if there is none
+	Files     map[string]string // the path of each take by its role
+	Inherited map[string]bool   // the paths, of PadFile, RigFile and Files, that serve other units too
+	Warnings  []string          // one sentence each, for the reader of the answer
+
+	prefix  string            // before the role in the unit's names: "0417." in a flat lot
+	fault   *Error            // two files for one role
+	looked  []string          // the folders looked into
+	instead map[string]string // by role: what is there in a missing take's place, and what to do
+}
+
+// Open finds the files of the unit whose folder is given. Its serial is the
+// folder's name (of "." the name of the folder that it is). It is an error, an
+// [*Error], if the folder cannot be read, if two files have one role, or if there
+// is neither a before and an after nor a both.
+func Open(folder string) (*Unit, error) {
+	if folder == "" {
+		return nil, &Error{Text: "no folder is named", Hint: "name the unit's folder"}
+	}
+	folder = filepath.Clean(folder)
+	own, err := look(folder)
+	if err != nil {
+		return nil, err
+	}
+	u := newUnit(serialOf(folder), folder)
+	u.looked = []string{folder}
+	u.takes(own, "", false)
+	u.sheets(own, false)
+	u.warn(own)
+	if above := parent(folder); above != "" {
+		u.inherit(above)
+	}
+	u.Warnings = append(u.Warnings, own.oddSheets(u.lacking())...)
+	if err := u.Ready(); err != nil {
+		return nil, err
+	}
+	return u, nil
+}
+
+func newUnit(serial, folder string) *Unit {
+	return &Unit{Serial: serial, Folder: folder,
+		Files: map[string]string{}, Inherited: map[string]bool{}, instead: map[string]string{}}
+}
+
+// serialOf returns the name of a folder, "" for the root.
+func serialOf(folder string) string {
+	full, err := filepath.Abs(folder)
+	if err != nil {
+		return ""
+	}
+	name := filepath.Base(full)
+	if name == string(filepath.Separator) || name == filepath.VolumeName(full) {
+		return ""
+	}
+	return name
+}
+
+// parent returns the folder above, "" for the root.
+func parent(folder string) string {
+	if full, err := filepath.Abs(folder); err != nil || filepath.Dir(full) == full {
+		return ""
+	}
+	if base := filepath.Base(folder); base == "." || base == ".." {
+		return filepath.Join(folder, "..")
+	}
+	return filepath.Dir(folder)
+}
+
+// takes adds the takes of a shelf that u does not have yet: those with the
+// serial, or only the shared ones if they come from above.
+func (u *Unit) takes(s *shelf, serial string, inherited bool) {
+	for _, role := range Roles() {
+		if u.Files[role] == "" && (!inherited || Shared(role)) {
+			u.add(s, s.named(serial, role), "role", inherited, func(path string) { u.Files[role] = path })
+		}
+	}
+}
+
+// sheets adds the sheets that u does not have yet.
+func (u *Unit) sheets(s *shelf, inherited bool) {
+	if u.PadFile == "" {
+		u.add(s, s.sheets[padSheet], "sheet", inherited, func(path string) { u.PadFile = path })
+	}
+	if u.RigFile == "" {
+		u.add(s, s.sheets[rigSheet], "sheet", inherited, func(path string) { u.RigFile = path })
+	}
+}
+
+// lacking returns the names of the sheets that u does not have.
+func (u *Unit) lacking() []string {
+	var names []string
+	if u.PadFile == "" {
+		names = append(names, padSheet)
+	}
+	if u.RigFile == "" {
+		names = append(names, rigSheet)
+	}
+	return names
+}
+
+// add sets what the only name of names stands for; with several it notes the
+// fault.
+func (u *Unit) add(s *shelf, names []string, what string, inherited bool, set func(path string)) {
+	switch {
+	case len(names) == 0:
+		return
+	case len(names) > 1 && u.fault == nil:
+		u.fault = &Error{File: s.path(names[1]), Text: "and " + names[0] + " are two files for one " + what,
+			Hint: "keep one of them here, move or rename the other"}
+	}
+	path := s.path(names[0])
+	set(path)
+	if inherited {
+		u.Inherited[path] = true
+	}
+}
+
+// inherit adds what the folder above shares. That it cannot be read is no error
+// by itself.
+func (u *Unit) inherit(above string) {
+	s, err := look(above)
+	if err != nil {
+		u.looked = append(u.looked, above+" (which cannot be read)")
+		return
+	}
+	u.looked = append(u.looked, above)
+	u.takes(s, "", true)
+	u.sheets(s, true)
+	u.dropBefore()
+	u.slipsAbove(s)
+}
+
+// dropBefore leaves the shared before out where the unit's own both stands in
+// its place.
+func (u *Unit) dropBefore() {
+	if path := u.Files[Before]; u.Files[Both] != "" && u.Inherited[path] {
+		delete(u.Inherited, path)
+		delete(u.Files, Before)
+	}
+}
+
+// warn notes the WAVs of a unit's own folder whose names are no role.
+func (u *Unit) warn(s *shelf) {
+	for _, t := range s.takes {
+		switch {
+		case t.role == "":
+			u.slip(t.name, "", t.stem())
+		case t.serial != "":
+			u.slip(t.name, "", t.role)
+		}
+	}
+	for role, name := range s.foreign {
+		u.instead[role] = s.path(name) + " is there: save it again as WAV, named " + role + ".wav"
+	}
+}
+
+// slip warns of a take with no role, and remembers what it was likely meant for.
+// The words are as [noRole] wants them.
+func (u *Unit) slip(name, prefix, stem string) {
+	u.Warnings = append(u.Warnings, noRole(name, prefix, stem))
+	if role, ok := nearest.Slip(stem, Roles()); ok {
+		u.instead[role] = name + " is there: if it is the one, rename it to " + prefix + role + ".wav"
+	}
+}
+
+// slipsAbove warns of WAVs of the folder above that were nearly shared. All else
+// there is none of this unit's business.
+func (u *Unit) slipsAbove(s *shelf) {
+	for _, t := range s.takes {
+		if role, ok := nearest.Slip(t.stem(), Roles()); ok && t.role == "" && Shared(role) && u.Files[role] == "" {
+			u.slip(s.path(t.name), "", t.stem())
+		}
+	}
+	for _, role := range []string{After, Both} {
+		for _, name := range s.named("", role) {
+			if u.instead[role] == "" {
+				u.instead[role] = s.path(name) + " serves no unit: move it into the folder of the unit that it was made of"
+			}
+		}
+	}
+	u.Warnings = append(u.Warnings, s.oddSheets(u.lacking())...)
+}
