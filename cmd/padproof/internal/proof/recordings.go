@@ -1,0 +1,54 @@
+package proof
+
+import (
+	"fmt"
+
+	"padproof/cmd/padproof/internal/result"
+)
+
+// cautions are those of everyone who connects or plays something.
+var cautions = []string{
+	"Loudspeakers and headphones down or off before the signal plays.",
+	"Phantom power off while plugging, and never phantom into a line output.",
+	"A loudspeaker line or an amplifier's output is not a signal for a pad or an interface.",
+	"Never lift a protective earth to cure hum; mains work is for licensed people under local codes.",
+}
+
+// recordings are the takes to make of a drawing on its rig, in order.
+func recordings(d *Drawing) []result.Recording {
+	load := d.Sheet.Calibration
+	list := []result.Recording{
+		{Role: "before", Needed: true, How: "the tone straight through, no pad, at least 4 s steady, peaks near -6 dBFS, automatic gain off"},
+		{Role: "after", Needed: true, How: "the same tone through the pad, nothing else touched"},
+		{Role: "before-again", How: "straight through once more at the end: a moved knob shows"},
+	}
+	l := d.Limits
+	if l.NoiseOverThermalDB != nil || l.NoiseMaxDBu != nil || l.HumMaxDBu != nil {
+		list = append(list,
+			result.Recording{Role: "rig-noise", How: fmt.Sprintf("60 s with %s at the interface's input, gain up", plug(load.NoisePlugOhms))},
+			result.Recording{Role: "pad-noise", How: fmt.Sprintf("60 s with the pad's output at the input and %s across the pad's input, leg to leg, same gain", plug(load.PadPlugOhms))})
+	}
+	if l.LegMatchDB != nil {
+		list = append(list,
+			result.Recording{Role: "legs", How: fmt.Sprintf("two channels at once, hot to screen and cold to screen, each loaded by %.4g Ω, pad in circuit", d.Sheet.LegsLoadOhms(d.Circuit.Unbalanced()))},
+			result.Recording{Role: "legs-before", How: "the same two channels straight through"})
+	}
+	if l.BypassWithinDB != nil {
+		list = append(list, result.Recording{Role: "bypass", How: "the tone through the unit with its pad switched out"})
+	}
+	if l.SteadyWithinDB != nil {
+		list = append(list, result.Recording{Role: "flex", How: "the tone through the pad while it is flexed and tapped"})
+	}
+	for i := range list {
+		list[i].File = list[i].Role + ".wav"
+	}
+	return list
+}
+
+// plug names what terminates an input.
+func plug(ohms float64) string {
+	if ohms == 0 {
+		return "a shorting plug"
+	}
+	return fmt.Sprintf("a plug of %.4g Ω", ohms)
+}

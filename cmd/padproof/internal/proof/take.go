@@ -1,0 +1,183 @@
+package proof
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"padproof/analysis"
+	"padproof/capture"
+	"padproof/cmd/padproof/internal/result"
+	"padproof/compare"
+)
+
+// A take is one recording of the unit, opened and then measured.
+type take struct {
+	role     string
+	path     string
+	file     *capture.Take
+	facts    capture.Facts
+	channel  int
+	samples  *capture.Channel
+	found    []analysis.Stretch
+	measured *analysis.Measurement
+	sha256   string
+	problems []compare.Problem
+}
+
+func openTake(role, path string) (*take, error) {
+	file, err := capture.Open(path)
+	if err != nil {
+		return nil, err
+	}
+	t := &take{role: role, path: path, file: file, facts: file.Facts()}
+	for _, p := range t.facts.Problems {
+		t.problems = append(t.problems, compare.Problem{Name: p.Problem, AtSec: p.AtSec, Text: p.Text})
+	}
+	return t, nil
+}
+
+func (t *take) problem(name string, atSec float64, format string, args ...any) {
+	t.problems = append(t.problems, compare.Problem{Name: name, AtSec: atSec, Text: fmt.Sprintf(format, args...)})
+}
+
+// use settles the channel that is read.
+func (t *take) use(channel int) {
+	t.channel = channel
+	t.samples = t.file.Channel(channel)
+}
+
+// find looks for the steady tones: any, or those at the given frequencies. What
+// keeps a take from being measured is a problem of the take; only a file that
+// cannot be read is an error.
+func (t *take) find(atHz []float64) error {
+	var err error
+	if atHz == nil {
+		t.found, err = analysis.FindTones(t.samples)
+	} else {
+		t.found, err = analysis.FindTonesAt(t.samples, atHz)
+	}
+	return t.explain(err)
+}
+
+// explain turns what analysis says of a take into a problem.
+func (t *take) explain(err error) error {
+	var other *analysis.OtherToneError
+	switch {
+	case err == nil:
+	case errors.Is(err, analysis.ErrSilent):
+		t.problem(compare.ChannelSilent, math.NaN(), "channel %d holds digital silence; look at the cable, the routing and the channel, and record again", t.channel)
+	case errors.As(err, &other):
+		t.problem(compare.FrequencyDiffers, math.NaN(), "no tone at %s, but one at %.6g Hz, %.1f dBFS; record both takes with one setting of the generator", hertzList(other.WantHz), other.FreqHz, other.LevelDBFS)
+	case errors.Is(err, analysis.ErrTooShort):
+		t.problem(compare.TooShort, math.NaN(), "%v; play the tone for at least 4 s", err)
+	case errors.Is(err, analysis.ErrNoTone):
+		t.problem(compare.NoTone, math.NaN(), "no steady tone was found; look at the pad's connections and the channel, and record again with the tone playing")
+	default:
+		return fmt.Errorf("%s: %w", t.path, err)
+	}
+	return nil
+}
+
+func hertzList(freqs []float64) string {
+	text := ""
+	for i, f := range freqs {
+		if i > 0 {
+			text += ", "
+		}
+		text += fmt.Sprintf("%.6g", f)
+	}
+	return text + " Hz"
+}
+
+// measure reads the whole take once: its tones, its facts, its hash.
+func (t *take) measure() error {
+	m, err := analysis.MeasureTones(t.samples, t.found)
+	if err != nil {
+		t.found = nil
+		if err := t.explain(err); err != nil {
+			return err
+		}
+		if m, err = analysis.MeasureTones(t.samples, nil); err != nil {
+			return fmt.Errorf("%s: %w", t.path, err)
+		}
+	}
+	t.measured = m
+	t.noteSamples()
+	t.sha256, err = t.file.SHA256()
+	return err
+}
+
+// noteSamples names what the samples themselves show.
+func (t *take) noteSamples() {
+	m := t.measured
+	if m.Bad.Count > 0 {
+		t.problem(compare.BadSamples, m.Bad.FirstSec, "%d samples are no numbers (NaN or infinite); export the take again, or record it again", m.Bad.Count)
+	}
+	if c := m.Clipped; c.Runs > 0 && t.touchesTone(c.FirstSec, c.FirstSec) {
+		t.problem(compare.Clipped, c.FirstSec, "%d peaks are cut off at %.1f dBFS; lower the level or the gain by a few dB and record again", c.Runs, c.LevelDBFS)
+	}
+}
+
+// touchesTone reports whether something between two times lies in a steady
+// part, or whether there is none to tell by.
+func (t *take) touchesTone(fromSec, toSec float64) bool {
+	for _, tone := range t.measured.Tones {
+		if fromSec < tone.EndSec && toSec > tone.StartSec {
+			return true
+		}
+	}
+	return len(t.measured.Tones) == 0
+}
+
+// capture is the take in the form of the result.
+func (t *take) capture() result.Capture {
+	c := result.Capture{
+		Role: t.role, File: t.path, SHA256: t.sha256, RateHz: t.facts.RateHz,
+		Channels: t.facts.Channels, Channel: t.channel, Bits: t.facts.Bits, Encoding: t.facts.Encoding,
+		Seconds: result.Number(t.facts.Seconds), ToneHz: result.Missing, LevelDBFS: result.Missing,
+		ScatterDB: result.Missing, NoiseDBFS: result.Missing, SNRDB: result.Missing, RMSDBFS: result.Missing,
+		PeakDBFS: result.Missing, FromSec: result.Missing, ToSec: result.Missing,
+		Harmonics: []result.Number{}, Problems: []result.Problem{},
+	}
+	if t.measured != nil {
+		c.PeakDBFS = result.Number(t.measured.PeakDBFS)
+		if tone, ok := t.mainTone(); ok {
+			c.ToneHz, c.LevelDBFS, c.ScatterDB = result.Number(tone.FreqHz), result.Number(tone.LevelDBFS), result.Number(tone.ScatterDB)
+			c.NoiseDBFS, c.SNRDB, c.RMSDBFS = result.Number(tone.NoiseDBFS), result.Number(tone.SNRDB), result.Number(tone.RMSDBFS)
+			c.FromSec, c.ToSec = result.Number(tone.StartSec), result.Number(tone.EndSec)
+			for _, h := range tone.HarmonicsDB {
+				c.Harmonics = append(c.Harmonics, result.Number(h))
+			}
+		}
+	}
+	for _, p := range t.problems {
+		c.Problems = append(c.Problems, result.Problem{Problem: p.Name, AtSec: result.Number(p.AtSec), Text: p.Text})
+	}
+	return c
+}
+
+// mainTone is the tone that the loss is judged at: of several the one nearest
+// 1 kHz, of several stretches of one frequency the loudest.
+func (t *take) mainTone() (analysis.Tone, bool) {
+	var best analysis.Tone
+	found := false
+	for _, tone := range t.measured.Tones {
+		if !found || nearer(tone, best) {
+			best, found = tone, true
+		}
+	}
+	return best, found
+}
+
+// nearer orders tones for mainTone.
+func nearer(a, b analysis.Tone) bool {
+	if sameFrequency(a.FreqHz, b.FreqHz) {
+		return a.LevelDBFS > b.LevelDBFS
+	}
+	return math.Abs(math.Log(a.FreqHz/1000)) < math.Abs(math.Log(b.FreqHz/1000))
+}
+
+// sameFrequency tells tones of one setting of a generator, as two machines with
+// two clocks may record them, from tones of two settings.
+func sameFrequency(a, b float64) bool { return math.Abs(a/b-1) < 0.01 }

@@ -1,0 +1,136 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"padproof/cmd/padproof/internal/result"
+)
+
+const dash = "-"
+
+// decimals is how many places a figure with expanded uncertainty u deserves:
+// two significant digits of u, three places at most for decibels.
+func decimals(u result.Number) int {
+	if !u.OK() || u <= 0 {
+		return 3
+	}
+	places := 1 - int(math.Floor(math.Log10(float64(u))))
+	return max(0, min(3, places))
+}
+
+// fixed prints a figure with the given places, a dash where there is none.
+func fixed(n result.Number, places int) string {
+	if !n.OK() {
+		return dash
+	}
+	text := strconv.FormatFloat(float64(n), 'f', places, 64)
+	if strings.Trim(text, "-0.") == "" {
+		text = strings.TrimPrefix(text, "-")
+	}
+	return text
+}
+
+// roundedUp prints an uncertainty so that it never looks smaller than it is.
+func roundedUp(u result.Number, places int) string {
+	if !u.OK() {
+		return dash
+	}
+	scale := math.Pow(10, float64(places))
+	return fixed(result.Number(math.Ceil(float64(u)*scale-1e-6)/scale), places)
+}
+
+// limits prints the ends of a limit that are there.
+func limits(c result.Check, places int) string {
+	places = max(places, 2)
+	switch {
+	case c.Low.OK() && c.High.OK():
+		return fixed(c.Low, places) + " to " + fixed(c.High, places)
+	case c.Low.OK():
+		return "from " + fixed(c.Low, places)
+	case c.High.OK():
+		return "up to " + fixed(c.High, places)
+	}
+	return dash
+}
+
+// ohms prints a resistance as the trade writes it: 4.7 Ω, 330 Ω, 10 kΩ.
+func ohms(n result.Number) string {
+	v := float64(n)
+	switch {
+	case math.IsNaN(v) || math.IsInf(v, 0):
+		return "open"
+	case v == 0:
+		return "0 Ω"
+	case v >= 999.5e3:
+		return significant(v/1e6) + " MΩ"
+	case v >= 999.5:
+		return significant(v/1e3) + " kΩ"
+	}
+	return significant(v) + " Ω"
+}
+
+// significant prints three significant digits, more before the point, without
+// trailing zeros.
+func significant(v float64) string {
+	if v == 0 {
+		return "0"
+	}
+	places := max(0, 2-int(math.Floor(math.Log10(math.Abs(v)))))
+	text := strconv.FormatFloat(v, 'f', places, 64)
+	if strings.Contains(text, ".") {
+		text = strings.TrimRight(strings.TrimRight(text, "0"), ".")
+	}
+	return text
+}
+
+// scaled prints a value with the SI prefix that suits it.
+func scaled(n result.Number, unit string) string {
+	if !n.OK() {
+		return dash
+	}
+	v := float64(n)
+	prefixes := []struct {
+		scale float64
+		name  string
+	}{{1e6, "M"}, {1e3, "k"}, {1, ""}, {1e-3, "m"}, {1e-6, "µ"}, {1e-9, "n"}, {1e-12, "p"}}
+	if v == 0 {
+		return "0 " + unit
+	}
+	for _, p := range prefixes {
+		if math.Abs(v) >= p.scale*0.9995 {
+			return significant(v/p.scale) + " " + p.name + unit
+		}
+	}
+	return significant(v/1e-12) + " p" + unit
+}
+
+// value prints a part's value with its unit.
+func value(p result.PartLine) string {
+	switch p.Kind {
+	case "capacitor":
+		return scaled(p.Value, "F")
+	case "inductor":
+		return scaled(p.Value, "H")
+	}
+	return ohms(p.Value)
+}
+
+// hertz prints a frequency with the given places.
+func hertz(n result.Number, places int) string {
+	if !n.OK() {
+		return dash
+	}
+	return fixed(n, places) + " Hz"
+}
+
+// ends names the two impedances of a condition.
+func ends(e result.Ends) string {
+	text := fmt.Sprintf("%s source, %s; %s load, %s", ohms(e.SourceOhms), e.Drive, ohms(e.LoadOhms), e.Sense)
+	if e.CablePF.OK() && e.CablePF > 0 {
+		text += ", " + fixed(e.CablePF, 0) + " pF"
+	}
+	return text
+}

@@ -1,0 +1,145 @@
+package compare
+
+import (
+	"math"
+
+	"padproof/compare/network"
+)
+
+// An over is how a bench deviation carries over to service.
+type over struct {
+	beta   float64 // share that carries over
+	leftDB float64 // standard uncertainty of what that estimate leaves
+}
+
+// carryOver is the best linear estimate of the service deviation from the bench
+// deviation, each part's tolerance being a rectangle: with sb, ss the
+// sensitivities of bench and service loss to a part and s its standard
+// uncertainty, beta = sum(sb ss s^2) / sum((sb s)^2), and what is left has the
+// variance sum((ss s)^2) - beta sum(sb ss s^2). The part at index held is known
+// and left out (-1: none). Where no part has any doubt, or the bench sees none,
+// beta is 1.
+func carryOver(c *network.Circuit, bench, service network.Ends, freqHz float64, held int) over {
+	parts := c.Parts()
+	sb, ss := c.Sensitivities(bench, freqHz), c.Sensitivities(service, freqHz)
+	var bb, bs, ssq float64
+	for i, p := range parts {
+		s := p.TolFrac / math.Sqrt(3)
+		if i == held || s == 0 || math.IsNaN(sb[i]) || math.IsNaN(ss[i]) {
+			continue
+		}
+		bb += sb[i] * sb[i] * s * s
+		bs += sb[i] * ss[i] * s * s
+		ssq += ss[i] * ss[i] * s * s
+	}
+	if bb < 1e-24 {
+		return over{beta: 1, leftDB: math.Sqrt(ssq)}
+	}
+	beta := bs / bb
+	left := ssq - beta*bs
+	if left < 1e-12*ssq {
+		left = 0 // rounding: the two conditions weigh every part alike
+	}
+	return over{beta: beta, leftDB: math.Sqrt(left)}
+}
+
+// othersDB is the 95 % spread of the bench loss by the tolerances of all parts
+// but those held.
+func othersDB(c *network.Circuit, e network.Ends, freqHz float64, held ...int) float64 {
+	s := c.Sensitivities(e, freqHz)
+	var sum float64
+next:
+	for i, p := range c.Parts() {
+		for _, h := range held {
+			if i == h {
+				continue next
+			}
+		}
+		if v := s[i] * p.TolFrac / math.Sqrt(3); !math.IsNaN(v) {
+			sum += v * v
+		}
+	}
+	return 1.96 * math.Sqrt(sum)
+}
+
+// A moved part is one that, moved alone, explains a bench loss, with the
+// service losses that go with it.
+type moved struct {
+	index                       int
+	lowValue, highValue         float64 // hull of the values that fit, 0 to +Inf
+	serviceLowDB, serviceHighDB float64
+	leftDB                      float64 // what the other parts leave open, a standard uncertainty
+}
+
+// movedParts moves each part alone from 0 to infinity and keeps the values at
+// which the bench loss lies within widthDB of benchDB.
+func movedParts(k LossCase, benchDB, widthDB float64) []moved {
+	var all []moved
+	for i := range k.Circuit.Parts() {
+		if m, ok := movePart(k, i, benchDB, widthDB); ok {
+			all = append(all, m)
+		}
+	}
+	return all
+}
+
+func movePart(k LossCase, index int, benchDB, widthDB float64) (moved, bool) {
+	p := k.Circuit.Parts()[index]
+	fits := k.Circuit.ValuesForLoss(k.Rig.Ends, k.Reading.FreqHz, p.Ref, benchDB-widthDB, benchDB+widthDB)
+	if len(fits) == 0 {
+		return moved{}, false
+	}
+	m := moved{
+		index: index, lowValue: fits[0].Low, highValue: fits[len(fits)-1].High,
+		serviceLowDB: math.Inf(1), serviceHighDB: math.Inf(-1),
+	}
+	for _, fit := range fits {
+		for _, value := range valuesWithin(fit.Low, fit.High, p.Value) {
+			serviceDB, left := k.serviceWith(index, value, benchDB)
+			if math.IsNaN(serviceDB) {
+				continue
+			}
+			m.serviceLowDB = math.Min(m.serviceLowDB, serviceDB)
+			m.serviceHighDB = math.Max(m.serviceHighDB, serviceDB)
+			m.leftDB = math.Max(m.leftDB, left)
+		}
+	}
+	return m, m.serviceLowDB <= m.serviceHighDB
+}
+
+// serviceWith is the service loss where the part at index has the given value
+// and the bench read benchDB; what that value does not explain of the reading
+// is carried over on account of the other parts.
+func (k LossCase) serviceWith(index int, value, benchDB float64) (serviceDB, leftDB float64) {
+	c := k.Circuit.With(k.Circuit.Parts()[index].Ref, value)
+	bench, service := c.LossDB(k.Rig.Ends, k.Reading.FreqHz), c.LossDB(k.Service, k.Reading.FreqHz)
+	if math.IsInf(bench, 0) || math.IsInf(service, 0) {
+		return service, 0
+	}
+	over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, index)
+	return service + over.beta*(benchDB-bench), over.leftDB
+}
+
+// valuesWithin samples an interval of values evenly on a logarithmic scale, its
+// ends among them; 0 and +Inf are reached by way of a thousandth and a thousand
+// times the nominal value.
+func valuesWithin(low, high, nominal float64) []float64 {
+	const points = 9
+	values := []float64{low}
+	from, to := low, high
+	if nominal <= 0 || math.IsInf(nominal, 0) {
+		nominal = 1
+	}
+	if from <= 0 {
+		from = math.Min(nominal/1000, to)
+	}
+	if math.IsInf(to, 0) {
+		to = math.Max(nominal*1000, from)
+	}
+	if from > 0 && to > from {
+		for i := 0; i <= points; i++ {
+			values = append(values, from*math.Pow(to/from, float64(i)/points))
+		}
+	}
+	return append(values, high)
+}

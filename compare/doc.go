@@ -1,0 +1,34 @@
+// Package compare holds what was measured against what the drawing gives, and
+// says what that proves.
+//
+// The usual order of calls:
+//
+//  1. [ReadLoss] makes the bench loss, with its own uncertainty terms, of the
+//     tone as two takes measured it.
+//  2. [JudgeLoss] carries it over to the service condition through the model of
+//     package network, with the whole uncertainty budget, and lists the parts
+//     that this bench could not have seen.
+//  3. [Decide] holds a figure and its expanded uncertainty against a [Limit].
+//  4. [PairProblems] names what is wrong between two takes, and [Voids] says
+//     which checks a problem takes the ground from.
+//
+// # Units and signs
+//
+// A loss is in decibels, positive where the output is lower: 20 lg of the load
+// voltage without the pad over that with it, same source and load (insertion
+// loss). Impedances are in ohms, capacitance in farads, tolerances are
+// half-widths as a fraction. U is the expanded uncertainty at 95 % (JCGM 100).
+//
+// # Sources
+//
+// The budget follows JCGM 100:2008, its intervals JCGM 101:2008 where one
+// rectangle dominates (package uncertainty). The decision follows JCGM 106:2012
+// and ILAC-G8:09/2019. Carrying a bench reading over to the service condition
+// is a linear least-squares estimate (the best linear prediction of the service
+// loss from the bench loss, given the tolerances of the parts); no published
+// procedure for pads was found.
+//
+// # Limits
+//
+// Nothing here reads files or sheets, or prints.
+package compare

@@ -1,0 +1,155 @@
+package compare
+
+import (
+	"math"
+
+	"padproof/compare/network"
+	"padproof/compare/uncertainty"
+)
+
+// A Rig is the bench as the model knows it, with its doubts. Tolerances are
+// half-widths of a rectangle (JCGM 100, 4.3.7).
+type Rig struct {
+	Ends           network.Ends
+	SourceTolFrac  float64 // of SourceOhms
+	LoadTolFrac    float64 // of LoadOhms
+	CableTolFarads float64 // of CableFarads
+}
+
+// A LossReading is the insertion loss that two takes gave on the bench, with
+// the uncertainty terms of the reading alone: the rig's impedances come in
+// through the model.
+type LossReading struct {
+	LossDB float64
+	FreqHz float64
+	Terms  []uncertainty.Term // in dB, sensitivity 1
+}
+
+// A LossCase is all that a loss is judged by.
+type LossCase struct {
+	Circuit *network.Circuit
+	Rig     Rig
+	Service network.Ends
+	Reading LossReading
+}
+
+// A Loss is the bench reading carried over to service.
+type Loss struct {
+	BenchDB         float64 // as recorded
+	BenchExpectedDB float64 // what the drawing gives on this rig
+	BenchUDB        float64 // expanded, of the difference of the two
+
+	ServiceDB         float64 // carried over; NaN where no part alone explains the reading
+	ServiceExpectedDB float64 // what the drawing gives in service
+	UDB               float64 // expanded, of ServiceDB
+
+	Beta    float64            // share of a bench deviation that carries over
+	Budget  uncertainty.Budget // of ServiceDB
+	Outside bool               // the bench deviation is more than the tolerances and U allow
+}
+
+const coverage = 0.95
+
+// JudgeLoss carries the reading over to service. Where the bench deviation lies
+// within the worst case of the tolerances plus U, the service loss is
+//
+//	modelled service loss + beta (bench loss - modelled bench loss)
+//
+// and otherwise the middle of the range of service losses that any single part,
+// moved alone until it explains the bench loss within U, would give. Where no
+// part alone explains it, ServiceDB and UDB are NaN: the reading then proves
+// nothing about service. A reading of NaN gives NaN throughout.
+func JudgeLoss(k LossCase) (Loss, error) {
+	c, f := k.Circuit, k.Reading.FreqHz
+	l := Loss{
+		BenchDB:           k.Reading.LossDB,
+		BenchExpectedDB:   c.LossDB(k.Rig.Ends, f),
+		ServiceExpectedDB: c.LossDB(k.Service, f),
+	}
+	bench := uncertainty.Budget{Terms: append(append([]uncertainty.Term(nil), k.Reading.Terms...), rigTerms(k, 1)...)}
+	var err error
+	if l.BenchUDB, err = bench.ExpandedU(coverage); err != nil {
+		return Loss{}, err
+	}
+
+	over := carryOver(c, k.Rig.Ends, k.Service, f, -1)
+	l.Beta = over.beta
+	low, high := c.WorstCase(k.Rig.Ends, f)
+	l.Outside = l.BenchDB < low-l.BenchUDB || l.BenchDB > high+l.BenchUDB
+	if l.Outside && k.Rig.Ends != k.Service {
+		return judgeOutside(k, l)
+	}
+	l.ServiceDB = l.ServiceExpectedDB + l.Beta*(l.BenchDB-l.BenchExpectedDB)
+	l.Budget.Terms = serviceTerms(k, l.Beta)
+	if over.leftDB > 0 {
+		l.Budget.Terms = append(l.Budget.Terms, uncertainty.FromNormal("carry-over", over.leftDB, 1))
+	}
+	l.UDB, err = l.Budget.ExpandedU(coverage)
+	return l, err
+}
+
+// judgeOutside is the answer where more is wrong than tolerances allow: each
+// part alone is moved through the full model. What the takes and the rig leave
+// open is inside that range already, so those terms count with sensitivity 0.
+// The truth is likely at one of the range's ends, where one part or another is
+// the culprit, so U holds the whole range and not 95 % of it.
+func judgeOutside(k LossCase, l Loss) (Loss, error) {
+	low, high, leftDB := math.Inf(1), math.Inf(-1), 0.0
+	for _, m := range movedParts(k, l.BenchDB, l.BenchUDB) {
+		low, high = math.Min(low, m.serviceLowDB), math.Max(high, m.serviceHighDB)
+		leftDB = math.Max(leftDB, m.leftDB)
+	}
+	l.ServiceDB, l.UDB = math.NaN(), math.NaN()
+	if low > high || math.IsInf(low, 0) || math.IsInf(high, 0) {
+		return l, nil
+	}
+	l.ServiceDB = (low + high) / 2
+	l.Beta = 0
+	rest := uncertainty.Budget{Terms: serviceTerms(k, 0)}
+	if leftDB > 0 {
+		rest.Terms = append(rest.Terms, uncertainty.FromNormal("other parts", leftDB, 1))
+	}
+	restUDB, err := rest.ExpandedU(coverage)
+	l.UDB = (high-low)/2 + restUDB
+	l.Budget.Terms = append(rest.Terms, uncertainty.FromRectangle("carry-over", (high-low)/2, 1))
+	return l, err
+}
+
+// serviceTerms are those of the reading and of the rig, as far as they reach
+// the service loss.
+func serviceTerms(k LossCase, beta float64) []uncertainty.Term {
+	var terms []uncertainty.Term
+	for _, t := range k.Reading.Terms {
+		t.Sensitivity *= beta
+		terms = append(terms, t)
+	}
+	return append(terms, rigTerms(k, beta)...)
+}
+
+// rigTerms are the rig's impedances through the model's own sensitivities,
+// taken over the whole width of each rectangle. The measured loss holds the
+// true impedances and the modelled one the stated, so a larger loss at a larger
+// source lowers the difference: the sign is minus.
+func rigTerms(k LossCase, beta float64) []uncertainty.Term {
+	var terms []uncertainty.Term
+	add := func(source string, half float64, move func(e *network.Ends, by float64)) {
+		if !(half > 0) {
+			return
+		}
+		below, above := k.Rig.Ends, k.Rig.Ends
+		move(&below, -half)
+		move(&above, half)
+		slope := (k.Circuit.LossDB(above, k.Reading.FreqHz) - k.Circuit.LossDB(below, k.Reading.FreqHz)) / (2 * half)
+		if math.IsNaN(slope) || math.IsInf(slope, 0) {
+			slope = 0 // nothing comes through, whatever the rig
+		}
+		terms = append(terms, uncertainty.FromRectangle(source, half, -beta*slope))
+	}
+	e := k.Rig.Ends
+	add("source impedance", k.Rig.SourceTolFrac*e.SourceOhms, func(e *network.Ends, by float64) { e.SourceOhms = math.Max(0, e.SourceOhms+by) })
+	if !math.IsInf(e.LoadOhms, 0) {
+		add("load impedance", k.Rig.LoadTolFrac*e.LoadOhms, func(e *network.Ends, by float64) { e.LoadOhms = math.Max(0, e.LoadOhms+by) })
+	}
+	add("cable capacitance", k.Rig.CableTolFarads, func(e *network.Ends, by float64) { e.CableFarads = math.Max(0, e.CableFarads+by) })
+	return terms
+}

@@ -1,0 +1,73 @@
+package compare
+
+import (
+	"fmt"
+	"math"
+
+	"padproof/analysis"
+)
+
+// A Side is one of two takes, as far as what is wrong between them goes.
+type Side struct {
+	SHA256 string
+	Frames int64
+	Tone   analysis.Tone
+}
+
+// Thresholds of what is wrong between two takes.
+const (
+	mostFreqShift   = 0.01 // of the frequency
+	mostLossShiftDB = 0.01 // of the designed loss between the two frequencies
+	mostWeakUDB     = 0.5  // expanded, of what the takes' own scatter leaves
+	swappedDB       = 0.1  // no pad of parts without power has less loss than this below nothing
+	sameDB, sameRad = 1e-6, 1e-6
+)
+
+// PairProblems names what only both takes together can show; each stands on
+// after, the later of the two. designedDB is the bench loss of the drawing by
+// frequency.
+func PairProblems(before, after Side, reading LossReading, designedDB func(freqHz float64) float64) []Problem {
+	var found []Problem
+	add := func(name, format string, args ...any) {
+		found = append(found, Problem{Name: name, AtSec: math.NaN(), Text: fmt.Sprintf(format, args...)})
+	}
+	b, a := before.Tone, after.Tone
+	weakUDB := scatterU(reading)
+	switch {
+	case sameRecording(before, after):
+		add(SameRecording, "before and after are one and the same recording; record after through the pad")
+	case reading.LossDB < -(weakUDB + swappedDB):
+		add(SwappedTakes, "after is %.2f dB louder than before, which no passive pad does; the takes are swapped, or the gain was raised between them (state it as [calibration] after_gain_db in rig.toml)", -reading.LossDB)
+	}
+	shift := math.Abs(a.FreqHz/b.FreqHz - 1)
+	lossShiftDB := math.Abs(designedDB(a.FreqHz) - designedDB(b.FreqHz))
+	if shift > mostFreqShift || lossShiftDB > mostLossShiftDB {
+		add(FrequencyDiffers, "the tone is %.6g Hz here and %.6g Hz in before; record both with one setting of the generator", a.FreqHz, b.FreqHz)
+	}
+	if weakUDB > mostWeakUDB {
+		add(TooWeak, "the tone scatters so much that U of the loss is %.2g dB; record again with more level or gain, or a longer tone", weakUDB)
+	}
+	return found
+}
+
+// sameRecording tells two files of one recording: the same bytes, or the same
+// level, phase and scatter closer than two recordings ever come.
+func sameRecording(before, after Side) bool {
+	if before.SHA256 == after.SHA256 {
+		return true
+	}
+	b, a := before.Tone, after.Tone
+	return before.Frames == after.Frames && math.Abs(b.LevelDBFS-a.LevelDBFS) < sameDB &&
+		math.Abs(b.ScatterDB-a.ScatterDB) < sameDB && math.Abs(b.PhaseRad-a.PhaseRad) < sameRad
+}
+
+// scatterU is about the expanded uncertainty that the takes' own scatter leaves.
+func scatterU(r LossReading) float64 {
+	var sum float64
+	for _, t := range r.Terms {
+		if !math.IsInf(t.Dof, 1) {
+			sum += t.StandardU * t.StandardU
+		}
+	}
+	return 2 * math.Sqrt(sum)
+}

@@ -1,0 +1,75 @@
+package compare
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"padproof/compare/network"
+)
+
+// Name is the part, or the two parts, as in "R2" or "R1 and R3".
+func (u Unseen) Name() string { return strings.Join(u.Refs, " and ") }
+
+// Text says why the bench hardly sees the part, and what would show it.
+func (u Unseen) Text() string {
+	var b strings.Builder
+	loss := fmt.Sprintf("%s to %s dB", tenths(u.ServiceLowDB), tenths(u.ServiceHighDB))
+	if u.ServiceHighDB-u.ServiceLowDB < 0.05 {
+		loss = tenths(u.ServiceLowDB) + " dB"
+	}
+	if len(u.Refs) == 2 {
+		fmt.Fprintf(&b, "swapped, this bench would read the same within %.2g dB, but the loss in service would be %s.", u.WithinDB, loss)
+	} else {
+		fmt.Fprintf(&b, "anything from %s to %s would read the same here within %.2g dB, but the loss in service would be %s.",
+			partValue(u.Kind, u.LowValue), partValue(u.Kind, u.HighValue), u.WithinDB, loss)
+	}
+	if r := u.Reading; r.PinA != "" {
+		fmt.Fprintf(&b, " To settle it, unplug the unit (signal and phantom off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
+			r.How(), partValue(network.Resistor, r.GoodOhms), partValue(network.Resistor, r.WrongOhms))
+	}
+	if !math.IsInf(u.ServiceLoadOhms, 0) {
+		fmt.Fprintf(&b, " Or record both takes again with a load of %s on the bench.", partValue(network.Resistor, u.ServiceLoadOhms))
+	}
+	return b.String()
+}
+
+// How says which pins to put the meter on, and which to join.
+func (r OhmReading) How() string {
+	text := r.PinA + " to " + r.PinB
+	if r.Joined != [2]string{} {
+		text += ", " + r.Joined[0] + " joined to " + r.Joined[1]
+	}
+	return text
+}
+
+func tenths(db float64) string {
+	if math.IsInf(db, 1) {
+		return "endless"
+	}
+	return strconv.FormatFloat(db, 'f', 1, 64)
+}
+
+// partValue prints a value with three digits and its unit.
+func partValue(kind network.Kind, v float64) string {
+	unit := map[network.Kind]string{network.Capacitor: "F", network.Inductor: "H"}[kind]
+	if unit == "" {
+		unit = "Ω"
+	}
+	if math.IsInf(v, 1) {
+		return map[bool]string{true: "open", false: "without end"}[unit == "Ω"]
+	}
+	if v == 0 {
+		return "0 " + unit
+	}
+	for _, p := range []struct {
+		scale float64
+		name  string
+	}{{1e6, "M"}, {1e3, "k"}, {1, ""}, {1e-3, "m"}, {1e-6, "µ"}, {1e-9, "n"}, {1e-12, "p"}} {
+		if v >= p.scale*0.9995 || p.name == "p" {
+			return strconv.FormatFloat(v/p.scale, 'g', 3, 64) + " " + p.name + unit
+		}
+	}
+	return ""
+}
