@@ -1,0 +1,44 @@
+package network
+
+import (
+	"math"
+	"slices"
+)
+
+// Ohms returns what an ohmmeter reads between two nodes of the unit alone, everything
+// else open: direct current, so capacitors are open and inductors links. The joined
+// pairs are shorted together first, the other end for example:
+//
+//	c.Ohms("in.hot", "in.cold", [2]string{"out.hot", "out.cold"})
+//
+// It is 0 between nodes that are one and +Inf where no current can flow. A name that is
+// no node of the drawing touches nothing. In an unbalanced network in.cold, out.cold
+// and screen are one node.
+func (c *Circuit) Ohms(pinA, pinB string, joined ...[2]string) float64 {
+	a, okA := c.node(pinA)
+	b, okB := c.node(pinB)
+	if !okA || !okB {
+		return math.Inf(1)
+	}
+	s := begin(len(c.nodes))
+	defer s.end()
+	s.pad(c, c.values, 0)
+	if c.unbalanced {
+		s.wire(inCold, screen)
+		s.wire(outCold, screen)
+	}
+	for _, pair := range joined {
+		p, okP := c.node(pair[0])
+		q, okQ := c.node(pair[1])
+		if okP && okQ {
+			s.wire(p, q)
+		}
+	}
+	return real(s.impedance(a, b))
+}
+
+// node returns the number of a node.
+func (c *Circuit) node(name string) (uint8, bool) {
+	i := slices.Index(c.nodes, name)
+	return uint8(max(i, 0)), i >= 0
+}
