@@ -17,8 +17,8 @@ type Spread struct {
 // Spread draws units at random, each part rectangular within its tolerance and
 // independent of the others (the propagation of distributions of JCGM 101), and returns
 // how their losses spread. The same seed gives the same units. Fewer than 2 units count
-// as 2. Where some units let nothing through, the mean and what lies above are +Inf,
-// and SDDB too; where all do, SDDB is 0.
+// as 2. Where some units let nothing through, MeanDB, SDDB and MostDB are +Inf, and a
+// quantile may be; where all do, SDDB is 0.
 func (c *Circuit) Spread(e Ends, freqHz float64, units int, seed uint64) Spread {
 	e = e.bounded()
 	omega := angular(freqHz)

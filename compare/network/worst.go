@@ -12,8 +12,8 @@ const maxCornerParts = 12
 // WorstCase returns the lowest and the highest loss that parts within their tolerances
 // can give.
 //
-// The loss rises or falls all the way as one part goes from one end of its tolerance to
-// the other, or turns once; both kinds of extreme are known from [Bilinear]. Up to 12
+// As one part goes from one end of its tolerance to the other, the loss rises or falls
+// all the way or turns, twice at most, where [Bilinear] says. Up to 12
 // parts with a tolerance, every corner is tried; beyond, the corner that the signs of
 // the sensitivities point to. From the best corner each part in turn is moved to its
 // extreme until none moves any more. All of it goes through the full model.
