@@ -112,9 +112,18 @@ func TestFileThatShrinksIsNoEOF(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	ch := take.Channel(1)
+	dst := make([]float64, 100)
+	if n, err := ch.ReadAt(dst, 300); n != 100 || err != nil {
+		t.Errorf("ReadAt = %d, %v, want 100", n, err)
+	}
 	s.limit /= 2
-	if n, err := take.Channel(1).ReadAt(make([]float64, 100), 800); n != 0 || !errors.Is(err, io.ErrUnexpectedEOF) {
+	if n, err := ch.ReadAt(dst, 470); n != 0 || !errors.Is(err, io.ErrUnexpectedEOF) {
 		t.Errorf("ReadAt = %d, %v, want 0, ErrUnexpectedEOF", n, err)
+	}
+	// What the failed read left in the buffer must not pass for what was held before.
+	if n, err := ch.ReadAt(dst, 300); n != 100 || err != nil || dst[5] != place(305, 0) {
+		t.Errorf("ReadAt afterwards = %d, %v, sample %v, want 100 and %v", n, err, dst[5], place(305, 0))
 	}
 	if _, err := take.SHA256(); !errors.Is(err, io.ErrUnexpectedEOF) {
 		t.Errorf("SHA256: %v, want ErrUnexpectedEOF", err)

@@ -34,8 +34,8 @@
 //
 // The layouts are those of the RIFF WAVE format, its extensible header, the broadcast extension
 // (EBU Tech 3285) and the 64-bit sizes of EBU Tech 3306 and ITU-R BS.2088-1; testdata/wav_format.csv
-// lists them, with what was checked against a stored copy (tags, sub-format tail, ds64) and what is
-// from memory (the `bext` offsets).
+// lists them. Tags, sub-format tail and ds64 agree with the test vectors of two open WAV readers; the
+// `bext` fields are from memory, and so are the names of foreign codings and files in messages.
 //
 // # Limits
 //

@@ -40,8 +40,8 @@ func (h *fileHash) feed(b []byte, off int64) {
 			return
 		}
 	}
-	f := h.frontier.Load()
-	if off <= f && end > f {
+	// The frontier only moves on, so off is still at or before it.
+	if f := h.frontier.Load(); end > f {
 		h.take(b[f-off:])
 	}
 }

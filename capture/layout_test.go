@@ -1,6 +1,7 @@
 package capture
 
 import (
+	"bytes"
 	"io"
 	"slices"
 	"testing"
@@ -27,6 +28,8 @@ func TestChunksInAnyOrder(t *testing.T) {
 		{"fmt behind data", [][]byte{odd, data, format}, nil},
 		{"pad byte missing", [][]byte{oddNoPad, format, oddNoPad, data}, nil},
 		{"pad byte missing before unusual chunk", [][]byte{oddNoPad, rawChunk("zzzz", 4, []byte("\x01\x02\x03\x04")), format, data}, nil},
+		{"pad byte missing before a chunk whose length is a letter", [][]byte{oddNoPad, extensibleFmt(1, 1, 48000, 16, 16), data}, nil},
+		{"pad byte before unusual chunk", [][]byte{odd, padded("zzzz", []byte("1234")), format, data}, nil},
 		{"pad byte missing in list", [][]byte{infoNoPad, format, data}, []string{"first take", "0417"}},
 		{"pad byte not zero", [][]byte{join(oddNoPad, "\xAA"), format, data}, nil},
 		{"pad byte a letter", [][]byte{join(oddNoPad, "f"), format, data}, nil},
@@ -94,7 +97,7 @@ func TestLengthThatDoesNotHold(t *testing.T) {
 }
 
 // rf64File is a file after EBU Tech 3306: ds64 first, 0xFFFFFFFF in the 32-bit fields.
-func rf64File(id string, dataBytes uint64, data32 int64, table []byte, chunks ...[]byte) []byte {
+func rf64File(id string, dataBytes uint64, table []byte, chunks ...[]byte) []byte {
 	ds64 := padded("ds64", join(u64(1<<40), u64(dataBytes), u64(dataBytes/2), u32(int64(len(table)/12)), table))
 	b := join(id, u32(0xFFFFFFFF), "WAVE", ds64)
 	for _, c := range chunks {
@@ -115,16 +118,17 @@ func TestSizesOf64Bits(t *testing.T) {
 		problem string
 		comment bool
 	}{
-		{"RF64", rf64File("RF64", 8000, 0, nil, format, data, info), "", true},
-		{"BW64", rf64File("BW64", 8000, 0, nil, format, data, info), "", true},
-		{"a long chunk of the table", rf64File("RF64", 8000, 0, join("axml", u64(6)), format, long, data, info), "", true},
-		{"size in the data chunk stands", rf64File("RF64", 77, 0, nil, format, rawChunk("data", 8000, audio), info), "", true},
-		{"not closed, 0", rf64File("RF64", 0, 0, nil, format, data), NotClosed, false},
-		{"not closed, all ones", rf64File("RF64", 1<<64-1, 0, nil, format, data), NotClosed, false},
+		{"RF64", rf64File("RF64", 8000, nil, format, data, info), "", true},
+		{"BW64", rf64File("BW64", 8000, nil, format, data, info), "", true},
+		{"a long chunk of the table", rf64File("RF64", 8000, join("axml", u64(6)), format, long, data, info), "", true},
+		{"size in the data chunk stands", rf64File("RF64", 77, nil, format, rawChunk("data", 8000, audio), info), "", true},
+		{"size 0 in the data chunk", rf64File("RF64", 8000, nil, format, rawChunk("data", 0, audio), info), "", true},
+		{"not closed, 0", rf64File("RF64", 0, nil, format, data), NotClosed, false},
+		{"not closed, all ones", rf64File("RF64", 1<<64-1, nil, format, data), NotClosed, false},
 		{"not closed, no ds64", join("RF64", u32(0xFFFFFFFF), "WAVE", format, data), NotClosed, false},
-		{"cut short", rf64File("RF64", 8002, 0, nil, format, data), CutShort, false},
-		{"cut short over 4 GiB", rf64File("RF64", 5<<30, 0, nil, format, data), CutShort, false},
-		{"RIFF with ds64", rf64File("RIFF", 8000, 0, nil, format, data, info), "", true},
+		{"cut short", rf64File("RF64", 8002, nil, format, data), CutShort, false},
+		{"cut short over 4 GiB", rf64File("RF64", 5<<30, nil, format, data), CutShort, false},
+		{"RIFF with ds64", rf64File("RIFF", 8000, nil, format, data, info), "", true},
 		{"ds64 too short", join("RF64", u32(0xFFFFFFFF), "WAVE", padded("ds64", make([]byte, 16)), format, data), NotClosed, false},
 	} {
 		t.Run(c.name, func(t *testing.T) {
@@ -237,5 +241,17 @@ func TestCommentsAreBoundedAndSafeToPrint(t *testing.T) {
 	}
 	if got := texts(list(padded("ICMT", make([]byte, 300)), padded("ICMT", slices.Repeat([]byte("a"), 50000)))); len(got) != 1 || len(got[0]) != maxCommentBytes {
 		t.Errorf("%d comments kept, want one of %d bytes", len(got), maxCommentBytes)
+	}
+}
+
+func TestCommentsCostLittleReading(t *testing.T) {
+	blank := padded("LIST", join("INFO", padded("ICMT", make([]byte, 60000))))
+	file := riffFile(bytes.Repeat(blank, 100), plainFmt(1, 1, 48000, 16), padded("data", make([]byte, 4)))
+	counter := &countingFile{Reader: bytes.NewReader(file)}
+	if _, err := NewTake("before.wav", counter, int64(len(file))); err != nil {
+		t.Fatal(err)
+	}
+	if counter.bytes > 70000 {
+		t.Errorf("opening read %d bytes of 6 MB of comments, want at most 70000", counter.bytes)
 	}
 }

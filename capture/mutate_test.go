@@ -24,7 +24,7 @@ func soundFiles(t testing.TB) [][]byte {
 		riffFile(bext, plainFmt(1, 1, 8000, 8), block(1, 8, 8, false), info),
 		riffFile(extensibleFmt(1, 2, 48000, 32, 24), block(2, 32, 24, false)),
 		riffFile(padded("JUNK", []byte("abc")), extensibleFmt(3, 3, 192000, 64, 64), block(3, 64, 64, true), bext),
-		rf64File("RF64", 240, 0, join("axml", u64(6)), plainFmt(1, 2, 48000, 24), rawChunk("axml", 0xFFFFFFFF, []byte("abcdef")),
+		rf64File("RF64", 240, join("axml", u64(6)), plainFmt(1, 2, 48000, 24), rawChunk("axml", 0xFFFFFFFF, []byte("abcdef")),
 			rawChunk("data", 0xFFFFFFFF, sampleBlock(t, 40, 2, 24, 24, false)), info),
 		riffFile(plainFmt(1, 1, 48000, 16), rawChunk("data", 0, sampleBlock(t, 40, 1, 16, 16, false))),
 		riffFile(plainFmt(1, 1, 48000, 16), rawChunk("data", 500, sampleBlock(t, 40, 1, 16, 16, false))),

@@ -210,6 +210,17 @@ func TestPlainHeaderIs44Bytes(t *testing.T) {
 	}
 }
 
+func TestCommentStandsBeforeData(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "a.wav")
+	writeTake(t, path, Format{RateHz: 8000, Channels: 1, Bits: 32, Float: true, Comment: "even"}, []float64{0.25})
+	got, err := os.ReadFile(path)
+	want := riffFile(padded("JUNK", make([]byte, 28)), padded("fmt ", join(fmtFields(3, 1, 8000, 4, 32), u16(0))), padded("fact", u32(1)),
+		padded("LIST", join("INFO", padded("ICMT", []byte("even\x00")))), padded("data", []byte("\x00\x00\x80\x3e")))
+	if err != nil || !bytes.Equal(got, want) {
+		t.Errorf("file is %q, %v, want %q", got, err, want)
+	}
+}
+
 // TestOutgrowsRIFF writes past the limit of 32-bit sizes, which is lowered for that.
 func TestOutgrowsRIFF(t *testing.T) {
 	dir := t.TempDir()
