@@ -1,0 +1,191 @@
+package rehearsal
+
+import (
+	"context"
+	"errors"
+	"io/fs"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"padproof/capture"
+)
+
+// A Take is a recording that was made.
+type Take struct {
+	Role    string
+	File    string // its name in the folder
+	Frames  int64
+	Clipped bool // something lay beyond full scale
+}
+
+// Sheets are the files that describe pad and rig; copies of them lie beside the takes.
+type Sheets struct {
+	Pad, Rig string
+}
+
+// names returns the file in a unit's folder for each sheet.
+func (s Sheets) names() [][2]string {
+	return [][2]string{{s.Pad, "pad.toml"}, {s.Rig, "rig.toml"}}
+}
+
+// Record makes the takes of a plan in a folder, which is made if it is not there, and
+// copies the sheets into it. Nothing there is overwritten: a file of one of the names is an
+// error (errors.Is finds [fs.ErrExist]), in whatever case it is written, unless it is that
+// very sheet. After an error, a cancelled context included, nothing is left of what Record
+// made.
+func (p Plan) Record(ctx context.Context, folder string, sheets Sheets) ([]Take, error) {
+	if err := p.Check(); err != nil {
+		return nil, err
+	}
+	f := &unitFolder{path: filepath.Clean(folder), kept: map[string]bool{}}
+	takes, err := p.record(ctx, f, sheets)
+	if err != nil {
+		return nil, errors.Join(err, f.undo())
+	}
+	return takes, nil
+}
+
+func (p Plan) record(ctx context.Context, f *unitFolder, sheets Sheets) ([]Take, error) {
+	roles := p.roles()
+	if err := f.vacant(roles, sheets); err != nil {
+		return nil, err
+	}
+	if err := f.make(f.path); err != nil {
+		return nil, err
+	}
+	for _, s := range sheets.names() {
+		if err := f.copy(s[0], s[1]); err != nil {
+			return nil, err
+		}
+	}
+	var takes []Take
+	for _, r := range roles {
+		t, err := p.take(ctx, f, r)
+		if err != nil {
+			return nil, err
+		}
+		takes = append(takes, t)
+	}
+	return takes, nil
+}
+
+// take records one role.
+func (p Plan) take(ctx context.Context, f *unitFolder, r role) (Take, error) {
+	t := Take{Role: r.name, File: r.name + ".wav"}
+	s, err := p.scene(r)
+	if err != nil {
+		return t, err
+	}
+	path := filepath.Join(f.path, t.File)
+	w, err := capture.Create(path, p.format(r))
+	if err != nil {
+		return t, err
+	}
+	defer w.Abort()
+	err = s.play(func(block []float64) error {
+		for _, x := range block {
+			t.Clipped = t.Clipped || x > 1 || x < -1
+		}
+		t.Frames += int64(len(block))
+		return errors.Join(ctx.Err(), w.Write(block))
+	})
+	if err != nil {
+		return t, err
+	}
+	if err := w.Close(); err != nil {
+		return t, err
+	}
+	f.made = append(f.made, path)
+	return t, nil
+}
+
+// A unitFolder is the place written to, and what was made there.
+type unitFolder struct {
+	path string
+	kept map[string]bool // sheets that lie there already, by name
+	made []string        // files and folders, in the order in which they came to be
+}
+
+// vacant makes sure that none of the names is taken.
+func (f *unitFolder) vacant(roles []role, sheets Sheets) error {
+	there, err := os.ReadDir(f.path)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil
+	}
+	if err != nil {
+		return err
+	}
+	sheetOf := map[string]string{}
+	for _, s := range sheets.names() {
+		sheetOf[s[1]] = s[0]
+	}
+	for _, entry := range there {
+		name, path := strings.ToLower(entry.Name()), filepath.Join(f.path, entry.Name())
+		taken := false
+		for _, r := range roles {
+			taken = taken || name == r.name+".wav"
+		}
+		sheet, isSheet := sheetOf[name]
+		if taken || isSheet && !same(path, sheet) {
+			return &fs.PathError{Op: "create", Path: path, Err: fs.ErrExist}
+		}
+		f.kept[name] = isSheet
+	}
+	return nil
+}
+
+// same tells whether two paths lead to one file.
+func same(a, b string) bool {
+	x, errA := os.Stat(a)
+	y, errB := os.Stat(b)
+	return errA == nil && errB == nil && os.SameFile(x, y)
+}
+
+// make makes a folder and those above it.
+func (f *unitFolder) make(path string) error {
+	err := os.Mkdir(path, 0o777)
+	switch {
+	case err == nil:
+		f.made = append(f.made, path)
+		return nil
+	case errors.Is(err, fs.ErrExist):
+		return nil
+	case errors.Is(err, fs.ErrNotExist) && filepath.Dir(path) != path:
+		if err := f.make(filepath.Dir(path)); err != nil {
+			return err
+		}
+		return f.make(path)
+	}
+	return err
+}
+
+// copy puts a copy of a file there, unless it is there already.
+func (f *unitFolder) copy(from, name string) error {
+	if f.kept[name] {
+		return nil
+	}
+	to := filepath.Join(f.path, name)
+	data, err := os.ReadFile(from)
+	if err != nil {
+		return err
+	}
+	out, err := os.OpenFile(to, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
+	if err != nil {
+		return err
+	}
+	f.made = append(f.made, to)
+	_, err = out.Write(data)
+	return errors.Join(err, out.Close())
+}
+
+// undo takes away what was made, the last first.
+func (f *unitFolder) undo() error {
+	var errs []error
+	for i := len(f.made) - 1; i >= 0; i-- {
+		if err := os.Remove(f.made[i]); !errors.Is(err, fs.ErrNotExist) {
+			errs = append(errs, err)
+		}
+	}
+	return errors.Join(errs...)
+}
