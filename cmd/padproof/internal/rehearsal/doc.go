@@ -17,8 +17,9 @@
 // to load, noise, dither; then it is rounded to the take's format. The level of the signal
 // is that of its tone in before, as a person sets it by the recorder's meter. Before is the
 // voltage across the load straight through, after that with the pad, both by nodal analysis
-// at every frequency, magnitude and phase, relative to before's at the tone. The gain raised
-// for after comes on top. What lies beyond full scale is clipped, as in a recorder.
+// at every frequency, magnitude and phase, relative to the size of before's at the tone. The
+// gain raised for after comes on top. What lies beyond full scale is clipped, as in a
+// recorder.
 //
 // The circuit is a filter whose taps are the inverse transform of its frequency response,
 // applied by overlap-save (common practice). From 10 Hz to 0.45 of the sample rate it keeps

@@ -101,6 +101,21 @@ func TestKernelHoldsResponse(t *testing.T) {
 	}
 }
 
+// A cable of 300 pF settles at once: its kernel needs no more than the least taps.
+func TestKernelOfACableIsShort(t *testing.T) {
+	p := plan(pad(t))
+	p.Bench.Ends.CableFarads = 300e-12
+	for _, r := range p.roles() {
+		s, err := p.scene(r)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if f, ok := s.effects[1].(*filter); !ok || f.taps != leastTaps {
+			t.Errorf("%s: the second effect is %T with %d taps, want a filter with %d", r.name, s.effects[1], f.taps, leastTaps)
+		}
+	}
+}
+
 func TestKernelRefusesWhatRingsOn(t *testing.T) {
 	resonance := func(f float64) complex128 { // 1 kHz, Q = 1e6
 		return 1 / complex(1, 1e6*(f/1000-1000/math.Max(f, 1e-9)))

@@ -51,11 +51,11 @@ func (p Plan) record(ctx context.Context, f *unitFolder, sheets Sheets) ([]Take,
 	if err := f.vacant(roles, sheets); err != nil {
 		return nil, err
 	}
-	if err := f.make(f.path); err != nil {
+	if err := f.makeFolder(f.path); err != nil {
 		return nil, err
 	}
 	for _, s := range sheets.names() {
-		if err := f.copy(s[0], s[1]); err != nil {
+		if err := f.copySheet(s[0], s[1]); err != nil {
 			return nil, err
 		}
 	}
@@ -142,8 +142,8 @@ func same(a, b string) bool {
 	return errA == nil && errB == nil && os.SameFile(x, y)
 }
 
-// make makes a folder and those above it.
-func (f *unitFolder) make(path string) error {
+// makeFolder makes a folder and those above it.
+func (f *unitFolder) makeFolder(path string) error {
 	err := os.Mkdir(path, 0o777)
 	switch {
 	case err == nil:
@@ -152,16 +152,16 @@ func (f *unitFolder) make(path string) error {
 	case errors.Is(err, fs.ErrExist):
 		return nil
 	case errors.Is(err, fs.ErrNotExist) && filepath.Dir(path) != path:
-		if err := f.make(filepath.Dir(path)); err != nil {
+		if err := f.makeFolder(filepath.Dir(path)); err != nil {
 			return err
 		}
-		return f.make(path)
+		return f.makeFolder(path)
 	}
 	return err
 }
 
-// copy puts a copy of a file there, unless it is there already.
-func (f *unitFolder) copy(from, name string) error {
+// copySheet puts a copy of a sheet there, unless it is there already.
+func (f *unitFolder) copySheet(from, name string) error {
 	if f.kept[name] {
 		return nil
 	}

@@ -97,12 +97,13 @@ func (p Plan) roles() []role {
 // scene sets up one take.
 func (p Plan) scene(r role) (scene, error) {
 	straight, _ := p.Pad.LoadVolts(p.Bench.Ends, p.Signal.FreqHz())
-	if !(cmplx.Abs(straight) > 0) {
+	full := cmplx.Abs(straight) // its size alone: at 0 Hz the response must stay real
+	if !(full > 0) {
 		return scene{}, errors.New("nothing comes through this bench even without the pad")
 	}
 	rate := float64(p.RateHz)
 	taps, err := kernel(rate, func(freqHz float64) complex128 {
-		return r.volts(p.Pad.LoadVolts(p.Bench.Ends, freqHz)) / straight
+		return r.volts(p.Pad.LoadVolts(p.Bench.Ends, freqHz)) / complex(full, 0)
 	})
 	if err != nil {
 		return scene{}, err

@@ -1,0 +1,100 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"math"
+	"strconv"
+	"strings"
+
+	"padproof/cmd/padproof/internal/proof"
+	"padproof/cmd/padproof/internal/rehearsal"
+	"padproof/cmd/padproof/internal/result"
+	"padproof/compare/network"
+)
+
+// rehearsed says what was made and what is true of it.
+func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p rehearsal.Plan, takes []rehearsal.Take) *result.Rehearsal {
+	toneHz := p.Signal.FreqHz()
+	losses := func(c *network.Circuit, bench network.Ends) result.Losses {
+		return result.Losses{BenchDB: result.Number(c.LossDB(bench, toneHz)), ServiceDB: result.Number(c.LossDB(d.Service, toneHz))}
+	}
+	const picofarad = 1e-12
+	r := &result.Rehearsal{
+		Schema: result.RehearseSchema, Pad: d.Name, Rig: d.Sheet.Name, Simulated: true,
+		Folder: f.out, Sheets: []string{"pad.toml", "rig.toml"},
+		Signal: f.signal, ToneHz: result.Number(toneHz), LevelDBFS: result.Number(p.LevelDBFS), NoiseDBFS: result.Number(p.NoiseDBFS),
+		Faults: []string{}, Varied: f.vary, Seed: p.Seed, Warnings: []string{},
+		Drawing: losses(d.Circuit, d.Rig.Ends),
+		Truth: result.Truth{
+			Losses: losses(p.Pad, p.Bench.Ends), RecordedDB: result.Number(p.RecordedLossDB()),
+			SourceOhms: result.Number(p.Bench.Ends.SourceOhms), LoadOhms: result.Number(p.Bench.Ends.LoadOhms),
+			CablePF: result.Number(p.Bench.Ends.CableFarads / picofarad), GainOffsetDB: result.Number(p.Bench.OffsetDB),
+		},
+	}
+	for _, fault := range faults {
+		r.Faults = append(r.Faults, fault.String())
+	}
+	for _, part := range p.Pad.Parts() {
+		r.Truth.Parts = append(r.Truth.Parts, result.RehearsedPart{Ref: part.Ref, Kind: part.Kind.String(), Value: result.Number(part.Value)})
+	}
+	encoding := "integer"
+	if p.Float {
+		encoding = "float"
+	}
+	for _, t := range takes {
+		r.Takes = append(r.Takes, result.RehearsedTake{
+			Role: t.Role, File: t.File, RateHz: p.RateHz, Bits: p.Bits, Encoding: encoding,
+			Seconds: result.Number(float64(t.Frames) / float64(p.RateHz)),
+		})
+		if t.Clipped {
+			r.Warnings = append(r.Warnings, t.File+" lies beyond full scale: a lower --level-dbfs would not clip")
+		}
+	}
+	return r
+}
+
+func rehearsalText(w io.Writer, r *result.Rehearsal) error {
+	var files []string
+	for _, t := range r.Takes {
+		files = append(files, t.File)
+	}
+	unit := "a sound unit"
+	if len(r.Faults) > 0 {
+		unit = "a unit with " + strings.Join(r.Faults, " and ")
+	}
+	if r.Varied {
+		unit += ", drawn from its tolerances"
+	}
+	lines := []string{
+		fmt.Sprintf("Wrote %s to %s, SIMULATED, with %s: %s.", strings.Join(files, " and "), r.Folder, strings.Join(r.Sheets, " and "), unit),
+		fmt.Sprintf("True loss on this bench %s (the drawing's %s), in service %s (the drawing's %s).",
+			lossText(r.Truth.BenchDB), lossText(r.Drawing.BenchDB), lossText(r.Truth.ServiceDB), lossText(r.Drawing.ServiceDB)),
+	}
+	if r.Truth.GainOffsetDB != 0 && r.Truth.RecordedDB.OK() {
+		lines = append(lines, fmt.Sprintf("The gain of after is off by %+.3f dB, so that the takes hold %s.", r.Truth.GainOffsetDB, lossText(r.Truth.RecordedDB)))
+	}
+	for _, warning := range r.Warnings {
+		lines = append(lines, "Warning: "+warning+".")
+	}
+	lines = append(lines, "Next: padproof check "+quoteForShell(r.Folder))
+	_, err := fmt.Fprintln(w, strings.Join(lines, "\n"))
+	return err
+}
+
+// lossText is a loss as read by people.
+func lossText(loss result.Number) string {
+	if !loss.OK() {
+		return "without end, nothing comes through"
+	}
+	const thousandths = 1000
+	return fmt.Sprintf("%.3f dB", math.Round(float64(loss)*thousandths)/thousandths+0) // + 0: never -0
+}
+
+// quoteForShell puts a path into quotes where a shell might cut it up.
+func quoteForShell(path string) string {
+	if strings.ContainsAny(path, " \t\"'`$&|;<>()*?#!") {
+		return strconv.Quote(path)
+	}
+	return path
+}
