@@ -16,16 +16,14 @@ type over struct {
 // deviation, each part's tolerance being a rectangle: with sb, ss the
 // sensitivities of bench and service loss to a part and s its standard
 // uncertainty, beta = sum(sb ss s^2) / sum((sb s)^2), and what is left has the
-// variance sum((ss s)^2) - beta sum(sb ss s^2). The part at index held is known
-// and left out (-1: none). Where no part has any doubt, or the bench sees none,
-// beta is 1.
-func carryOver(c *network.Circuit, bench, service network.Ends, freqHz float64, held int) over {
-	parts := c.Parts()
+// variance sum((ss s)^2) - beta sum(sb ss s^2). doubts are the s of
+// the parts, relative. Where no part has any doubt, or the bench sees none, beta
+// is 1.
+func carryOver(c *network.Circuit, bench, service network.Ends, freqHz float64, doubts []float64) over {
 	sb, ss := c.Sensitivities(bench, freqHz), c.Sensitivities(service, freqHz)
 	var bb, bs, ssq float64
-	for i, p := range parts {
-		s := p.TolFrac / math.Sqrt(3)
-		if i == held || s == 0 || math.IsNaN(sb[i]) || math.IsNaN(ss[i]) {
+	for i, s := range doubts {
+		if s == 0 || math.IsNaN(sb[i]) || math.IsNaN(ss[i]) {
 			continue
 		}
 		bb += sb[i] * sb[i] * s * s
@@ -41,6 +39,22 @@ func carryOver(c *network.Circuit, bench, service network.Ends, freqHz float64, 
 		left = 0 // rounding: the two conditions weigh every part alike
 	}
 	return over{beta: beta, leftDB: math.Sqrt(left)}
+}
+
+// doubtsOf are the standard uncertainties of the parts by their tolerances.
+func doubtsOf(c *network.Circuit) []float64 {
+	var doubts []float64
+	for _, p := range c.Parts() {
+		doubts = append(doubts, p.TolFrac/math.Sqrt(3))
+	}
+	return doubts
+}
+
+// doubtsBut are doubtsOf, but for one part.
+func doubtsBut(c *network.Circuit, index int, doubt float64) []float64 {
+	doubts := doubtsOf(c)
+	doubts[index] = doubt
+	return doubts
 }
 
 // othersDB is the 95 % spread of the bench loss by the tolerances of all parts
@@ -72,18 +86,21 @@ type moved struct {
 }
 
 // movedParts moves each part alone from 0 to infinity and keeps the values at
-// which the bench loss lies within widthDB of benchDB.
+// which the bench loss lies within widthDB of benchDB; the service losses are
+// those of the moved part alone.
 func movedParts(k LossCase, benchDB, widthDB float64) []moved {
 	var all []moved
 	for i := range k.Circuit.Parts() {
-		if m, ok := movePart(k, i, benchDB, widthDB); ok {
+		if m, ok := movePart(k, i, benchDB, widthDB, k.serviceOf); ok {
 			all = append(all, m)
 		}
 	}
 	return all
 }
 
-func movePart(k LossCase, index int, benchDB, widthDB float64) (moved, bool) {
+// movePart moves one part; service says which service loss goes with a value of
+// it and a bench loss.
+func movePart(k LossCase, index int, benchDB, widthDB float64, service func(index int, value, benchDB float64) (serviceDB, leftDB float64)) (moved, bool) {
 	p := k.Circuit.Parts()[index]
 	fits := k.Circuit.ValuesForLoss(k.Rig.Ends, k.Reading.FreqHz, p.Ref, benchDB-widthDB, benchDB+widthDB)
 	if len(fits) == 0 {
@@ -95,7 +112,7 @@ func movePart(k LossCase, index int, benchDB, widthDB float64) (moved, bool) {
 	}
 	for _, fit := range fits {
 		for _, value := range valuesWithin(fit.Low, fit.High, p.Value) {
-			serviceDB, left := k.serviceWith(index, value, benchDB)
+			serviceDB, left := service(index, value, benchDB)
 			if math.IsNaN(serviceDB) {
 				continue
 			}
@@ -116,8 +133,21 @@ func (k LossCase) serviceWith(index int, value, benchDB float64) (serviceDB, lef
 	if math.IsInf(bench, 0) || math.IsInf(service, 0) {
 		return service, 0
 	}
-	over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, index)
+	over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsBut(c, index, 0))
 	return service + over.beta*(benchDB-bench), over.leftDB
+}
+
+// serviceOf is the service loss where the part at index has the given value and
+// nothing else is carried over. What is left is the doubt that the other parts
+// bring in when all that the bench read is laid to the moved one, of which
+// nothing is known beforehand.
+func (k LossCase) serviceOf(index int, value, _ float64) (serviceDB, leftDB float64) {
+	c := k.Circuit.With(k.Circuit.Parts()[index].Ref, value)
+	if service := c.LossDB(k.Service, k.Reading.FreqHz); !math.IsInf(service, 0) {
+		const unknown = 1 // relative: a factor of e
+		return service, carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsBut(c, index, unknown)).leftDB
+	}
+	return math.Inf(1), 0
 }
 
 // valuesWithin samples an interval of values evenly on a logarithmic scale, its

@@ -72,7 +72,7 @@ func JudgeLoss(k LossCase) (Loss, error) {
 		return Loss{}, err
 	}
 
-	over := carryOver(c, k.Rig.Ends, k.Service, f, -1)
+	over := carryOver(c, k.Rig.Ends, k.Service, f, doubtsOf(c))
 	l.Beta = over.beta
 	low, high := c.WorstCase(k.Rig.Ends, f)
 	l.Outside = l.BenchDB < low-l.BenchUDB || l.BenchDB > high+l.BenchUDB

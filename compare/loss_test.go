@@ -177,6 +177,43 @@ func TestReadingOutsideTolerancesGivesARange(t *testing.T) {
 	}
 }
 
+// One part wrong by an unknown amount, the others within tolerance, the rig
+// within its own: the true service loss lies inside U in at least 95 %.
+func TestServiceLossOfWrongPartCovered(t *testing.T) {
+	const units = 2000
+	rng := rand.New(rand.NewPCG(418, 1))
+	pads := map[string]*network.Circuit{"T": matched600(t, "T"), "pi": matched600(t, "pi"), "L": circuit(t, "L", 0.01, 1800, 220)}
+	for name, sound := range pads {
+		inside, outside := 0, 0
+		for range units {
+			rig := Rig{Ends: unbalanced(100, 10000), SourceTolFrac: 0.05, LoadTolFrac: 0.05}
+			actual := rig.Ends
+			actual.SourceOhms *= 1 + rig.SourceTolFrac*(2*rng.Float64()-1)
+			actual.LoadOhms *= 1 + rig.LoadTolFrac*(2*rng.Float64()-1)
+			unit := sound.Sample(rng)
+			wrong := unit.Parts()[rng.IntN(len(unit.Parts()))]
+			unit = unit.With(wrong.Ref, wrong.Value*math.Exp(3*(2*rng.Float64()-1)))
+			reading := read(unit, actual, 0.005)
+			reading.LossDB += 0.005 * rng.NormFloat64()
+			service := unbalanced(200, 2000)
+			l, err := JudgeLoss(LossCase{Circuit: sound, Rig: rig, Service: service, Reading: reading})
+			if err != nil {
+				t.Fatal(err)
+			}
+			if !l.Outside {
+				continue
+			}
+			outside++
+			if math.Abs(l.ServiceDB-unit.LossDB(service, toneHz)) <= l.UDB {
+				inside++
+			}
+		}
+		if share := float64(inside) / float64(outside); share < 0.94 {
+			t.Errorf("%s: true service loss inside U in %.3f of %d, want at least 0.95", name, share, outside)
+		}
+	}
+}
+
 // A reading that no part alone explains proves nothing about service.
 func TestReadingThatNothingExplains(t *testing.T) {
 	sound := matched600(t, "T")

@@ -32,7 +32,7 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 	parts := k.Circuit.Parts()
 	for i, p := range parts {
 		width := benchUDB + othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, i)
-		m, ok := movePart(k, i, benchDB, width)
+		m, ok := movePart(k, i, benchDB, width, k.serviceWith)
 		if !ok || limit.Holds(m.serviceLowDB) && limit.Holds(m.serviceHighDB) {
 			continue
 		}
@@ -75,7 +75,7 @@ func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
 			if math.IsNaN(bench) || math.Abs(bench-benchDB) > width {
 				continue
 			}
-			over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, -1)
+			over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(c))
 			service += over.beta * (benchDB - bench)
 			if limit.Holds(service) {
 				continue

@@ -18,14 +18,6 @@ import (
 	"padproof/cmd/padproof/internal/result"
 )
 
-// cautionsPlaying are for everyone who plays a signal into a bench.
-var cautionsPlaying = []string{
-	"Loudspeakers and headphones down or off before it plays.",
-	"Phantom power off while plugging, and never phantom into a line output.",
-	"A loudspeaker line or an amplifier's output is not a signal for a pad or an interface.",
-	"Never lift a protective earth to cure hum; mains work is for licensed people under local codes.",
-}
-
 func newSignal() *cobra.Command {
 	var rateHz, bits int
 	cmd := &cobra.Command{
@@ -35,8 +27,8 @@ func newSignal() *cobra.Command {
 Play it into the bench and record it straight through (before.wav) and through the pad
 (after.wav). A plain steady tone from any generator serves too.
 
-Before you play it:
-  ` + strings.Join(cautionsPlaying, "\n  "),
+Before you connect or play anything:
+  ` + strings.Join(result.Cautions, "\n  "),
 		Example: "  padproof signal signal.wav --rate 48000 --bits 24",
 		Args: func(cmd *cobra.Command, args []string) error {
 			if len(args) != 1 {
@@ -67,7 +59,7 @@ func runSignal(cmd *cobra.Command, path string, rateHz, bits int) error {
 	}
 	s := result.Signal{
 		Schema: result.SignalSchema, File: path, RateHz: rateHz, Bits: bits,
-		Seconds: result.Number(analysis.SignalSec()), PeakDBFS: analysis.SignalPeakDBFS, Cautions: cautionsPlaying,
+		Seconds: result.Number(analysis.SignalSec()), PeakDBFS: analysis.SignalPeakDBFS, Cautions: result.Cautions,
 	}
 	if wantsJSON(cmd) {
 		return writeJSON(cmd.OutOrStdout(), s)
@@ -104,7 +96,7 @@ Play it into the bench. Record it straight through, no pad, as before.wav; then 
 the pad, nothing else touched, as after.wav. Automatic gain off, the whole signal in each
 take. Put both into a folder with pad.toml and rig.toml, then: padproof check FOLDER
 
-Before you play it:
+Before you connect or play anything:
   %s
 `, s.File, s.Seconds, s.RateHz, s.Bits, s.PeakDBFS, strings.Join(s.Cautions, "\n  "))
 	return err

@@ -101,7 +101,7 @@ func newAnswer(u *unit.Unit, d *Drawing, mark *Mark) answer {
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
-		Assumed: assumed(d.Sheet), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
+		Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
 	}}
 	if d.Service != d.Rig.Ends {

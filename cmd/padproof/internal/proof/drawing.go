@@ -163,11 +163,18 @@ var lossKeys = []string{
 }
 
 // assumed are the cautious figures that the loss rests on, in plain words.
-func assumed(rig *sheet.Rig) []string {
+func (d *Drawing) assumed() []string {
 	texts := []string{}
-	for _, a := range rig.Assumed {
+	for _, a := range d.Sheet.Assumed {
+		text := a.Text
+		switch a.Key {
+		case "output.drive":
+			text = d.Rig.Ends.Drive.String() + " drive"
+		case "input.sense":
+			text = d.Rig.Ends.Sense.String() + " sense"
+		}
 		if slices.Contains(lossKeys, a.Key) {
-			texts = append(texts, a.Text+" ("+a.Key+")")
+			texts = append(texts, text+" ("+a.Key+")")
 		}
 	}
 	return texts

@@ -12,7 +12,7 @@ import (
 	"padproof/compare/uncertainty"
 )
 
-// A Mark is what stands on a pad that has no drawing. Figures left out are NaN.
+// A Mark is what stands on a pad that has no drawing. Figures left out are 0.
 type Mark struct {
 	LossDB      float64
 	WithinDB    float64 // how far off the mark is still good

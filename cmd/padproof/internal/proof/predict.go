@@ -43,9 +43,9 @@ func Predict(d *Drawing, o PredictOptions) (*result.Prediction, error) {
 		Phantom: phantomOf(c, o.PhantomMA),
 		Unseen:  []result.Unseen{}, Budget: []result.Term{},
 		Recordings: recordings(d),
-		Assumed:    assumed(d.Sheet),
+		Assumed:    d.assumed(),
 		Warnings:   warnings(d),
-		Cautions:   cautions,
+		Cautions:   result.Cautions,
 	}
 	return p, d.foretell(p, o.ToneHz)
 }

@@ -6,14 +6,6 @@ import (
 	"padproof/cmd/padproof/internal/result"
 )
 
-// cautions are those of everyone who connects or plays something.
-var cautions = []string{
-	"Loudspeakers and headphones down or off before the signal plays.",
-	"Phantom power off while plugging, and never phantom into a line output.",
-	"A loudspeaker line or an amplifier's output is not a signal for a pad or an interface.",
-	"Never lift a protective earth to cure hum; mains work is for licensed people under local codes.",
-}
-
 // recordings are the takes to make of a drawing on its rig, in order.
 func recordings(d *Drawing) []result.Recording {
 	load := d.Sheet.Calibration

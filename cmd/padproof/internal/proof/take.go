@@ -114,7 +114,7 @@ func (t *take) noteSamples() {
 	if m.Bad.Count > 0 {
 		t.problem(compare.BadSamples, m.Bad.FirstSec, "%d samples are no numbers (NaN or infinite); export the take again, or record it again", m.Bad.Count)
 	}
-	if c := m.Clipped; c.Runs > 0 && t.touchesTone(c.FirstSec, c.FirstSec) {
+	if c := m.Clipped; c.Runs > 0 && t.touchesTone(c.FirstSec, c.LastSec) {
 		t.problem(compare.Clipped, c.FirstSec, "%d peaks are cut off at %.1f dBFS; lower the level or the gain by a few dB and record again", c.Runs, c.LevelDBFS)
 	}
 }

@@ -57,28 +57,35 @@ func limits(c result.Check, places int) string {
 }
 
 // ohms prints a resistance as the trade writes it: 4.7 Ω, 330 Ω, 10 kΩ.
-func ohms(n result.Number) string {
+func ohms(n result.Number) string { return ohmsTo(n, 3) }
+
+// metered prints a resistance as a meter of four digits shows it.
+func metered(n result.Number) string { return ohmsTo(n, 4) }
+
+func ohmsTo(n result.Number, digits int) string {
 	v := float64(n)
+	just := 1 - 0.5*math.Pow(10, -float64(digits)) // rounds up to the next prefix
 	switch {
 	case math.IsNaN(v) || math.IsInf(v, 0):
 		return "open"
-	case v == 0:
-		return "0 Ω"
-	case v >= 999.5e3:
-		return significant(v/1e6) + " MΩ"
-	case v >= 999.5:
-		return significant(v/1e3) + " kΩ"
+	case v >= just*1e6:
+		return toDigits(v/1e6, digits) + " MΩ"
+	case v >= just*1e3:
+		return toDigits(v/1e3, digits) + " kΩ"
 	}
-	return significant(v) + " Ω"
+	return toDigits(v, digits) + " Ω"
 }
 
-// significant prints three significant digits, more before the point, without
-// trailing zeros.
-func significant(v float64) string {
+// significant prints three significant digits.
+func significant(v float64) string { return toDigits(v, 3) }
+
+// toDigits prints so many significant digits, all that stand before the point,
+// and no zeros at the end.
+func toDigits(v float64, digits int) string {
 	if v == 0 {
 		return "0"
 	}
-	places := max(0, 2-int(math.Floor(math.Log10(math.Abs(v)))))
+	places := max(0, digits-1-int(math.Floor(math.Log10(math.Abs(v)))))
 	text := strconv.FormatFloat(v, 'f', places, 64)
 	if strings.Contains(text, ".") {
 		text = strings.TrimRight(strings.TrimRight(text, "0"), ".")

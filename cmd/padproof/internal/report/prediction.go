@@ -99,9 +99,9 @@ func ohmReadings(p *page, r *result.Prediction) {
 		}
 		low, high := dash, dash
 		if o.Ohms.OK() {
-			low, high = ohms(o.Low), ohms(o.High)
+			low, high = metered(o.Low), metered(o.High)
 		}
-		rows = append(rows, []string{strings.Join(o.Pins, " to "), joined, ohms(o.Ohms), low, high})
+		rows = append(rows, []string{strings.Join(o.Pins, " to "), joined, metered(o.Ohms), low, high})
 	}
 	p.table("  ", rows)
 }
