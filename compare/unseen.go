@@ -15,7 +15,7 @@ type Unseen struct {
 	ServiceLowDB, ServiceHighDB float64 // the loss in service that goes with it
 	WithinDB                    float64 // how closely the bench reading would be the same
 	Reading                     OhmReading
-	ServiceLoadOhms             float64 // a bench with this load sees what service sees
+	SourceOhms, LoadOhms        float64 // a bench with these sees what service sees; NaN where the bench's own serves
 }
 
 // FindUnseen lists the parts that the bench cannot have proven: moved alone
@@ -39,8 +39,9 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 		u := Unseen{
 			Refs: []string{p.Ref}, Kind: p.Kind, LowValue: m.lowValue, HighValue: m.highValue,
 			ServiceLowDB: m.serviceLowDB, ServiceHighDB: m.serviceHighDB,
-			WithinDB: width, ServiceLoadOhms: k.Service.LoadOhms,
+			WithinDB: width,
 		}
+		u.SourceOhms, u.LoadOhms = k.betterEnds(i)
 		u.Reading = bestReading(k.Circuit, k.Circuit.With(p.Ref, k.breakingValue(i, m, benchDB, limit)))
 		all = append(all, u)
 	}
@@ -59,6 +60,22 @@ func (k LossCase) breakingValue(index int, m moved, benchDB float64, limit Limit
 		}
 	}
 	return best
+}
+
+// betterEnds are the service's source, load or both: the least change of the
+// bench that shows a part at least half as well as service does. NaN: leave it.
+func (k LossCase) betterEnds(index int) (sourceOhms, loadOhms float64) {
+	sees := func(e network.Ends) float64 { return math.Abs(k.Circuit.Sensitivities(e, k.Reading.FreqHz)[index]) }
+	wanted := sees(k.Service) / 2
+	withLoad, withSource := k.Rig.Ends, k.Rig.Ends
+	withLoad.LoadOhms, withSource.SourceOhms = k.Service.LoadOhms, k.Service.SourceOhms
+	switch {
+	case sees(withLoad) >= wanted:
+		return math.NaN(), k.Service.LoadOhms
+	case sees(withSource) >= wanted:
+		return k.Service.SourceOhms, math.NaN()
+	}
+	return k.Service.SourceOhms, k.Service.LoadOhms
 }
 
 func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
@@ -83,7 +100,8 @@ func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
 			all = append(all, Unseen{
 				Refs: []string{parts[j].Ref, a.Ref}, Kind: a.Kind,
 				ServiceLowDB: service, ServiceHighDB: service, WithinDB: width,
-				Reading: bestReading(k.Circuit, c), ServiceLoadOhms: k.Service.LoadOhms,
+				Reading:    bestReading(k.Circuit, c),
+				SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
 			})
 		}
 	}

@@ -29,10 +29,24 @@ func (u Unseen) Text() string {
 		fmt.Fprintf(&b, " To settle it, unplug the unit (signal and phantom off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
 			r.How(), partValue(network.Resistor, r.GoodOhms), partValue(network.Resistor, r.WrongOhms))
 	}
-	if !math.IsInf(u.ServiceLoadOhms, 0) {
-		fmt.Fprintf(&b, " Or record both takes again with a load of %s on the bench.", partValue(network.Resistor, u.ServiceLoadOhms))
+	if ends := u.ends(); ends != "" {
+		fmt.Fprintf(&b, " Or record both takes again with %s on the bench, and say so in rig.toml.", ends)
 	}
 	return b.String()
+}
+
+// ends names the source and the load that would show the part.
+func (u Unseen) ends() string {
+	source, load := "a source of "+partValue(network.Resistor, u.SourceOhms), "a load of "+partValue(network.Resistor, u.LoadOhms)
+	switch {
+	case math.IsInf(u.LoadOhms, 0):
+		return ""
+	case math.IsNaN(u.SourceOhms):
+		return load
+	case math.IsNaN(u.LoadOhms):
+		return source
+	}
+	return source + " and " + load
 }
 
 // How says which pins to put the meter on, and which to join.

@@ -38,7 +38,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err := a.judge(d, before, after, o.Mark); err != nil {
 		return nil, err
 	}
-	return a.finish(before, after), nil
+	return a.finish(o.Mark, before, after), nil
 }
 
 func openPair(u *unit.Unit) (before, after *take, err error) {
@@ -299,7 +299,7 @@ func side(t *take, tone analysis.Tone) compare.Side {
 }
 
 // finish adds the takes, the notes and the unit's verdict.
-func (a answer) finish(takes ...*take) *result.Answer {
+func (a answer) finish(mark *Mark, takes ...*take) *result.Answer {
 	for _, t := range takes {
 		a.Captures = append(a.Captures, t.capture())
 		for _, comment := range t.facts.Comments {
@@ -313,7 +313,11 @@ func (a answer) finish(takes ...*take) *result.Answer {
 	}
 	verdict, reason := compare.Combine(verdicts...)
 	a.Verdict = string(verdict)
-	if reason != "" {
+	switch {
+	case reason == "":
+	case mark != nil:
+		a.Reason = reason + ": say with --within-db how far off the mark is still good"
+	default:
 		a.Reason = reason + ": set one in pad.toml, [limits] loss_plus_minus_db; the spread of sound units below is a guide"
 	}
 	return a.Answer

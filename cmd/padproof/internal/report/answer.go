@@ -55,7 +55,7 @@ func checks(p *page, a *result.Answer) {
 		if c.Bench != nil {
 			places := decimals(c.Bench.Uncertainty)
 			rows = append(rows, []string{"  on the bench", "", fixed(c.Bench.Measured, places),
-				fixed(c.Bench.Expected, places), "", roundedUp(c.Bench.Uncertainty, places), c.Unit})
+				fixed(c.Bench.Expected, places), "", doubt(c.Bench.Uncertainty, places), c.Unit})
 		}
 	}
 	p.table("", rows)
@@ -88,7 +88,7 @@ func checkRow(c result.Check) []string {
 	if verdict == "" {
 		verdict = "no limit"
 	}
-	return []string{c.Name, verdict, fixed(c.Measured, places), fixed(c.Expected, places), limits(c, places), roundedUp(c.Uncertainty, places), c.Unit}
+	return []string{c.Name, verdict, fixed(c.Measured, places), fixed(c.Expected, places), limits(c, places), doubt(c.Uncertainty, places), c.Unit}
 }
 
 func tones(p *page, a *result.Answer) {
@@ -99,7 +99,7 @@ func tones(p *page, a *result.Answer) {
 	rows := [][]string{{"tone", "measured", "expected", "±U", "unit"}}
 	for _, t := range a.Tones {
 		places := decimals(t.Uncertainty)
-		rows = append(rows, []string{hertz(t.FreqHz, 1), fixed(t.Measured, places), fixed(t.Expected, places), roundedUp(t.Uncertainty, places), "dB"})
+		rows = append(rows, []string{hertz(t.FreqHz, 1), fixed(t.Measured, places), fixed(t.Expected, places), doubt(t.Uncertainty, places), "dB"})
 	}
 	p.table("  ", rows)
 }

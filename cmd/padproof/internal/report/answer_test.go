@@ -8,17 +8,17 @@ import (
 	"padproof/cmd/padproof/internal/result"
 )
 
-// A printed U never looks smaller than it is, and a figure carries two digits
-// of its doubt.
+// A figure carries two digits of its doubt, and a small doubt does not look like
+// none.
 func TestFiguresCarryTheirDoubt(t *testing.T) {
 	tests := []struct {
 		measured, u           result.Number
 		wantFigure, wantDoubt string
 	}{
-		{13.98765, 0.0912, "13.988", "0.092"},
-		{13.98765, 0.912, "13.99", "0.92"},
-		{13.98765, 2.41, "14.0", "2.5"},
-		{13.98765, 0.00049, "13.988", "0.001"},
+		{13.98765, 0.0912, "13.988", "0.091"},
+		{13.98765, 0.912, "13.99", "0.91"},
+		{13.98765, 2.41, "14.0", "2.4"},
+		{13.98765, 0.00049, "13.988", "<0.001"},
 		{-0.0001, 0.12, "0.00", "0.12"},
 		{result.Missing, 0.12, "-", "0.12"},
 		{result.Number(math.Inf(1)), result.Missing, "-", "-"},
@@ -28,8 +28,8 @@ func TestFiguresCarryTheirDoubt(t *testing.T) {
 		if got := fixed(tt.measured, places); got != tt.wantFigure {
 			t.Errorf("fixed(%v) at U %v = %q, want %q", tt.measured, tt.u, got, tt.wantFigure)
 		}
-		if got := roundedUp(tt.u, places); got != tt.wantDoubt {
-			t.Errorf("roundedUp(%v) = %q, want %q", tt.u, got, tt.wantDoubt)
+		if got := doubt(tt.u, places); got != tt.wantDoubt {
+			t.Errorf("doubt(%v) = %q, want %q", tt.u, got, tt.wantDoubt)
 		}
 	}
 }

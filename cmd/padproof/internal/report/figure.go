@@ -33,13 +33,13 @@ func fixed(n result.Number, places int) string {
 	return text
 }
 
-// roundedUp prints an uncertainty so that it never looks smaller than it is.
-func roundedUp(u result.Number, places int) string {
-	if !u.OK() {
-		return dash
+// doubt prints an uncertainty; one that is there never looks like none.
+func doubt(u result.Number, places int) string {
+	text := fixed(u, places)
+	if u > 0 && strings.Trim(text, "0.") == "" {
+		return "<" + strconv.FormatFloat(math.Pow(10, -float64(places)), 'f', places, 64)
 	}
-	scale := math.Pow(10, float64(places))
-	return fixed(result.Number(math.Ceil(float64(u)*scale-1e-6)/scale), places)
+	return text
 }
 
 // limits prints the ends of a limit that are there.
