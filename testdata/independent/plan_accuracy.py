@@ -111,13 +111,16 @@ def one_take(rng, level_dbfs, freq_hz, rate_hz, flavour):
 
 
 def draw_hum(rng, unit, after_dbfs, quiet):
-    """Hum in some: under 60 dB below the tone where after is quiet, up to louder than it where not."""
+    """Hum in some: 70 dB below the tone where after is quiet, up to louder than it where not.
+
+    A tone below 200 Hz stays 15 dB above it.
+    """
     if rng.random() < 0.6:
         return []
     for mains_hz in rng.permutation([50, 60]):
         lines = [mains_hz * rng.uniform(0.9995, 1.0005) * k for k in (1, 2, 3, 5)]
         if min(abs(unit.freq_hz - f) for f in lines) > 8:
             unit.rig.mains_hz = int(mains_hz)
-            top = after_dbfs + (-70 if quiet else rng.uniform(-50, 6))
+            top = after_dbfs + (-70 if quiet else rng.uniform(-50, 6 if unit.freq_hz > 200 else -16))
             return [(f, top - drop) for f, drop in zip(lines, (0, 12, 6, 15))]
     return []

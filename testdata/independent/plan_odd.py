@@ -25,7 +25,7 @@ def plain(rng, unit, flavour=Flavour(24), rate_hz=48000, tone_sec=TONE, snr_db=6
 LIES = {    # what is done, and the word that names it
     "control": "", "swapped": "swapped", "same": "same-recording", "resaved": "same-recording",
     "clipped": "clipped", "clipped a little": "clipped", "clipped after": "clipped",
-    "noise alone": "no-tone", "digital silence": "no-tone", "short": "too-short",
+    "noise alone": "no-tone", "digital silence": "channel-silent", "short": "too-short",
     "cut to half a second": "cut-short", "cut to two seconds": "cut-short",
     "frequency": "frequency-differs", "not a number": "bad-samples", "infinite": "bad-samples",
 }

@@ -125,20 +125,23 @@ COVERAGE = ("repeatability", "source", "gain drift", "linearity")
 
 
 def coverage(count, rng):
-    """Where one source of doubt makes all of U: noise, or one rectangle drawn evenly."""
-    count = count or 600
+    """Where one source of doubt makes all of U: noise, or one rectangle drawn evenly.
+
+    Service is the bench as stated, so that nothing is left to carry over.
+    """
+    ends = Ends(150.0, "balanced", 10000.0, "balanced")
     units = []
-    for i in range(count):
-        # Every other unit is about repeatability, whose coverage is bounded from both sides.
-        label = COVERAGE[0] if i % 2 == 0 else COVERAGE[1 + i // 2 % 3]
-        pad = standard_pad("U", [220.0, 220.0, 110.0], 0.0)
-        rig = Rig(Ends(150.0, "balanced", 10000.0, "balanced"))
+    for i in range(count or 600):
+        # Two of three are about repeatability, whose coverage is bounded from both sides.
+        label = COVERAGE[1 + i // 3 % 3] if i % 3 == 0 else COVERAGE[0]
+        pad = standard_pad("U", [220.0, 220.0, 110.0], 0.01)
+        rig = Rig(ends)
         rig.source_frac = 0.1 if label == "source" else 0.0
         rig.gain_drift_db = 0.05 if label == "gain drift" else 0.0
         rig.linearity_db = 0.03 if label == "linearity" else 0.0
         bench, offset = draw_bench(rng, rig)
-        units.append(Unit(f"{i + 1:04d}", pad, rig, 997.3, None, bench,
-                          Ends(200.0, "balanced", 5000.0, "balanced"), label=label, offset_db=offset))
+        units.append(Unit(f"{i + 1:04d}", pad, rig, 997.3, draw_parts(rng, pad), bench, ends, label=label,
+                          offset_db=offset))
     simulate(units)
     for unit in units:
         snr_db = rng.uniform(15, 35) if unit.label == COVERAGE[0] else 65.0
