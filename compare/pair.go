@@ -16,11 +16,11 @@ type Side struct {
 
 // Thresholds of what is wrong between two takes.
 const (
-	mostFreqShift   = 0.01 // of the frequency
-	mostLossShiftDB = 0.01 // of the designed loss between the two frequencies
-	mostWeakUDB     = 0.5  // expanded, of what the takes' own scatter leaves
-	swappedDB       = 0.1  // no pad of parts without power has less loss than this below nothing
-	sameDB, sameRad = 1e-6, 1e-6
+	mostFreqShift   = 0.01       // of the frequency
+	mostLossShiftDB = 0.01       // of the designed loss between the two frequencies
+	mostWeakUDB     = 0.5        // expanded, of what the takes' own scatter leaves
+	swappedDB       = 0.1        // a passive pad has no gain; so much may come of the rig
+	sameDB, sameRad = 1e-3, 2e-3 // two recordings agree so closely once in a thousand, and only of no loss at all
 )
 
 // PairProblems names what only both takes together can show; each stands on
@@ -50,15 +50,15 @@ func PairProblems(before, after Side, reading LossReading, designedDB func(freqH
 	return found
 }
 
-// sameRecording tells two files of one recording: the same bytes, or the same
-// level, phase and scatter closer than two recordings ever come.
+// sameRecording tells two files of one recording: the same bytes, or, saved in
+// another form, the same length, level, phase and place of the tone.
 func sameRecording(before, after Side) bool {
 	if before.SHA256 == after.SHA256 {
 		return true
 	}
 	b, a := before.Tone, after.Tone
 	return before.Frames == after.Frames && math.Abs(b.LevelDBFS-a.LevelDBFS) < sameDB &&
-		math.Abs(b.ScatterDB-a.ScatterDB) < sameDB && math.Abs(b.PhaseRad-a.PhaseRad) < sameRad
+		b.StartSec == a.StartSec && math.Abs(math.Remainder(b.PhaseRad-a.PhaseRad, 2*math.Pi)) < sameRad
 }
 
 // scatterU is about the expanded uncertainty that the takes' own scatter leaves.

@@ -43,6 +43,8 @@ var voids = map[string][]string{
 	NoTone:           tonal,
 	TooShort:         tonal,
 	TooWeak:          {"loss", "bypass"},
+	NotClosed:        tonal, // what is missing cannot be told: a file saved whole settles it
+	CutShort:         tonal,
 	BadSamples:       tonal,
 }
 
