@@ -229,8 +229,7 @@ func testCoverage(t *testing.T, b *simBench) {
 }
 
 // testLies: recordings that lie never become a PASS and are named for what
-// they are; the same pad recorded honestly is a PASS. A take cut short with
-// enough of the tone left must be named, but may still prove the loss.
+// they are; the same pad recorded honestly is a PASS.
 func testLies(t *testing.T, b *simBench) {
 	for _, o := range b.makeAndCheck(t, "lies") {
 		switch passed := o.answer.Verdict == "PASS"; {
