@@ -112,11 +112,12 @@ var commonOhms = []float64{50, 75, 150, 200, 600}
 func (a answer) withoutMark(check result.Check, d *Drawing, mark *Mark) (result.Check, error) {
 	check.Verdict = string(compare.Unproven)
 	check.Reason = "no drawing says what this pad should read; give a pad.toml, or --marked-loss-db with --marked-ohms or --on-this-bench, and --within-db"
+	lossDB := float64(check.Measured)
+	if mark != nil {
+		lossDB = mark.LossDB
+		check.Reason = "the mark holds for an impedance that was not given; add --marked-ohms, or --on-this-bench if it is what this bench should read"
+	}
 	for _, ohms := range commonOhms {
-		lossDB := float64(check.Measured)
-		if mark != nil {
-			lossDB = mark.LossDB
-		}
 		c, err := matchedPad(d.Sheet, ohms, math.Max(lossDB, 0.1))
 		if err != nil {
 			return check, err
