@@ -37,6 +37,7 @@ type blockFit struct {
 // hopSums are the sums over one hop that everything else is made of.
 type hopSums struct {
 	x, square float64    // Σx, Σx²
+	low, high float64    // least and largest x
 	weighted  float64    // Σwx, w the rising half of the window
 	line      complex128 // Σx exp(-jωn)
 	wLine     complex128 // Σwx exp(-jωn)
@@ -98,13 +99,14 @@ func (f *blockFit) invert() error {
 
 // sums goes once through a hop.
 func (f *blockFit) sums(x []float64) hopSums {
-	var s hopSums
+	s := hopSums{low: math.Inf(1), high: math.Inf(-1)}
 	for k, turn := range f.turns {
 		from := k * phasorPiece
 		to := min(from+phasorPiece, len(x))
 		p := sumPiece(x[from:to], f.rise[from:to], f.piece)
 		s.x += p.x
 		s.square += p.square
+		s.low, s.high = math.Min(s.low, p.low), math.Max(s.high, p.high)
 		s.weighted += p.weighted
 		s.line += p.line * turn
 		s.wLine += p.wLine * turn
@@ -126,7 +128,21 @@ func sumPiece(x, rise []float64, piece []phasor) hopSums {
 		wc += w * p.cos
 		ws += w * p.sin
 	}
-	return hopSums{sx, sxx, swx, complex(c, -s), complex(wc, -ws)}
+	low, high := extremes(x)
+	return hopSums{sx, sxx, low, high, swx, complex(c, -s), complex(wc, -ws)}
+}
+
+func extremes(x []float64) (low, high float64) {
+	low, high = math.Inf(1), math.Inf(-1)
+	for _, v := range x {
+		if v < low {
+			low = v
+		}
+		if v > high {
+			high = v
+		}
+	}
+	return low, high
 }
 
 // join returns the block's weighted sums against 1, cos, sin from those of its two hops.

@@ -13,6 +13,7 @@ type Clipped struct {
 	Runs      int     // cut peaks
 	Samples   int     // samples in them
 	FirstSec  float64 // start of the first; 0 where there is none
+	LastSec   float64 // start of the last; 0 where there is none
 	LevelDBFS float64 // of a sine that would just reach the first cut; 0 at full scale
 }
 
@@ -74,21 +75,9 @@ func (f *flatFinder) note(samples int, atSec, value float64) {
 		f.found.FirstSec = atSec
 		f.found.LevelDBFS = DBFSFromPeak(math.Abs(value))
 	}
+	f.found.LastSec = atSec
 	f.found.Runs++
 	f.found.Samples += samples
-}
-
-func extremes(x []float64) (low, high float64) {
-	low, high = math.Inf(1), math.Inf(-1)
-	for _, v := range x {
-		if v < low {
-			low = v
-		}
-		if v > high {
-			high = v
-		}
-	}
-	return low, high
 }
 
 // stepNeeded returns how wide the steps in which samples are stored would have to be to make the

@@ -25,6 +25,9 @@ const (
 	// A stretch more than this below the strongest is not the tone.
 	keepWithinDB = 20.0
 
+	// A weaker stretch is background if its line is heard, this much lower at most, in the strongest.
+	backgroundDB = 6.0
+
 	edgeSec         = 0.01 // how closely an edge is looked for
 	edgeAllowedSec  = 0.02 // a tone this much too short is still long enough
 	leastPieceSec   = 0.25 // shorter runs are what a click or a syllable leaves of a look
@@ -40,8 +43,9 @@ const (
 // looks some tenths of a second apart, and returns their stretches in order of time: whatever
 // stands before, between and after. Steady means one frequency and one level, within 0.5 dB and
 // what noise adds, for at least a second. The test signal gives two stretches of the same
-// frequency, 10 dB apart. Stretches more than 20 dB below the strongest are left out. Tones of
-// 20 Hz to 0.45 of the rate are found; where hum is all there is, it is found as the tone.
+// frequency, 10 dB apart. Left out is what lies more than 20 dB below the strongest stretch, or
+// is heard during it as well, as hum is. Tones of 20 Hz to 0.45 of the rate are found; where hum is
+// all there is, it is found as the tone.
 //
 // The errors are [ErrSilent], [ErrNoTone], a [TooShortError], or what reading gave.
 func FindTones(s Samples) ([]Stretch, error) {
@@ -61,7 +65,8 @@ func checkLength(s Samples) error {
 	return nil
 }
 
-// FindTonesAt looks for tones of known frequencies, in Hz, within 1 % of each: in a take behind a
+// FindTonesAt looks for tones of known frequencies, in Hz, within 1 % of each (two that are nearer
+// to one another count once): in a take behind a
 // pad, where hum may be the strongest line. Otherwise it is as FindTones; strongest is judged for
 // each frequency by itself. A frequency that is not found is left out while another is found.
 //
@@ -73,9 +78,12 @@ func FindTonesAt(s Samples, freqsHz []float64) ([]Stretch, error) {
 	l := newLookout(s)
 	var all []Stretch
 	why := ErrNoTone
-	for _, freqHz := range freqsHz {
+	for i, freqHz := range freqsHz {
 		if err := (Stretch{FreqHz: freqHz, EndSec: 1}).check(l.rateHz); err != nil {
 			return nil, err
+		}
+		if isNearAny(freqHz, freqsHz[:i]) {
+			continue
 		}
 		l.wantHz = freqHz
 		found, err := l.find()
@@ -95,6 +103,15 @@ func FindTonesAt(s Samples, freqsHz []float64) ([]Stretch, error) {
 		return nil, why
 	}
 	return nil, l.otherTone(freqsHz)
+}
+
+func isNearAny(freqHz float64, freqsHz []float64) bool {
+	for _, other := range freqsHz {
+		if math.Abs(freqHz-other) <= nearFrac*other {
+			return true
+		}
+	}
+	return false
 }
 
 func isAbsence(err error) bool {

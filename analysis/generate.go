@@ -11,10 +11,11 @@ const (
 
 	// Edges are raised cosines. A marker's are long, for a clean correlation peak; the tone's only
 	// keep it from clicking; the sweep's let it start within one period of its lowest frequency.
-	markerEdgeSec   = 0.025
-	toneEdgeSec     = 0.005
-	sweepRiseSec    = 0.1
-	sweepFallSec    = 0.02
+	markerEdgeSec = 0.025
+	toneEdgeSec   = 0.005
+	sweepRiseSec  = 0.1
+	sweepFallSec  = 0.02
+
 	highestToneFrac = 0.48 // of the rate
 )
 

@@ -7,12 +7,12 @@ import "math"
 const FloorDBFS = -400.0
 
 // DBFromRatio returns 20 lg of a ratio of two amplitudes. A ratio that is not above zero, or so
-// small that it would fall below, gives [FloorDBFS].
+// small that it would fall below, gives [FloorDBFS]; one too large for a number, 400.
 func DBFromRatio(ratio float64) float64 {
 	if !(ratio > 1e-20) {
 		return FloorDBFS
 	}
-	return 20 * math.Log10(ratio)
+	return math.Min(20*math.Log10(ratio), -FloorDBFS)
 }
 
 // RatioFromDB returns the amplitude ratio of a level difference: 10^(db/20).

@@ -129,7 +129,7 @@ func (l *lookout) powers(x []float64) {
 		l.means[len(x)] = mean
 	}
 	mean.reset()
-	mean.add(x)
+	mean.add(x[:len(x)/2], x[len(x)/2:])
 	if cap(l.bins) < len(x)/2+1 {
 		l.bins = make([]float64, len(x)/2+1)
 	}

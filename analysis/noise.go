@@ -35,7 +35,7 @@ type lines struct {
 func linesOf(sp *Spectrum, toneHz float64) *lines {
 	l := &lines{sp: sp}
 	for h := 0; h <= lastHarmonic; h++ {
-		if freqHz := float64(h) * toneHz; freqHz <= usableFrac*sp.RateHz {
+		if freqHz := float64(h) * toneHz; h < 2 || freqHz <= usableFrac*sp.RateHz {
 			l.cuts = append(l.cuts, l.cutAt(int(math.Round(freqHz/sp.BinHz))))
 		}
 	}
@@ -44,14 +44,18 @@ func linesOf(sp *Spectrum, toneHz float64) *lines {
 
 // cutAt measures the line about a bin.
 func (l *lines) cutAt(middle int) cut {
-	bins := l.sp.MeanSquare
-	power := sum(bins, max(0, middle-lobeBins), min(len(bins)-1, middle+lobeBins))
+	power := l.lobe(middle)
 	floor := l.usual(middle)
 	c := cut{middle: middle, half: leastCut, meanSquare: math.Max(0, power-floor*(2*lobeBins+1))}
 	for c.half < widestCut && c.meanSquare*leakage(float64(c.half)) > leakPart*floor {
 		c.half++
 	}
 	return c
+}
+
+// lobe adds up the bins that a line about one of them takes up.
+func (l *lines) lobe(middle int) float64 {
+	return sum(l.sp.MeanSquare, max(0, middle-lobeBins), min(len(l.sp.MeanSquare)-1, middle+lobeBins))
 }
 
 // usual returns the noise that is usual in the bins about one, whatever lines stand there.
@@ -136,12 +140,14 @@ func (l *lines) restDBFS() float64 {
 // off; one that does not stand out from it is given as that noise.
 func (l *lines) harmonicsDB() []float64 {
 	tone := l.cuts[1].meanSquare
+	if tone <= 0 {
+		return nil
+	}
 	var out []float64
 	for _, c := range l.cuts[2:] {
 		below, above := l.bridge(c)
 		noise := (below + above) / 2 * (2*lobeBins + 1)
-		power := sum(l.sp.MeanSquare, c.middle-lobeBins, min(len(l.sp.MeanSquare)-1, c.middle+lobeBins))
-		out = append(out, DBFromRatio(math.Sqrt(math.Max(power-noise, noise)/tone)))
+		out = append(out, DBFromRatio(math.Sqrt(math.Max(l.lobe(c.middle)-noise, noise)/tone)))
 	}
 	return out
 }

@@ -23,19 +23,36 @@ func (l *lookout) find() ([]Stretch, error) {
 	if allSilent(looks) {
 		return nil, ErrSilent
 	}
-	runs := runsOf(looks)
-	most, longest := FloorDBFS, Stretch{}
-	for _, r := range runs {
-		most = math.Max(most, r.levelDBFS())
+	found, longest, err := l.stretches(looks)
+	if err != nil {
+		return nil, err
 	}
-	var found []Stretch
-	for _, r := range runs {
-		if r.levelDBFS() < most-keepWithinDB {
+	if found, err = l.refineAll(longEnough(joined(found))); err != nil {
+		return nil, err
+	}
+	switch {
+	case len(found) > 0:
+		return l.withoutBackground(found)
+	case longest.seconds() >= leastMentionSec && longest.seconds() < leastToneSec-edgeAllowedSec:
+		return nil, &TooShortError{FreqHz: longest.FreqHz, Sec: longest.seconds()}
+	}
+	return nil, ErrNoTone
+}
+
+// stretches finds the edges of what may be a second of tone, which two looks at least show, and
+// also returns the longest of all that stands out for some time at least.
+func (l *lookout) stretches(looks []line) (found []Stretch, longest Stretch, err error) {
+	single := toneRun{first: -1}
+	for _, r := range runsOf(looks) {
+		if r.first == r.last {
+			if single.first < 0 || r.meanSquare > single.meanSquare {
+				single = r
+			}
 			continue
 		}
 		g, err := l.stretch(looks, r)
 		if err != nil {
-			return nil, err
+			return nil, longest, err
 		}
 		if g.seconds() > longest.seconds() {
 			longest = g
@@ -44,16 +61,10 @@ func (l *lookout) find() ([]Stretch, error) {
 			found = append(found, g)
 		}
 	}
-	found, err = l.refineAll(longEnough(joined(found)))
-	switch {
-	case err != nil:
-		return nil, err
-	case len(found) > 0:
-		return found, nil
-	case longest.seconds() >= leastMentionSec && longest.seconds() < leastToneSec-edgeAllowedSec:
-		return nil, &TooShortError{FreqHz: longest.FreqHz, Sec: longest.seconds()}
+	if len(found) == 0 && single.first >= 0 {
+		longest, err = l.stretch(looks, single)
 	}
-	return nil, ErrNoTone
+	return found, longest, err
 }
 
 func (g Stretch) seconds() float64 { return g.EndSec - g.StartSec }
@@ -202,57 +213,4 @@ func longEnough(all []Stretch) []Stretch {
 		}
 	}
 	return out
-}
-
-// refineAll measures frequency and level of each stretch on two seconds of it, and drops those in
-// which no phase runs steadily.
-func (l *lookout) refineAll(all []Stretch) ([]Stretch, error) {
-	var out []Stretch
-	for _, g := range all {
-		better, ok, err := l.refine(g)
-		if err != nil {
-			return nil, err
-		}
-		if ok {
-			out = append(out, better)
-		}
-	}
-	return out, nil
-}
-
-// refine tries the middle of a stretch, then its beginning and end.
-func (l *lookout) refine(g Stretch) (Stretch, bool, error) {
-	sec := math.Min(refineSec, g.seconds())
-	for _, where := range []float64{0.5, 0.1, 0.9} {
-		from := g.StartSec + where*(g.seconds()-sec)
-		part := section{l.s, int64(from * l.rateHz), int64(sec * l.rateHz)}
-		p, err := newPass(part, []Stretch{{FreqHz: g.FreqHz, LevelDBFS: g.LevelDBFS, EndSec: sec}})
-		if err != nil {
-			return g, false, err
-		}
-		p.watches[0].noise = nil
-		if err := p.read(part); err != nil {
-			return g, false, err
-		}
-		if run, err := p.steadyRun(0); err == nil {
-			var t Tone
-			run.level(&t, p.track.HopSec)
-			g.FreqHz += run.offHz
-			g.LevelDBFS = t.LevelDBFS
-			return g, true, nil
-		}
-	}
-	return g, false, nil
-}
-
-// A section is a part of a channel.
-type section struct {
-	s             Samples
-	first, frames int64
-}
-
-func (c section) RateHz() float64 { return c.s.RateHz() }
-func (c section) Frames() int64   { return c.frames }
-func (c section) ReadAt(dst []float64, frame int64) (int, error) {
-	return c.s.ReadAt(dst, c.first+frame)
 }

@@ -29,10 +29,10 @@ const (
 type segmenter struct {
 	n, hop     int
 	rateHz     float64
-	peak       float64 // of the tone
-	start, end int64   // frames of the stretch
-	at         int64   // frame of the first sample kept
-	kept       []float64
+	peak       float64      // of the tone
+	start, end int64        // frames of the stretch
+	at         int64        // frame of the first half's first sample
+	kept       [2][]float64 // the segment's halves as they fill
 	mean       *averager
 	result     *Spectrum // once the stretch is over; nil if no segment served
 	work       []float64
@@ -70,19 +70,24 @@ func (s *segmenter) take(x []float64, frame int64, track *Track) {
 		return
 	}
 	if s.mean == nil {
-		s.mean, s.kept = newAverager(s.n), make([]float64, 0, s.n)
+		s.mean = newAverager(s.n)
+		s.kept = [2][]float64{make([]float64, 0, s.n/2), make([]float64, 0, s.n/2)}
 	}
 	for x = x[from:to]; len(x) > 0; {
-		n := min(len(x), s.n-len(s.kept))
-		s.kept = append(s.kept, x[:n]...)
+		half := &s.kept[0]
+		if len(*half) == s.n/2 {
+			half = &s.kept[1]
+		}
+		n := min(len(x), s.n/2-len(*half))
+		*half = append(*half, x[:n]...)
 		x = x[n:]
-		if len(s.kept) < s.n {
-			break
+		if len(s.kept[1]) < s.n/2 {
+			continue
 		}
 		if s.steady(track) {
-			s.mean.add(s.kept)
+			s.mean.add(s.kept[0], s.kept[1])
 		}
-		s.kept = s.kept[:copy(s.kept, s.kept[s.n/2:])]
+		s.kept[0], s.kept[1] = s.kept[1], s.kept[0][:0]
 		s.at += int64(s.n / 2)
 	}
 	if frame+int64(to) == s.end {
@@ -94,7 +99,7 @@ func (s *segmenter) take(x []float64, frame int64, track *Track) {
 func (s *segmenter) finish() {
 	if s.mean != nil {
 		s.result = s.mean.spectrum(s.rateHz)
-		s.mean, s.kept = nil, nil
+		s.mean, s.kept = nil, [2][]float64{}
 	}
 }
 
@@ -116,11 +121,27 @@ func (s *segmenter) steady(t *Track) bool {
 		return false
 	}
 	// The amplitude fitted to a block scatters by the square root of 1.5·leftover/hop.
-	within := s.peak * (RatioFromDB(segmentWithinDB) - 1 + 6*math.Sqrt(1.5*usual/float64(s.hop))/s.peak)
-	for b := from + 1; b < to-2; b++ {
-		if z := t.blocks[b]; math.Abs(cmplx.Abs(complex128(z))-s.peak) > within {
+	noise := steadySigmas * math.Sqrt(1.5*usual/float64(s.hop)) / s.peak
+	first, next := from+1, to-2 // blocks
+	return first >= next || s.even(t.blocks[first:next], noise)
+}
+
+// even says whether blocks keep the tone's level and turn evenly; noise is what it adds to either,
+// as a part of the tone's amplitude.
+func (s *segmenter) even(blocks []complex64, noise float64) bool {
+	s.work = s.work[:0]
+	for b, z := range blocks {
+		if math.Abs(cmplx.Abs(complex128(z))/s.peak-1) > RatioFromDB(segmentWithinDB)-1+noise {
 			return false
 		}
+		if b > 0 {
+			s.work = append(s.work, turnOf(complex128(blocks[b-1]), complex128(z)))
+		}
 	}
-	return true
+	if len(s.work) == 0 {
+		return true
+	}
+	sort.Float64s(s.work)
+	middle, within := s.work[len(s.work)/2], steadyWithinRad+math.Sqrt2*noise
+	return s.work[len(s.work)-1]-middle <= within && middle-s.work[0] <= within
 }

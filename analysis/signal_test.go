@@ -23,8 +23,7 @@ func generated(t *testing.T, rateHz float64) *clip {
 // rms returns the level of part of a clip.
 func (c *clip) rms(fromSec, toSec float64) float64 {
 	part := c.x[int(math.Round(fromSec*c.rateHz)):int(math.Round(toSec*c.rateHz))]
-	_, square := plainSums(part)
-	return DBFSFromMeanSquare(square / float64(len(part)))
+	return DBFSFromMeanSquare(plainSums(part).square / float64(len(part)))
 }
 
 func (c *clip) crossings(fromSec, toSec float64) int {
@@ -69,15 +68,15 @@ func TestScheduleIsTheDesigns(t *testing.T) {
 
 // Levels, peak, cycles of each stage by closed form.
 func TestGenerateByClosedForm(t *testing.T) {
-	for _, rateHz := range []float64{8000, 44100, 48000, 96000, 384000} {
+	for _, rateHz := range []float64{8000, 44100, 96000} {
 		c := generated(t, rateHz)
 		if want := int(math.Round(23.5 * rateHz)); len(c.x) != want {
 			t.Fatalf("rate %g: %d samples, want %d", rateHz, len(c.x), want)
 		}
-		low, high := extremes(c.x)
+		all := plainSums(c.x)
 		peak := math.Pow(10, -6./20)
-		if high > peak || low < -peak || high < 0.999*peak {
-			t.Errorf("rate %g: samples from %g to %g, want up to %g", rateHz, low, high, peak)
+		if all.high > peak || all.low < -peak || all.high < 0.999*peak {
+			t.Errorf("rate %g: samples from %g to %g, want up to %g", rateHz, all.low, all.high, peak)
 		}
 		near(t, "tone", c.rms(2, 5), -6, 0.0005)
 		near(t, "tone, stepped down", c.rms(5.75, 7.7), -16, 0.005)

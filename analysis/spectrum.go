@@ -8,7 +8,7 @@ import (
 )
 
 // A Spectrum is the mean of the power spectra of half-overlapped segments (P. D. Welch, IEEE Trans.
-// AU-15, 1967) under the window that package window.go describes.
+// AU-15, 1967), under Nuttall's four-term window with a continuous third derivative.
 //
 // MeanSquare[k] belongs to k·BinHz, k from 0 to half the segment. The bins are scaled so that sums
 // of them are mean squares: all of them add up to that of the signal, the bins of a band to that of
@@ -77,13 +77,11 @@ func newAverager(n int) *averager {
 	}
 }
 
-// add takes one segment of exactly n samples.
-func (a *averager) add(x []float64) {
+// add takes one segment of exactly n samples, as its two halves.
+func (a *averager) add(first, second []float64) {
 	z := a.z
-	x, w := x[:2*len(z)], a.window[:2*len(z)]
-	for j := range z {
-		z[j] = complex(x[2*j]*w[2*j], x[2*j+1]*w[2*j+1])
-	}
+	pack(z[:len(z)/2], first, a.window[:a.n/2])
+	pack(z[len(z)/2:], second, a.window[a.n/2:])
 	a.plan.run(z)
 	sum, difference := real(z[0])+imag(z[0]), real(z[0])-imag(z[0])
 	a.dc += sum * sum
@@ -94,6 +92,15 @@ func (a *averager) add(x []float64) {
 		addPairs(z[start:2*start], a.power[start:2*start], a.cross[start/2:start])
 	}
 	a.segments++
+}
+
+// pack puts sample 2j, under the window, into number j as its real part, sample 2j+1 as the
+// imaginary.
+func pack(z []complex128, x, window []float64) {
+	x, window = x[:2*len(z)], window[:2*len(z)]
+	for j := range z {
+		z[j] = complex(x[2*j]*window[2*j], x[2*j+1]*window[2*j+1])
+	}
 }
 
 func addPairs(z []complex128, power, cross []float64) {

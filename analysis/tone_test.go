@@ -113,18 +113,20 @@ func TestMeasureTestSignal(t *testing.T) {
 func TestMeasureTonesInterrupted(t *testing.T) {
 	const rateHz = 48000.0
 	base := func() *clip { return newClip(rateHz, 6).tone(997, -60, 0, 0, 6).noise(-110, 8) }
-	click, gap, jump, bad := base(), base(), base(), base()
+	click, gap, jump, slip, bad := base(), base(), base(), base(), base()
 	click.x[2*48000] = 0.9
 	for n := 96000; n < 96480; n++ {
 		gap.x[n] = 0
 	}
 	copy(jump.x[96000:], jump.x[96019:]) // a lost buffer, 142° of the tone
+	copy(slip.x[96000:], slip.x[96003:]) // three samples, 22°: the level hardly shows it
 	for n := 96000; n < 96300; n++ {
 		bad.x[n] = math.NaN()
 	}
-	for name, c := range map[string]*clip{"click": click, "gap": gap, "jump": jump, "bad samples": bad} {
+	for name, c := range map[string]*clip{"click": click, "gap": gap, "jump": jump, "slip": slip, "bad samples": bad} {
 		tone := measureAll(t, c).Tones[0]
 		near(t, name+": level", tone.LevelDBFS, -60, 0.001)
+		near(t, name+": frequency", tone.FreqHz, 997, 1e-4)
 		near(t, name+": start", tone.StartSec, 2.05, 0.1)
 		near(t, name+": noise", tone.NoiseDBFS, -110, 0.3)
 	}
