@@ -39,7 +39,7 @@ func TestClippedNoFalseAlarm(t *testing.T) {
 			for _, levelDBFS := range []float64{-0.1, -6, -40, -70} {
 				for _, bits := range []int{8, 16, 20, 24} {
 					for _, noisy := range []bool{false, true} {
-						c := newClip(rateHz, 0.6).tone(freqHz, levelDBFS, 0.3, 0, 0.6)
+						c := newClip(rateHz, 0.4).tone(freqHz, levelDBFS, 0.3, 0, 0.4)
 						if noisy {
 							c.noise(-90, 1)
 						}
