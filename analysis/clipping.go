@@ -46,8 +46,10 @@ func (f *flatFinder) chunk(b []float64, fresh int, frame int64, low, high float6
 	if last {
 		to = len(b)
 	}
-	step := 0.0                                        // in which samples are stored, once it is needed
-	for i := leastRun - 1; i < len(b); i += leastRun { // no run fits between two of these
+	step := 0.0 // in which samples are stored, once it is needed
+
+	// No run fits between two of these.
+	for i := leastRun - 1; i < len(b); i += leastRun {
 		if v := b[i]; v != low && v != high {
 			continue
 		}
