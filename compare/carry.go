@@ -57,23 +57,32 @@ func doubtsBut(c *network.Circuit, index int, doubt float64) []float64 {
 	return doubts
 }
 
-// othersDB is the 95 % spread of the bench loss by the tolerances of all parts
-// but those held.
-func othersDB(c *network.Circuit, e network.Ends, freqHz float64, held ...int) float64 {
+// othersDB is how far the tolerances of all parts but one (-1: of all) may move
+// the loss, each at its worst. A 95 % spread would not do: the deviation that
+// counts as within the tolerances reaches to the worst case, and a part that
+// the bench does not see must fit up to there.
+func othersDB(c *network.Circuit, e network.Ends, freqHz float64, but int) float64 {
 	s := c.Sensitivities(e, freqHz)
 	var sum float64
-next:
 	for i, p := range c.Parts() {
-		for _, h := range held {
-			if i == h {
-				continue next
-			}
-		}
-		if v := s[i] * p.TolFrac / math.Sqrt(3); !math.IsNaN(v) {
-			sum += v * v
+		if v := math.Abs(s[i]) * p.TolFrac; i != but && !math.IsNaN(v) && !math.IsInf(v, 0) {
+			sum += v
 		}
 	}
-	return 1.96 * math.Sqrt(sum)
+	return sum
+}
+
+// othersOf is othersDB of the drawing, or of the drawing with the part shorted
+// or open where the others then weigh more.
+func (k LossCase) othersOf(index int) float64 {
+	ref := k.Circuit.Parts()[index].Ref
+	most := 0.0
+	for _, c := range []*network.Circuit{k.Circuit, k.Circuit.With(ref, 0), k.Circuit.With(ref, math.Inf(1))} {
+		if !math.IsInf(c.LossDB(k.Rig.Ends, k.Reading.FreqHz), 0) {
+			most = math.Max(most, othersDB(c, k.Rig.Ends, k.Reading.FreqHz, index))
+		}
+	}
+	return most
 }
 
 // A moved part is one that, moved alone, explains a bench loss, with the
@@ -86,12 +95,12 @@ type moved struct {
 }
 
 // movedParts moves each part alone from 0 to infinity and keeps the values at
-// which the bench loss lies within widthDB of benchDB; the service losses are
-// those of the moved part alone.
-func movedParts(k LossCase, benchDB, widthDB float64) []moved {
+// which the bench loss lies within uDB, and what the other parts may bring, of
+// benchDB; the service losses are those of the moved part alone.
+func movedParts(k LossCase, benchDB, uDB float64) []moved {
 	var all []moved
 	for i := range k.Circuit.Parts() {
-		if m, ok := movePart(k, i, benchDB, widthDB, k.serviceOf); ok {
+		if m, ok := movePart(k, i, benchDB, uDB+k.othersOf(i), k.serviceOf); ok {
 			all = append(all, m)
 		}
 	}

@@ -56,8 +56,8 @@ const coverage = 0.95
 //	modelled service loss + beta (bench loss - modelled bench loss)
 //
 // and otherwise the middle of the range of service losses that any single part,
-// moved alone until it explains the bench loss within U, would give. Where no
-// part alone explains it, ServiceDB and UDB are NaN: the reading then proves
+// moved alone until it explains the bench loss within U, would give, or two
+// parts swapped, or no pad at all. Where nothing of the kind explains it, ServiceDB and UDB are NaN: the reading then proves
 // nothing about service. A reading of NaN gives NaN throughout.
 func JudgeLoss(k LossCase) (Loss, error) {
 	c, f := k.Circuit, k.Reading.FreqHz
@@ -88,16 +88,30 @@ func JudgeLoss(k LossCase) (Loss, error) {
 	return l, err
 }
 
+// A reading this near to nothing is that of a pad that is not in circuit, or is
+// wired straight through.
+const straightDB = 0.1
+
 // judgeOutside is the answer where more is wrong than tolerances allow: each
-// part alone is moved through the full model. What the takes and the rig leave
+// part alone is moved through the full model, any two are swapped, and the pad
+// is taken out. What the takes and the rig leave
 // open is inside that range already, so those terms count with sensitivity 0.
 // The truth is likely at one of the range's ends, where one part or another is
 // the culprit, so U holds the whole range and not 95 % of it.
 func judgeOutside(k LossCase, l Loss) (Loss, error) {
 	low, high, leftDB := math.Inf(1), math.Inf(-1), 0.0
+	reach := func(fromDB, toDB, left float64) {
+		low, high, leftDB = math.Min(low, fromDB), math.Max(high, toDB), math.Max(leftDB, left)
+	}
 	for _, m := range movedParts(k, l.BenchDB, l.BenchUDB) {
-		low, high = math.Min(low, m.serviceLowDB), math.Max(high, m.serviceHighDB)
-		leftDB = math.Max(leftDB, m.leftDB)
+		reach(m.serviceLowDB, m.serviceHighDB, m.leftDB)
+	}
+	for _, w := range k.swapsThatFit(l.BenchDB, l.BenchUDB) {
+		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
+		reach(w.serviceDB, w.serviceDB, over.leftDB)
+	}
+	if math.Abs(l.BenchDB) <= l.BenchUDB+straightDB {
+		reach(0, 0, 0)
 	}
 	l.ServiceDB, l.UDB = math.NaN(), math.NaN()
 	if low > high || math.IsInf(low, 0) || math.IsInf(high, 0) {

@@ -20,8 +20,8 @@ type Unseen struct {
 
 // FindUnseen lists the parts that the bench cannot have proven: moved alone
 // from 0 to infinity, or swapped with another, they fit the bench loss within U
-// plus the 95 % spread of the other parts and yet, carried over from there in
-// the same way, break the limit in service. A loss is PASS only where the list
+// plus the spread of the other parts and yet, carried over from there in the
+// same way, break the limit in service. A loss is PASS only where the list
 // is empty or something else taken rules each entry out. benchDB is the bench
 // loss as recorded; the modelled one tells what a bench could see at all.
 func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
@@ -31,7 +31,7 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 	var all []Unseen
 	parts := k.Circuit.Parts()
 	for i, p := range parts {
-		width := benchUDB + othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, i)
+		width := benchUDB + k.othersOf(i)
 		m, ok := movePart(k, i, benchDB, width, k.serviceWith)
 		if !ok || limit.Holds(m.serviceLowDB) && limit.Holds(m.serviceHighDB) {
 			continue
@@ -80,30 +80,16 @@ func (k LossCase) betterEnds(index int) (sourceOhms, loadOhms float64) {
 
 func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
 	var all []Unseen
-	parts := k.Circuit.Parts()
-	for i, a := range parts {
-		for j, b := range parts[:i] {
-			if a.Kind != b.Kind || a.Value == b.Value {
-				continue
-			}
-			c := k.Circuit.Swapped(b.Ref, a.Ref)
-			width := benchUDB + othersDB(c, k.Rig.Ends, k.Reading.FreqHz)
-			bench, service := c.LossDB(k.Rig.Ends, k.Reading.FreqHz), c.LossDB(k.Service, k.Reading.FreqHz)
-			if math.IsNaN(bench) || math.Abs(bench-benchDB) > width {
-				continue
-			}
-			over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(c))
-			service += over.beta * (benchDB - bench)
-			if limit.Holds(service) {
-				continue
-			}
-			all = append(all, Unseen{
-				Refs: []string{parts[j].Ref, a.Ref}, Kind: a.Kind,
-				ServiceLowDB: service, ServiceHighDB: service, WithinDB: width,
-				Reading:    bestReading(k.Circuit, c),
-				SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
-			})
+	for _, w := range k.swapsThatFit(benchDB, benchUDB) {
+		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
+		service := w.serviceDB + over.beta*(benchDB-w.benchDB)
+		if limit.Holds(service) {
+			continue
 		}
+		all = append(all, Unseen{
+			Refs: w.refs, Kind: w.kind, ServiceLowDB: service, ServiceHighDB: service, WithinDB: w.withinDB,
+			Reading: bestReading(k.Circuit, w.circuit), SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
+		})
 	}
 	return all
 }

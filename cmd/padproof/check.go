@@ -147,9 +147,17 @@ func (f checkFlags) options(cmd *cobra.Command) (proof.Options, error) {
 	if given("marked-ohms") && f.onThisBench {
 		return o, usageError(cmd, "--marked-ohms and --on-this-bench are two readings of the mark; choose one")
 	}
-	for name, v := range map[string]float64{"marked-loss-db": f.markedLoss, "within-db": f.within, "marked-ohms": f.markedOhms} {
-		if given(name) && !(v > 0 && v < 1e9) {
-			return o, usageError(cmd, "--%s wants a figure above 0, not %v", name, v)
+	for _, figure := range []struct {
+		name     string
+		v        float64
+		from, to float64
+	}{
+		{"marked-loss-db", f.markedLoss, 0.01, 200},
+		{"within-db", f.within, 0.001, 100},
+		{"marked-ohms", f.markedOhms, 0.1, 1e6},
+	} {
+		if given(figure.name) && !(figure.v >= figure.from && figure.v <= figure.to) {
+			return o, usageError(cmd, "--%s wants %v to %v, not %v", figure.name, figure.from, figure.to, figure.v)
 		}
 	}
 	o.Mark = &proof.Mark{LossDB: f.markedLoss, WithinDB: f.within, Ohms: f.markedOhms, OnThisBench: f.onThisBench}

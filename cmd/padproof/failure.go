@@ -67,7 +67,7 @@ func describe(err error) *result.Error {
 	case errors.As(err, &inPath):
 		return &result.Error{File: inPath.Path, Text: inPath.Err.Error(), Hint: pathHint(err)}
 	}
-	return &result.Error{Text: err.Error()}
+	return &result.Error{Text: err.Error(), Hint: pathHint(err)}
 }
 
 func pathHint(err error) string {

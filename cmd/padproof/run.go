@@ -62,7 +62,16 @@ Exit status: 0 PASS or done, 1 FAIL, 2 UNPROVEN, 3 could not check.`,
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error { return usageError(cmd, "%v", err) })
 	root.PersistentFlags().Bool("json", false, "print the result as JSON")
 	root.AddCommand(newCheck(), newPredict(), newSignal(), newRehearse())
-	root.SetHelpCommand(&cobra.Command{Use: "no-help", Hidden: true})
+	root.InitDefaultCompletionCmd()
+	if completion, _, err := root.Find([]string{"completion"}); err == nil {
+		completion.Args = func(cmd *cobra.Command, args []string) error {
+			if len(args) > 0 {
+				return usageError(cmd, "there is no completion for %q; there are bash, zsh, fish and powershell", args[0])
+			}
+			return nil
+		}
+		completion.RunE = func(cmd *cobra.Command, args []string) error { return cmd.Help() }
+	}
 	root.SetUsageTemplate(usageTemplate)
 	return root
 }

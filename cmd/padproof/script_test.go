@@ -56,12 +56,13 @@ func exits(ts *testscript.TestScript, neg bool, args []string) {
 // toneWAV FILE KEY=VALUE... writes a steady tone with white noise. Keys, with
 // what they are if left out: hz 997, dbfs -6, noise -100 (whole bandwidth),
 // sec 2, rate 48000, bits 24, channels 1, channel 1 (0: all), seed 1, lead 0
-// (seconds of noise before and after).
+// (seconds of noise before and after), second 0 (the level of as long a stretch
+// behind the first, where not 0).
 func toneWAV(ts *testscript.TestScript, neg bool, args []string) {
 	if neg || len(args) == 0 {
 		ts.Fatalf("usage: tonewav FILE KEY=VALUE...")
 	}
-	v := map[string]float64{"hz": 997, "dbfs": -6, "noise": -100, "sec": 2, "rate": 48000, "bits": 24, "channels": 1, "channel": 1, "seed": 1, "lead": 0}
+	v := map[string]float64{"hz": 997, "dbfs": -6, "noise": -100, "sec": 2, "rate": 48000, "bits": 24, "channels": 1, "channel": 1, "seed": 1, "lead": 0, "second": 0}
 	for _, arg := range args[1:] {
 		key, text, _ := strings.Cut(arg, "=")
 		number, err := strconv.ParseFloat(text, 64)
@@ -76,8 +77,15 @@ func toneWAV(ts *testscript.TestScript, neg bool, args []string) {
 	rng := rand.New(rand.NewPCG(uint64(v["seed"]), 0))
 	peak, sigma := math.Pow(10, v["dbfs"]/20), math.Pow(10, v["noise"]/20)/math.Sqrt2
 	lead, tone := int(v["lead"]*v["rate"]), int(v["sec"]*v["rate"])
+	turned := tone // where the second level begins
+	if v["second"] != 0 {
+		tone *= 2
+	}
 	frame := make([]float64, int(v["channels"]))
 	for i := range lead + tone + lead {
+		if i == lead+turned {
+			peak = math.Pow(10, v["second"]/20)
+		}
 		for c := range frame {
 			frame[c] = sigma * rng.NormFloat64()
 			if (int(v["channel"]) == c+1 || v["channel"] == 0) && i >= lead && i < lead+tone {

@@ -32,10 +32,14 @@ func (t *take) pickChannel(asked int, atHz []float64, matchDB float64) error {
 	if err != nil {
 		return err
 	}
-	best := 0
-	for i, l := range levels {
-		if l > levels[best] {
-			best = i
+	best := loudest(levels)
+	if atHz == nil && !math.IsInf(levels[best], -1) {
+		// Another channel counts by what it holds of this one's tone, not by its own hum.
+		if stretches, err := analysis.FindTones(t.file.Channel(best + 1)); err == nil {
+			if levels, err = t.toneLevels(frequencies(stretches)); err != nil {
+				return err
+			}
+			best = loudest(levels)
 		}
 	}
 	for i, l := range levels {
@@ -49,6 +53,24 @@ func (t *take) pickChannel(asked int, atHz []float64, matchDB float64) error {
 	}
 	t.use(best + 1)
 	return nil
+}
+
+func loudest(levels []float64) int {
+	best := 0
+	for i, l := range levels {
+		if l > levels[best] {
+			best = i
+		}
+	}
+	return best
+}
+
+func frequencies(stretches []analysis.Stretch) []float64 {
+	var freqs []float64
+	for _, s := range stretches {
+		freqs = append(freqs, s.FreqHz)
+	}
+	return freqs
 }
 
 // toneLevels is the level of the tone in each channel, -Inf where there is none.
@@ -80,7 +102,7 @@ func (t *take) followChannel(first *take, asked int, atHz []float64, matchDB flo
 		return &result.Error{
 			File: t.path,
 			Text: fmt.Sprintf("the tone of %s is in channel %d, and there are only %d here", first.path, first.channel, t.facts.Channels),
-			Hint: "record both takes with one set-up, or name a channel that both have: --channel 1",
+			Hint: fmt.Sprintf("record both takes with one set-up, or export channel %d of %s as a file of its own", first.channel, first.path),
 		}
 	}
 	if err := t.pickChannel(0, atHz, matchDB); err != nil {
@@ -97,7 +119,7 @@ func (t *take) followChannel(first *take, asked int, atHz []float64, matchDB flo
 		return &result.Error{
 			File: t.path,
 			Text: fmt.Sprintf("the tone is in channel %d here and in channel %d of %s", t.channel, first.channel, first.path),
-			Hint: "record both takes through one channel, or name one: --channel " + fmt.Sprint(first.channel),
+			Hint: fmt.Sprintf("record both takes through one channel; if this is the same input after all, export channel %d of this take as a file of its own", t.channel),
 		}
 	}
 	t.use(first.channel)

@@ -38,7 +38,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err := a.judge(d, before, after, o.Mark); err != nil {
 		return nil, err
 	}
-	return a.finish(o.Mark, before, after), nil
+	return a.finish(u, o.Mark, before, after), nil
 }
 
 func openPair(u *unit.Unit) (before, after *take, err error) {
@@ -70,10 +70,7 @@ func measurePair(before, after *take, channel int, matchDB float64) error {
 	if err := before.find(nil); err != nil {
 		return err
 	}
-	var atHz []float64
-	for _, s := range before.found {
-		atHz = append(atHz, s.FreqHz)
-	}
+	atHz := frequencies(before.found)
 	if err := after.followChannel(before, channel, atHz, matchDB); err != nil {
 		return err
 	}
@@ -126,20 +123,26 @@ func (a answer) judge(d *Drawing, before, after *take, mark *Mark) error {
 
 // lossCheck judges the loss at the tone nearest 1 kHz that both takes hold.
 func (a answer) lossCheck(d *Drawing, before, after *take, mark *Mark) (result.Check, error) {
-	b, t, ok := pairTones(before, after)
+	b, t, found, ok := compare.PairTones(before.measured.Tones, after.measured.Tones)
+	after.problems = append(after.problems, found...)
 	if !ok {
 		return noLoss(d, before, after), nil
 	}
+	before.judged, after.judged = &b, &t
 	reading := compare.ReadLoss(b, t, d.Gains)
 	after.problems = append(after.problems, compare.PairProblems(side(before, b), side(after, t), reading, d.designedDB)...)
 	judge := a.drawnCheck
-	if d.Circuit == nil {
+	switch {
+	case d.Circuit == nil:
 		judge = a.benchCheck
+	case d.Alternative != nil:
+		judge = a.eitherCheck
 	}
 	check, err := judge(d, reading, mark)
+	check.AtHz = result.NumberOf(reading.FreqHz)
 	void(&check, before, after)
 	if err == nil && d.Circuit != nil {
-		err = a.otherTones(d, before, after, t.FreqHz)
+		err = a.otherTones(d, before, after)
 	}
 	return check, err
 }
@@ -242,42 +245,16 @@ func void(check *result.Check, takes ...*take) {
 	check.Reason = strings.Join(names, ", ") + ": see Problems for what to do"
 }
 
-// pairTones are the main tone of after and the stretch of before at the same
-// frequency.
-func pairTones(before, after *take) (b, a analysis.Tone, ok bool) {
-	if b, ok = before.mainTone(); !ok {
-		return b, a, false
-	}
-	if a, ok = after.mainTone(); !ok {
-		return b, a, false
-	}
-	return toneAt(before, a)
-}
-
-// toneAt is the loudest stretch of before at the frequency of a tone of after.
-func toneAt(before *take, a analysis.Tone) (analysis.Tone, analysis.Tone, bool) {
-	var best analysis.Tone
-	found := false
-	for _, b := range before.measured.Tones {
-		if sameFrequency(a.FreqHz, b.FreqHz) && (!found || b.LevelDBFS > best.LevelDBFS) {
-			best, found = b, true
-		}
-	}
-	return best, a, found
-}
-
 // otherTones adds the bench loss at each tone where several were played.
-func (a answer) otherTones(d *Drawing, before, after *take, mainHz float64) error {
+func (a answer) otherTones(d *Drawing, before, after *take) error {
 	var tones []result.Tone
-	seen := map[float64]bool{}
-	several := false
-	for _, t := range after.measured.Tones {
-		b, t, ok := toneAt(before, t)
-		if !ok || seen[math.Round(t.FreqHz)] {
+	for rest := before.measured.Tones; len(rest) > 0; {
+		of := func(t analysis.Tone) bool { return compare.SameFrequency(t.FreqHz, rest[0].FreqHz) }
+		b, t, _, ok := compare.PairTones(only(before.measured.Tones, of), only(after.measured.Tones, of))
+		rest = only(rest, func(t analysis.Tone) bool { return !of(t) })
+		if !ok {
 			continue
 		}
-		seen[math.Round(t.FreqHz)] = true
-		several = several || !sameFrequency(t.FreqHz, mainHz)
 		k := compare.LossCase{Circuit: d.Circuit, Rig: d.Rig, Service: d.Rig.Ends, Reading: compare.ReadLoss(b, t, d.Gains)}
 		loss, err := compare.JudgeLoss(k)
 		if err != nil {
@@ -288,10 +265,20 @@ func (a answer) otherTones(d *Drawing, before, after *take, mainHz float64) erro
 			Expected: result.Number(loss.BenchExpectedDB), Uncertainty: result.Number(loss.BenchUDB),
 		})
 	}
-	if several {
+	if len(tones) > 1 {
 		a.Tones = tones
 	}
 	return nil
+}
+
+func only(tones []analysis.Tone, wanted func(analysis.Tone) bool) []analysis.Tone {
+	var some []analysis.Tone
+	for _, t := range tones {
+		if wanted(t) {
+			some = append(some, t)
+		}
+	}
+	return some
 }
 
 func side(t *take, tone analysis.Tone) compare.Side {
@@ -299,11 +286,16 @@ func side(t *take, tone analysis.Tone) compare.Side {
 }
 
 // finish adds the takes, the notes and the unit's verdict.
-func (a answer) finish(mark *Mark, takes ...*take) *result.Answer {
+func (a answer) finish(u *unit.Unit, mark *Mark, takes ...*take) *result.Answer {
 	for _, t := range takes {
-		a.Captures = append(a.Captures, t.capture())
+		a.Captures = append(a.Captures, t.capture(u.Folder))
 		for _, comment := range t.facts.Comments {
 			a.Simulated = a.Simulated || strings.HasPrefix(comment, "SIMULATED")
+		}
+	}
+	for _, role := range unit.Roles() {
+		if role != unit.Before && role != unit.After && u.Files[role] != "" {
+			a.Notes = append(a.Notes, role+".wav is there and is not judged by this version")
 		}
 	}
 	a.Notes = append(a.Notes, "automatic gain not excluded: a plain tone cannot show it; switch it off in the recorder")

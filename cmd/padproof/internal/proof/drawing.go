@@ -17,11 +17,13 @@ const picofarad = 1e-12
 type Drawing struct {
 	Name    string
 	Circuit *network.Circuit
-	Rig     compare.Rig
-	Service network.Ends
-	Gains   compare.Gains
-	Limits  sheet.Limits
-	Sheet   *sheet.Rig
+	// Alternative is another circuit that the same mark may mean; nil with a drawing.
+	Alternative *network.Circuit
+	Rig         compare.Rig
+	Service     network.Ends
+	Gains       compare.Gains
+	Limits      sheet.Limits
+	Sheet       *sheet.Rig
 }
 
 // Load reads a pad's and a rig's sheet. With no rig's sheet (an empty path) the

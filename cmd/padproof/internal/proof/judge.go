@@ -18,7 +18,7 @@ func (d *Drawing) judgeLoss(k compare.LossCase, loss compare.Loss, limit compare
 		return compare.Unproven, err.Error(), nil
 	}
 	if math.IsNaN(loss.ServiceDB) {
-		return compare.Unproven, "no single part of the drawing explains what was read on the bench; look at gain, source and load, or measure the parts", nil
+		return compare.Unproven, "no single part of the drawing, and no swap of two, explains what was read on the bench; look at gain, source and load, or measure the parts", nil
 	}
 	verdict, reason := compare.Decide(rule, loss.ServiceDB, loss.UDB, limit, loss.ServiceExpectedDB)
 	if verdict == compare.Unproven {

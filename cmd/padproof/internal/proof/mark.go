@@ -38,11 +38,10 @@ func drawingOf(u *unit.Unit, mark *Mark) (*Drawing, error) {
 		return nil, err
 	}
 	d := &Drawing{Name: "no drawing"}
-	bare, err := matchedPad(rig, 600, 10) // any pad: it tells the wiring
+	d.Circuit, _, err = matchedPad(rig, 600, 10) // any pad: it tells the wiring
 	if err != nil {
 		return nil, err
 	}
-	d.Circuit = bare
 	if err := d.onRig(rig); err != nil {
 		return nil, err
 	}
@@ -60,26 +59,72 @@ func drawingOf(u *unit.Unit, mark *Mark) (*Drawing, error) {
 	}
 	d.Name = fmt.Sprintf("marked %.4g dB and %.4g Ω, no drawing", mark.LossDB, mark.Ohms)
 	d.Service.SourceOhms, d.Service.LoadOhms, d.Service.CableFarads = mark.Ohms, mark.Ohms, 0
-	d.Circuit, err = matchedPad(rig, mark.Ohms, mark.LossDB)
+	d.Circuit, d.Alternative, err = matchedPad(rig, mark.Ohms, mark.LossDB)
 	return d, err
 }
 
-// matchedPad is the symmetrical matched pad of an impedance and a loss: a T
-// where either end of the rig is unbalanced, else an H. With K the voltage ratio
-// its series arms are R0 (K-1)/(K+1), its shunt 2 R0 K/(K^2-1) (Bird, Electrical
+// matchedPad is the symmetrical matched pad of an impedance and a loss: a T and
+// a pi, or an H and an O where both ends of the rig are balanced or floating.
+// With K the voltage ratio the T's series arms are R0 (K-1)/(K+1), its shunt
+// 2 R0 K/(K^2-1); the pi's series arm R0 (K^2-1)/(2K), its shunts
+// R0 (K+1)/(K-1); H and O have the series arms in two halves (Bird, Electrical
 // Circuit Theory and Technology, ch. 41).
-func matchedPad(rig *sheet.Rig, ohms, lossDB float64) (*network.Circuit, error) {
+func matchedPad(rig *sheet.Rig, ohms, lossDB float64) (t, pi *network.Circuit, err error) {
 	k := math.Pow(10, lossDB/20)
 	arm, shunt := ohms*(k-1)/(k+1), 2*ohms*k/(k*k-1)
-	name, values := "H", []float64{arm / 2, arm / 2, arm / 2, arm / 2, shunt}
+	series, end := ohms*(k*k-1)/(2*k), ohms*(k+1)/(k-1)
 	if rig.Drive(false) == "unbalanced" || rig.Sense(false) == "unbalanced" {
-		name, values = "T", []float64{arm, arm, shunt}
+		if t, err = padOf("T", arm, arm, shunt); err == nil {
+			pi, err = padOf("pi", end, series, end)
+		}
+		return t, pi, err
 	}
+	if t, err = padOf("H", arm/2, arm/2, arm/2, arm/2, shunt); err == nil {
+		pi, err = padOf("O", end, series/2, series/2, end)
+	}
+	return t, pi, err
+}
+
+// padOf is a standard network of the given values, in the order of its parts.
+func padOf(name string, ohms ...float64) (*network.Circuit, error) {
 	var parts []network.Part
-	for i, v := range values {
+	for i, v := range ohms {
 		parts = append(parts, network.Part{Ref: network.Refs(name)[i], Value: v, TolFrac: matchedTolFrac})
 	}
 	return network.New(name, parts)
+}
+
+// eitherCheck judges a mark as both kinds of matched pad: what holds for one
+// alone proves nothing, since nobody has looked inside.
+func (a answer) eitherCheck(d *Drawing, reading compare.LossReading, mark *Mark) (result.Check, error) {
+	first, err := a.drawnCheck(d, reading, mark)
+	if err != nil {
+		return first, err
+	}
+	other := *d
+	other.Circuit, other.Alternative = d.Alternative, nil
+	b := answer{&result.Answer{}}
+	second, err := b.drawnCheck(&other, reading, mark)
+	if err != nil {
+		return second, err
+	}
+	for i := range a.Unseen {
+		a.Unseen[i].Part += " of the " + d.Circuit.Name()
+	}
+	for _, u := range b.Unseen {
+		u.Part += " of the " + other.Circuit.Name()
+		a.Unseen = append(a.Unseen, u)
+	}
+	a.Assumed = append(a.Assumed, fmt.Sprintf("a symmetrical matched pad, %s or %s, parts within ±%.0f %% (no drawing)", d.Circuit.Name(), other.Circuit.Name(), matchedTolFrac*100))
+	if first.Verdict != second.Verdict {
+		first.Reason = fmt.Sprintf("as a %s pad it would be %s, as a %s pad %s; give a drawing, or use a bench of the impedance marked",
+			d.Circuit.Name(), first.Verdict, other.Circuit.Name(), second.Verdict)
+		first.Verdict = string(compare.Unproven)
+	}
+	apart := math.Abs(float64(first.Measured-second.Measured)) / 2
+	first.Measured = (first.Measured + second.Measured) / 2
+	first.Uncertainty = result.Number(math.Max(float64(first.Uncertainty), float64(second.Uncertainty)) + apart)
+	return first, nil
 }
 
 // benchCheck is the loss of a pad of which no model is known: what this bench
@@ -117,12 +162,15 @@ func (a answer) withoutMark(check result.Check, d *Drawing, mark *Mark) (result.
 		lossDB = mark.LossDB
 		check.Reason = "the mark holds for an impedance that was not given; add --marked-ohms, or --on-this-bench if it is what this bench should read"
 	}
+	if lossDB < 0.1 {
+		return check, nil // no pad reads like this
+	}
 	for _, ohms := range commonOhms {
-		c, err := matchedPad(d.Sheet, ohms, math.Max(lossDB, 0.1))
+		c, _, err := matchedPad(d.Sheet, ohms, lossDB)
 		if err != nil {
 			return check, err
 		}
-		a.Notes = append(a.Notes, fmt.Sprintf("a matched %.4g Ω pad of %.2f dB would read %.2f dB on this bench", ohms, math.Max(lossDB, 0.1), c.LossDB(d.Rig.Ends, 997)))
+		a.Notes = append(a.Notes, fmt.Sprintf("a matched %.4g Ω pad of %.2f dB would read %.2f dB on this bench", ohms, lossDB, c.LossDB(d.Rig.Ends, 997)))
 	}
 	return check, nil
 }

@@ -3,7 +3,9 @@ package proof
 import (
 	"errors"
 	"fmt"
+	"io/fs"
 	"math"
+	"path/filepath"
 
 	"padproof/analysis"
 	"padproof/capture"
@@ -21,12 +23,16 @@ type take struct {
 	samples  *capture.Channel
 	found    []analysis.Stretch
 	measured *analysis.Measurement
+	judged   *analysis.Tone // the stretch that the loss is judged at
 	sha256   string
 	problems []compare.Problem
 }
 
 func openTake(role, path string) (*take, error) {
 	file, err := capture.Open(path)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil, &result.Error{File: path, Text: "no such file", Hint: "look at the spelling of the path"}
+	}
 	if err != nil {
 		return nil, err
 	}
@@ -130,10 +136,20 @@ func (t *take) touchesTone(fromSec, toSec float64) bool {
 	return len(t.measured.Tones) == 0
 }
 
+// fileIn is the take's path as seen from the unit's folder.
+func (t *take) fileIn(folder string) string {
+	if folder != "" {
+		if path, err := filepath.Rel(folder, t.path); err == nil {
+			return filepath.ToSlash(path)
+		}
+	}
+	return t.path
+}
+
 // capture is the take in the form of the result.
-func (t *take) capture() result.Capture {
+func (t *take) capture(folder string) result.Capture {
 	c := result.Capture{
-		Role: t.role, File: t.path, SHA256: t.sha256, RateHz: t.facts.RateHz,
+		Role: t.role, File: t.fileIn(folder), SHA256: t.sha256, RateHz: t.facts.RateHz,
 		Channels: t.facts.Channels, Channel: t.channel, Bits: t.facts.Bits, Encoding: t.facts.Encoding,
 		Seconds: result.Number(t.facts.Seconds), ToneHz: result.Missing, LevelDBFS: result.Missing,
 		ScatterDB: result.Missing, NoiseDBFS: result.Missing, SNRDB: result.Missing, RMSDBFS: result.Missing,
@@ -157,27 +173,13 @@ func (t *take) capture() result.Capture {
 	return c
 }
 
-// mainTone is the tone that the loss is judged at: of several the one nearest
-// 1 kHz, of several stretches of one frequency the loudest.
+// mainTone is the tone that the take is judged at, or would be.
 func (t *take) mainTone() (analysis.Tone, bool) {
-	var best analysis.Tone
-	found := false
-	for _, tone := range t.measured.Tones {
-		if !found || nearer(tone, best) {
-			best, found = tone, true
-		}
+	switch {
+	case t.judged != nil:
+		return *t.judged, true
+	case len(t.measured.Tones) > 0:
+		return compare.NearestTo1k(t.measured.Tones), true
 	}
-	return best, found
+	return analysis.Tone{}, false
 }
-
-// nearer orders tones for mainTone.
-func nearer(a, b analysis.Tone) bool {
-	if sameFrequency(a.FreqHz, b.FreqHz) {
-		return a.LevelDBFS > b.LevelDBFS
-	}
-	return math.Abs(math.Log(a.FreqHz/1000)) < math.Abs(math.Log(b.FreqHz/1000))
-}
-
-// sameFrequency tells tones of one setting of a generator, as two machines with
-// two clocks may record them, from tones of two settings.
-func sameFrequency(a, b float64) bool { return math.Abs(a/b-1) < 0.01 }

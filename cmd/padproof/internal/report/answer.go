@@ -66,12 +66,15 @@ func checks(p *page, a *result.Answer) {
 	}
 	p.line("")
 	if a.BenchEnds != nil {
-		p.item("  bench:    ", ends(*a.BenchEnds))
+		p.item("  bench:     ", ends(*a.BenchEnds))
 	}
 	if a.ServiceEnds != nil {
-		p.item("  service:  ", ends(*a.ServiceEnds))
+		p.item("  service:   ", ends(*a.ServiceEnds))
 	}
 	for _, c := range a.Checks {
+		if c.Name == "loss" && c.AtHz != nil {
+			p.item("  judged at: ", hertz(*c.AtHz, 1))
+		}
 		if c.Ratio.OK() {
 			p.item("  ", fmt.Sprintf("The limits of %s are %s times as wide as U.", c.Name, significant(float64(c.Ratio))))
 		}

@@ -50,6 +50,7 @@ type Check struct {
 	High        Number  `json:"high"`
 	Uncertainty Number  `json:"uncertainty"`
 	Reason      string  `json:"reason"`
+	AtHz        *Number `json:"at_hz,omitempty"` // the frequency judged at
 	Ratio       Number  `json:"tolerance_ratio"` // half-width of the limits over the uncertainty
 	Bench       *Figure `json:"bench,omitempty"`
 	Spread      *Spread `json:"spread,omitempty"`

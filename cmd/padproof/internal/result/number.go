@@ -33,3 +33,9 @@ func (n *Number) UnmarshalJSON(text []byte) error {
 	}
 	return json.Unmarshal(text, (*float64)(n))
 }
+
+// NumberOf is a figure for a field that may be left out.
+func NumberOf(v float64) *Number {
+	n := Number(v)
+	return &n
+}

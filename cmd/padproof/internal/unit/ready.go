@@ -81,7 +81,7 @@ func (u *Unit) mend(roles []string) string {
 	case u.Folder == "":
 		return "name the take straight through with --before and the one through the pad with --after"
 	case layout == FlatLot || layout == FolderLot:
-		return "this folder holds a lot of units; check one with its own folder, all with padproof lot"
+		return "this folder holds a lot of units; check them one by one, by folder or with --before and --after"
 	case len(roles) == 2:
 		return "record the tone straight through as " + u.nameOf(Before) + " and through the pad as " + u.nameOf(After) +
 			", or both at once as " + u.nameOf(Both)

@@ -167,7 +167,7 @@ func TestOpenErrors(t *testing.T) {
 		{"after above", "lot/0417", []string{"lot/after.wav", "lot/before.wav", "lot/0417/"}, "after.wav is missing", "lot/after.wav serves no unit: move it", "lot/0417"},
 		{"name misspelt", "0417", []string{"0417/befor.wav", "0417/after.wav"}, "before.wav is missing", "befor.wav is there: if it is the one, rename it to before.wav", "0417"},
 		{"another format", "0417", []string{"0417/before.wav", "0417/after.flac"}, "after.wav is missing", "0417/after.flac is there: save it again as WAV", "0417"},
-		{"a lot of folders", "lot", []string{"lot/before.wav", "lot/0417/after.wav"}, "after.wav is missing", "padproof lot", "lot"},
+		{"a lot of folders", "lot", []string{"lot/before.wav", "lot/0417/after.wav"}, "after.wav is missing", "one by one", "lot"},
 		{"a flat lot", "lot", []string{"lot/0417.before.wav", "lot/0417.x.after.wav", "lot/0418.rig-noise.wav"}, "are missing", "", "lot"},
 		{"two takes for a role", "0417", []string{"0417/before.wav", "0417/BEFORE.wav", "0417/after.wav"}, "and BEFORE.wav are two files for one role", "keep one", "0417/before.wav"},
 		{"two shared takes for a role", "lot/0417", []string{"lot/before.wav", "lot/Before.wav", "lot/0417/after.wav"}, "are two files for one role", "keep one", "lot/before.wav"},
