@@ -2,8 +2,10 @@ package compare
 
 import (
 	"math"
+	"slices"
 
 	"padproof/compare/network"
+	"padproof/compare/uncertainty"
 )
 
 // An over is how a bench deviation carries over to service.
@@ -72,113 +74,89 @@ func othersDB(c *network.Circuit, e network.Ends, freqHz float64, but int) float
 	return sum
 }
 
-// othersOf is othersDB of the drawing, or of the drawing with the part shorted
-// or open where the others then weigh more.
-func (k LossCase) othersOf(index int) float64 {
-	ref := k.Circuit.Parts()[index].Ref
-	most := 0.0
-	for _, c := range []*network.Circuit{k.Circuit, k.Circuit.With(ref, 0), k.Circuit.With(ref, math.Inf(1))} {
-		if !math.IsInf(c.LossDB(k.Rig.Ends, k.Reading.FreqHz), 0) {
-			most = math.Max(most, othersDB(c, k.Rig.Ends, k.Reading.FreqHz, index))
+// A fitting value is one of a part that, moved there alone, explains a bench
+// loss, with what then holds in service.
+type fitting struct {
+	value     float64
+	withinDB  float64 // how closely it had to fit
+	serviceDB float64 // with this value alone; +Inf where nothing comes through
+
+	// Carried over from there: what the value does not explain of the reading is
+	// laid to the other parts.
+	carriedDB  float64
+	carriedUDB float64 // expanded: what the other parts, the reading and the rig leave open
+
+	aloneLeftDB float64 // standard uncertainty that the others bring when all is laid to this part
+}
+
+// valuesThatFit moves one part alone from 0 to infinity and keeps the values
+// that explain the bench loss within the doubt of the reading, of the rig and of
+// the other parts. That doubt is the one of the circuit with the value in it: a
+// wrong part may make rig and other parts weigh far more than on the drawing.
+// uDB is the expanded uncertainty of the bench loss on the drawing.
+func (k LossCase) valuesThatFit(index int, benchDB, uDB float64) []fitting {
+	part := k.Circuit.Parts()[index]
+	own := uncertainty.Budget{Terms: k.Reading.Terms}.CombinedU()
+	factor := 2.0
+	if drawn := math.Hypot(own, k.Rig.cornerDB(k.Circuit, k.Reading.FreqHz)/math.Sqrt(3)); drawn > 0 && uDB > 2*drawn {
+		factor = uDB / drawn // few degrees of freedom
+	}
+	width := uDB + othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, index)
+	var fits []fitting
+	for _, value := range k.candidates(part, benchDB, width) {
+		if f, ok := k.fit(index, value, benchDB, own, factor); ok {
+			fits = append(fits, f)
 		}
 	}
-	return most
+	return fits
 }
 
-// A moved part is one that, moved alone, explains a bench loss, with the
-// service losses that go with it.
-type moved struct {
-	index                       int
-	lowValue, highValue         float64 // hull of the values that fit, 0 to +Inf
-	serviceLowDB, serviceHighDB float64
-	leftDB                      float64 // what the other parts leave open, a standard uncertainty
-}
-
-// movedParts moves each part alone from 0 to infinity and keeps the values at
-// which the bench loss lies within uDB, and what the other parts may bring, of
-// benchDB; the service losses are those of the moved part alone.
-func movedParts(k LossCase, benchDB, uDB float64) []moved {
-	var all []moved
-	for i := range k.Circuit.Parts() {
-		if m, ok := movePart(k, i, benchDB, uDB+k.othersOf(i), k.serviceOf); ok {
-			all = append(all, m)
-		}
-	}
-	return all
-}
-
-// movePart moves one part; service says which service loss goes with a value of
-// it and a bench loss.
-func movePart(k LossCase, index int, benchDB, widthDB float64, service func(index int, value, benchDB float64) (serviceDB, leftDB float64)) (moved, bool) {
-	p := k.Circuit.Parts()[index]
-	fits := k.Circuit.ValuesForLoss(k.Rig.Ends, k.Reading.FreqHz, p.Ref, benchDB-widthDB, benchDB+widthDB)
-	if len(fits) == 0 {
-		return moved{}, false
-	}
-	m := moved{
-		index: index, lowValue: fits[0].Low, highValue: fits[len(fits)-1].High,
-		serviceLowDB: math.Inf(1), serviceHighDB: math.Inf(-1),
-	}
-	for _, fit := range fits {
-		for _, value := range valuesWithin(fit.Low, fit.High, p.Value) {
-			serviceDB, left := service(index, value, benchDB)
-			if math.IsNaN(serviceDB) {
-				continue
-			}
-			m.serviceLowDB = math.Min(m.serviceLowDB, serviceDB)
-			m.serviceHighDB = math.Max(m.serviceHighDB, serviceDB)
-			m.leftDB = math.Max(m.leftDB, left)
-		}
-	}
-	return m, m.serviceLowDB <= m.serviceHighDB
-}
-
-// serviceWith is the service loss where the part at index has the given value
-// and the bench read benchDB; what that value does not explain of the reading
-// is carried over on account of the other parts.
-func (k LossCase) serviceWith(index int, value, benchDB float64) (serviceDB, leftDB float64) {
+// fit tries one value.
+func (k LossCase) fit(index int, value, benchDB, own, factor float64) (fitting, bool) {
+	freqHz := k.Reading.FreqHz
 	c := k.Circuit.With(k.Circuit.Parts()[index].Ref, value)
-	bench, service := c.LossDB(k.Rig.Ends, k.Reading.FreqHz), c.LossDB(k.Service, k.Reading.FreqHz)
-	if math.IsInf(bench, 0) || math.IsInf(service, 0) {
-		return service, 0
+	bench := c.LossDB(k.Rig.Ends, freqHz)
+	if math.IsInf(bench, 0) || math.IsNaN(bench) {
+		return fitting{}, false
 	}
-	over := carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsBut(c, index, 0))
-	return service + over.beta*(benchDB-bench), over.leftDB
+	corner := k.Rig.cornerDB(c, freqHz)
+	f := fitting{value: value, withinDB: factor*own + corner + othersDB(c, k.Rig.Ends, freqHz, index)}
+	if math.Abs(bench-benchDB) > f.withinDB*(1+1e-9) {
+		return fitting{}, false
+	}
+	f.serviceDB = c.LossDB(k.Service, freqHz)
+	f.carriedDB = f.serviceDB
+	if math.IsInf(f.serviceDB, 0) {
+		return f, true
+	}
+	const unknown = 1 // relative: a factor of e
+	f.aloneLeftDB = carryOver(c, k.Rig.Ends, k.Service, freqHz, doubtsBut(c, index, unknown)).leftDB
+	over := carryOver(c, k.Rig.Ends, k.Service, freqHz, doubtsBut(c, index, 0))
+	f.carriedDB += over.beta * (benchDB - bench)
+	f.carriedUDB = math.Hypot(1.96*over.leftDB, over.beta*factor*math.Hypot(own, corner/math.Sqrt(3)))
+	return f, true
 }
 
-// serviceOf is the service loss where the part at index has the given value and
-// nothing else is carried over. What is left is the doubt that the other parts
-// bring in when all that the bench read is laid to the moved one, of which
-// nothing is known beforehand.
-func (k LossCase) serviceOf(index int, value, _ float64) (serviceDB, leftDB float64) {
-	c := k.Circuit.With(k.Circuit.Parts()[index].Ref, value)
-	if service := c.LossDB(k.Service, k.Reading.FreqHz); !math.IsInf(service, 0) {
-		const unknown = 1 // relative: a factor of e
-		return service, carryOver(c, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsBut(c, index, unknown)).leftDB
-	}
-	return math.Inf(1), 0
-}
-
-// valuesWithin samples an interval of values evenly on a logarithmic scale, its
-// ends among them; 0 and +Inf are reached by way of a thousandth and a thousand
-// times the nominal value.
-func valuesWithin(low, high, nominal float64) []float64 {
-	const points = 9
-	values := []float64{low}
-	from, to := low, high
+// candidates are the values that are tried: 0 and infinity, six a decade around
+// the nominal one, and those at which the drawing's own doubt would end.
+func (k LossCase) candidates(part network.Part, benchDB, widthDB float64) []float64 {
+	nominal := part.Value
 	if nominal <= 0 || math.IsInf(nominal, 0) {
 		nominal = 1
 	}
-	if from <= 0 {
-		from = math.Min(nominal/1000, to)
+	values := []float64{0, math.Inf(1)}
+	const perDecade, decades = 6, 4
+	for i := -perDecade * decades; i <= perDecade*decades; i++ {
+		values = append(values, nominal*math.Pow(10, float64(i)/perDecade))
 	}
-	if math.IsInf(to, 0) {
-		to = math.Max(nominal*1000, from)
-	}
-	if from > 0 && to > from {
-		for i := 0; i <= points; i++ {
-			values = append(values, from*math.Pow(to/from, float64(i)/points))
+	for _, span := range k.Circuit.ValuesForLoss(k.Rig.Ends, k.Reading.FreqHz, part.Ref, benchDB-widthDB, benchDB+widthDB) {
+		values = append(values, span.Low, span.High)
+		if span.Low > 0 && !math.IsInf(span.High, 0) {
+			for i := 1; i < 8; i++ {
+				values = append(values, span.Low*math.Pow(span.High/span.Low, float64(i)/8))
+			}
 		}
 	}
-	return append(values, high)
+	slices.Sort(values)
+	return slices.Compact(values)
 }

@@ -6,10 +6,10 @@
 //  1. [ReadLoss] makes the bench loss, with its own uncertainty terms, of the
 //     tone as two takes measured it.
 //  2. [JudgeLoss] carries it over to the service condition through the model of
-//     package network, with the whole uncertainty budget, and lists the parts
-//     that this bench could not have seen.
+//     package network, with the whole uncertainty budget; [FindUnseen] lists the
+//     parts that this bench could not have seen.
 //  3. [Decide] holds a figure and its expanded uncertainty against a [Limit].
-//  4. [PairProblems] names what is wrong between two takes, and [Voids] says
+//  4. [PairTones] and [PairProblems] name what is wrong between two takes, and [Voids] says
 //     which checks a problem takes the ground from.
 //
 // # Units and signs

@@ -40,6 +40,7 @@ type Loss struct {
 	BenchUDB        float64 // expanded, of the difference of the two
 
 	ServiceDB         float64 // carried over; NaN where no part alone explains the reading
+	AtLeastDB         float64 // where ServiceDB is NaN since a part may be open for good: the least there may be, U taken off; else NaN
 	ServiceExpectedDB float64 // what the drawing gives in service
 	UDB               float64 // expanded, of ServiceDB
 
@@ -48,7 +49,8 @@ type Loss struct {
 	Outside bool               // the bench deviation is more than the tolerances and U allow
 }
 
-const coverage = 0.95
+// Coverage is the probability that U covers (JCGM 100).
+const Coverage = 0.95
 
 // JudgeLoss carries the reading over to service. Where the bench deviation lies
 // within the worst case of the tolerances plus U, the service loss is
@@ -58,17 +60,18 @@ const coverage = 0.95
 // and otherwise the middle of the range of service losses that any single part,
 // moved alone until it explains the bench loss within U, would give, or two
 // parts swapped, or no pad at all. Where nothing of the kind explains it, ServiceDB and UDB are NaN: the reading then proves
-// nothing about service. A reading of NaN gives NaN throughout.
+// nothing about service. A reading of NaN gives a ServiceDB of NaN.
 func JudgeLoss(k LossCase) (Loss, error) {
 	c, f := k.Circuit, k.Reading.FreqHz
 	l := Loss{
 		BenchDB:           k.Reading.LossDB,
 		BenchExpectedDB:   c.LossDB(k.Rig.Ends, f),
 		ServiceExpectedDB: c.LossDB(k.Service, f),
+		AtLeastDB:         math.NaN(),
 	}
 	bench := uncertainty.Budget{Terms: append(append([]uncertainty.Term(nil), k.Reading.Terms...), rigTerms(k, 1)...)}
 	var err error
-	if l.BenchUDB, err = bench.ExpandedU(coverage); err != nil {
+	if l.BenchUDB, err = bench.ExpandedU(Coverage); err != nil {
 		return Loss{}, err
 	}
 
@@ -84,7 +87,7 @@ func JudgeLoss(k LossCase) (Loss, error) {
 	if over.leftDB > 0 {
 		l.Budget.Terms = append(l.Budget.Terms, uncertainty.FromNormal("carry-over", over.leftDB, 1))
 	}
-	l.UDB, err = l.Budget.ExpandedU(coverage)
+	l.UDB, err = l.Budget.ExpandedU(Coverage)
 	return l, err
 }
 
@@ -99,34 +102,53 @@ const straightDB = 0.1
 // The truth is likely at one of the range's ends, where one part or another is
 // the culprit, so U holds the whole range and not 95 % of it.
 func judgeOutside(k LossCase, l Loss) (Loss, error) {
-	low, high, leftDB := math.Inf(1), math.Inf(-1), 0.0
-	reach := func(fromDB, toDB, left float64) {
-		low, high, leftDB = math.Min(low, fromDB), math.Max(high, toDB), math.Max(leftDB, left)
+	r := k.explain(l)
+	l.ServiceDB, l.UDB = math.NaN(), math.NaN()
+	if r.lowDB > r.highDB {
+		return l, nil
 	}
-	for _, m := range movedParts(k, l.BenchDB, l.BenchUDB) {
-		reach(m.serviceLowDB, m.serviceHighDB, m.leftDB)
+	l.Beta = 0
+	rest := uncertainty.Budget{Terms: serviceTerms(k, 0)}
+	if r.leftDB > 0 {
+		rest.Terms = append(rest.Terms, uncertainty.FromNormal("other parts", r.leftDB, 1))
+	}
+	restUDB, err := rest.ExpandedU(Coverage)
+	if math.IsInf(r.highDB, 1) {
+		l.AtLeastDB = r.lowDB - restUDB
+		return l, err
+	}
+	half := (r.highDB - r.lowDB) / 2
+	l.ServiceDB, l.UDB = r.lowDB+half, half+restUDB
+	l.Budget.Terms = append(rest.Terms, uncertainty.FromRectangle("carry-over", half, 1))
+	return l, err
+}
+
+// A reach is the range of service losses that go with a bench loss.
+type reach struct {
+	lowDB, highDB float64 // low above high: nothing explains the bench loss
+	leftDB        float64 // what parts within tolerance leave open, a standard uncertainty
+}
+
+func (r *reach) include(fromDB, toDB, leftDB float64) {
+	r.lowDB, r.highDB, r.leftDB = math.Min(r.lowDB, fromDB), math.Max(r.highDB, toDB), math.Max(r.leftDB, leftDB)
+}
+
+// explain collects what explains a bench loss outside the tolerances.
+func (k LossCase) explain(l Loss) reach {
+	r := reach{lowDB: math.Inf(1), highDB: math.Inf(-1)}
+	for i := range k.Circuit.Parts() {
+		for _, v := range k.valuesThatFit(i, l.BenchDB, l.BenchUDB) {
+			r.include(v.serviceDB, v.serviceDB, v.aloneLeftDB)
+		}
 	}
 	for _, w := range k.swapsThatFit(l.BenchDB, l.BenchUDB) {
 		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
-		reach(w.serviceDB, w.serviceDB, over.leftDB)
+		r.include(w.serviceDB, w.serviceDB, over.leftDB)
 	}
 	if math.Abs(l.BenchDB) <= l.BenchUDB+straightDB {
-		reach(0, 0, 0)
+		r.include(0, 0, 0)
 	}
-	l.ServiceDB, l.UDB = math.NaN(), math.NaN()
-	if low > high || math.IsInf(low, 0) || math.IsInf(high, 0) {
-		return l, nil
-	}
-	l.ServiceDB = (low + high) / 2
-	l.Beta = 0
-	rest := uncertainty.Budget{Terms: serviceTerms(k, 0)}
-	if leftDB > 0 {
-		rest.Terms = append(rest.Terms, uncertainty.FromNormal("other parts", leftDB, 1))
-	}
-	restUDB, err := rest.ExpandedU(coverage)
-	l.UDB = (high-low)/2 + restUDB
-	l.Budget.Terms = append(rest.Terms, uncertainty.FromRectangle("carry-over", (high-low)/2, 1))
-	return l, err
+	return r
 }
 
 // serviceTerms are those of the reading and of the rig, as far as they reach
@@ -138,32 +160,4 @@ func serviceTerms(k LossCase, beta float64) []uncertainty.Term {
 		terms = append(terms, t)
 	}
 	return append(terms, rigTerms(k, beta)...)
-}
-
-// rigTerms are the rig's impedances through the model's own sensitivities,
-// taken over the whole width of each rectangle. The measured loss holds the
-// true impedances and the modelled one the stated, so a larger loss at a larger
-// source lowers the difference: the sign is minus.
-func rigTerms(k LossCase, beta float64) []uncertainty.Term {
-	var terms []uncertainty.Term
-	add := func(source string, half float64, move func(e *network.Ends, by float64)) {
-		if !(half > 0) {
-			return
-		}
-		below, above := k.Rig.Ends, k.Rig.Ends
-		move(&below, -half)
-		move(&above, half)
-		slope := (k.Circuit.LossDB(above, k.Reading.FreqHz) - k.Circuit.LossDB(below, k.Reading.FreqHz)) / (2 * half)
-		if math.IsNaN(slope) || math.IsInf(slope, 0) {
-			slope = 0 // nothing comes through, whatever the rig
-		}
-		terms = append(terms, uncertainty.FromRectangle(source, half, -beta*slope))
-	}
-	e := k.Rig.Ends
-	add("source impedance", k.Rig.SourceTolFrac*e.SourceOhms, func(e *network.Ends, by float64) { e.SourceOhms = math.Max(0, e.SourceOhms+by) })
-	if !math.IsInf(e.LoadOhms, 0) {
-		add("load impedance", k.Rig.LoadTolFrac*e.LoadOhms, func(e *network.Ends, by float64) { e.LoadOhms = math.Max(0, e.LoadOhms+by) })
-	}
-	add("cable capacitance", k.Rig.CableTolFarads, func(e *network.Ends, by float64) { e.CableFarads = math.Max(0, e.CableFarads+by) })
-	return terms
 }

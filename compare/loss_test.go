@@ -208,7 +208,7 @@ func TestServiceLossOfWrongPartCovered(t *testing.T) {
 				inside++
 			}
 		}
-		if share := float64(inside) / float64(outside); share < 0.94 {
+		if share := float64(inside) / float64(outside); outside < units/4 || share < 0.94 {
 			t.Errorf("%s: true service loss inside U in %.3f of %d, want at least 0.95", name, share, outside)
 		}
 	}

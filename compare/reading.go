@@ -17,7 +17,7 @@ type Gains struct {
 }
 
 // ReadLoss is the insertion loss on the bench from the same tone in before and
-// in after, at after's frequency.
+// in after, at before's frequency.
 func ReadLoss(before, after analysis.Tone, g Gains) LossReading {
 	r := LossReading{
 		LossDB: before.LevelDBFS - after.LevelDBFS + g.AfterDB,

@@ -20,46 +20,50 @@ type Unseen struct {
 
 // FindUnseen lists the parts that the bench cannot have proven: moved alone
 // from 0 to infinity, or swapped with another, they fit the bench loss within U
-// plus the spread of the other parts and yet, carried over from there in the
-// same way, break the limit in service. A loss is PASS only where the list
+// plus what the other parts may bring and yet, carried over from there with its
+// own doubt, may break the limit in service. A loss is PASS only where the list
 // is empty or something else taken rules each entry out. benchDB is the bench
-// loss as recorded; the modelled one tells what a bench could see at all.
+// loss as recorded, benchUDB its expanded uncertainty on the drawing.
 func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
-	if math.IsNaN(benchDB) || math.IsInf(benchDB, 0) {
-		return nil
+	if math.IsNaN(benchDB) || math.IsInf(benchDB, 0) || k.Rig.Ends == k.Service {
+		return nil // where bench and service are alike, what was read is the answer
 	}
 	var all []Unseen
-	parts := k.Circuit.Parts()
-	for i, p := range parts {
-		width := benchUDB + k.othersOf(i)
-		m, ok := movePart(k, i, benchDB, width, k.serviceWith)
-		if !ok || limit.Holds(m.serviceLowDB) && limit.Holds(m.serviceHighDB) {
+	for i, p := range k.Circuit.Parts() {
+		fits := k.valuesThatFit(i, benchDB, benchUDB)
+		breaking, broken := nearestBreaking(fits, p, limit)
+		if !broken {
 			continue
 		}
 		u := Unseen{
-			Refs: []string{p.Ref}, Kind: p.Kind, LowValue: m.lowValue, HighValue: m.highValue,
-			ServiceLowDB: m.serviceLowDB, ServiceHighDB: m.serviceHighDB,
-			WithinDB: width,
+			Refs: []string{p.Ref}, Kind: p.Kind, LowValue: fits[0].value, HighValue: fits[len(fits)-1].value,
+			ServiceLowDB: math.Inf(1), ServiceHighDB: math.Inf(-1), WithinDB: breaking.withinDB,
+			Reading: bestReading(k.Circuit, k.Circuit.With(p.Ref, breaking.value)),
+		}
+		for _, f := range fits {
+			u.ServiceLowDB, u.ServiceHighDB = math.Min(u.ServiceLowDB, f.carriedDB), math.Max(u.ServiceHighDB, f.carriedDB)
 		}
 		u.SourceOhms, u.LoadOhms = k.betterEnds(i)
-		u.Reading = bestReading(k.Circuit, k.Circuit.With(p.Ref, k.breakingValue(i, m, benchDB, limit)))
 		all = append(all, u)
 	}
 	return append(all, k.unseenSwaps(benchDB, benchUDB, limit)...)
 }
 
-// breakingValue is the value nearest the drawing's at which the limit breaks.
-func (k LossCase) breakingValue(index int, m moved, benchDB float64, limit Limit) float64 {
-	nominal := k.Circuit.Parts()[index].Value
-	best, least := m.highValue, math.Inf(1)
-	for _, v := range valuesWithin(m.lowValue, m.highValue, nominal) {
-		serviceDB, _ := k.serviceWith(index, v, benchDB)
-		far := math.Abs(math.Log(v / nominal)) // 0, Inf and a nominal link are all "far"
-		if !limit.Holds(serviceDB) && (far < least || math.IsInf(least, 1)) {
-			best, least = v, far
+// nearestBreaking is the value nearest the drawing's, outside its tolerance, at
+// which the limit may break. Within tolerance the answer's own U speaks.
+func nearestBreaking(fits []fitting, p network.Part, limit Limit) (best fitting, found bool) {
+	least := math.Inf(1)
+	for _, f := range fits {
+		if math.Abs(f.value-p.Value) <= p.TolFrac*p.Value*(1+1e-9) ||
+			limit.Holds(f.carriedDB-f.carriedUDB) && limit.Holds(f.carriedDB+f.carriedUDB) {
+			continue
+		}
+		far := math.Abs(math.Log(f.value / p.Value)) // 0, open and a nominal link are all far
+		if !found || far < least {
+			best, least, found = f, far, true
 		}
 	}
-	return best
+	return best, found
 }
 
 // betterEnds are the service's source, load or both: the least change of the
@@ -69,13 +73,16 @@ func (k LossCase) betterEnds(index int) (sourceOhms, loadOhms float64) {
 	wanted := sees(k.Service) / 2
 	withLoad, withSource := k.Rig.Ends, k.Rig.Ends
 	withLoad.LoadOhms, withSource.SourceOhms = k.Service.LoadOhms, k.Service.SourceOhms
+	newLoad, newSource := withLoad != k.Rig.Ends, withSource != k.Rig.Ends
 	switch {
-	case sees(withLoad) >= wanted:
+	case newLoad && sees(withLoad) >= wanted:
 		return math.NaN(), k.Service.LoadOhms
-	case sees(withSource) >= wanted:
+	case newSource && sees(withSource) >= wanted:
 		return k.Service.SourceOhms, math.NaN()
+	case newLoad && newSource:
+		return k.Service.SourceOhms, k.Service.LoadOhms
 	}
-	return k.Service.SourceOhms, k.Service.LoadOhms
+	return math.NaN(), math.NaN()
 }
 
 func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
@@ -83,7 +90,8 @@ func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
 	for _, w := range k.swapsThatFit(benchDB, benchUDB) {
 		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
 		service := w.serviceDB + over.beta*(benchDB-w.benchDB)
-		if limit.Holds(service) {
+		doubt := math.Hypot(1.96*over.leftDB, over.beta*benchUDB)
+		if limit.Holds(service-doubt) && limit.Holds(service+doubt) {
 			continue
 		}
 		all = append(all, Unseen{

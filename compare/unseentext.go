@@ -20,9 +20,9 @@ func (u Unseen) Text() string {
 		loss = tenths(u.ServiceLowDB) + " dB"
 	}
 	if len(u.Refs) == 2 {
-		fmt.Fprintf(&b, "swapped, this bench would read the same within %.2g dB, but the loss in service would be %s.", u.WithinDB, loss)
+		fmt.Fprintf(&b, "swapped, this bench would read the same within %.2g dB, but the loss in service might be %s.", u.WithinDB, loss)
 	} else {
-		fmt.Fprintf(&b, "anything from %s to %s would read the same here within %.2g dB, but the loss in service would be %s.",
+		fmt.Fprintf(&b, "anything from %s to %s would read the same here within %.2g dB, but the loss in service might be %s.",
 			partValue(u.Kind, u.LowValue), partValue(u.Kind, u.HighValue), u.WithinDB, loss)
 	}
 	if r := u.Reading; r.PinA != "" {
@@ -39,7 +39,7 @@ func (u Unseen) Text() string {
 func (u Unseen) ends() string {
 	source, load := "a source of "+partValue(network.Resistor, u.SourceOhms), "a load of "+partValue(network.Resistor, u.LoadOhms)
 	switch {
-	case math.IsInf(u.LoadOhms, 0):
+	case math.IsInf(u.LoadOhms, 0) || math.IsNaN(u.SourceOhms) && math.IsNaN(u.LoadOhms):
 		return ""
 	case math.IsNaN(u.SourceOhms):
 		return load

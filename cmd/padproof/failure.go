@@ -24,9 +24,9 @@ func usageError(cmd *cobra.Command, format string, args ...any) error {
 
 // reportError prints what could not be done: one object on stdout with --json,
 // else text on stderr.
-func reportError(cmd *cobra.Command, err error, stdout, stderr io.Writer) {
+func reportError(cmd *cobra.Command, err error, asJSON bool, stdout, stderr io.Writer) {
 	e := describe(err)
-	if cmd != nil && wantsJSON(cmd) {
+	if asJSON || cmd != nil && wantsJSON(cmd) {
 		if writeJSON(stdout, result.Failure{Schema: schemaOf(cmd), Unit: unitOf(err), Error: *e}) == nil {
 			return
 		}
@@ -41,11 +41,18 @@ func reportError(cmd *cobra.Command, err error, stdout, stderr io.Writer) {
 func schemaOf(cmd *cobra.Command) string {
 	schema, known := map[string]string{
 		"predict": result.PredictSchema, "signal": result.SignalSchema, "rehearse": result.RehearseSchema,
-	}[cmd.Name()]
+	}[commandName(cmd)]
 	if !known {
 		return result.CheckSchema
 	}
 	return schema
+}
+
+func commandName(cmd *cobra.Command) string {
+	if cmd == nil {
+		return ""
+	}
+	return cmd.Name()
 }
 
 // describe turns any error into the one form that is printed.

@@ -2,7 +2,9 @@ package main
 
 import (
 	"errors"
+	"fmt"
 	"io"
+	"slices"
 
 	"github.com/spf13/cobra"
 )
@@ -21,7 +23,13 @@ type exitStatus int
 func (exitStatus) Error() string { return "" }
 
 // run carries out one command line and returns the exit status.
-func run(args []string, stdout, stderr io.Writer) int {
+func run(args []string, stdout, stderr io.Writer) (status int) {
+	defer func() {
+		if r := recover(); r != nil { // Go's own exit status for it would read as UNPROVEN
+			fmt.Fprintf(stderr, "padproof: error: a fault in padproof itself: %v\npadproof: hint: please report it, with the files and the command\n", r)
+			status = exitNoCheck
+		}
+	}()
 	root := newRoot()
 	root.SetArgs(args)
 	root.SetOut(stdout)
@@ -30,11 +38,11 @@ func run(args []string, stdout, stderr io.Writer) int {
 	if err == nil {
 		return exitPass
 	}
-	var status exitStatus
-	if errors.As(err, &status) {
-		return int(status)
+	var said exitStatus
+	if errors.As(err, &said) {
+		return int(said)
 	}
-	reportError(cmd, err, stdout, stderr)
+	reportError(cmd, err, slices.Contains(args, "--json"), stdout, stderr)
 	return exitNoCheck
 }
 

@@ -213,7 +213,7 @@ func decide(check *result.Check, verdict compare.Verdict, reason string, limit c
 
 // noLoss is the check where one of the takes holds no tone to compare.
 func noLoss(d *Drawing, before, after *take) result.Check {
-	const toneHz = 997
+	const toneHz = analysis.ToneHz
 	check := lossOf()
 	expected := math.NaN()
 	if d.Circuit != nil {

@@ -17,6 +17,9 @@ func (d *Drawing) judgeLoss(k compare.LossCase, loss compare.Loss, limit compare
 	if err != nil {
 		return compare.Unproven, err.Error(), nil
 	}
+	if loss.AtLeastDB > limit.High {
+		return compare.Fail, fmt.Sprintf("every part that would explain the reading, moved alone, gives %.2f dB or more in service", loss.AtLeastDB), nil
+	}
 	if math.IsNaN(loss.ServiceDB) {
 		return compare.Unproven, "no single part of the drawing, and no swap of two, explains what was read on the bench; look at gain, source and load, or measure the parts", nil
 	}
@@ -45,15 +48,16 @@ func settles(b uncertainty.Budget) string {
 		return ""
 	}
 	mend := map[string]string{
-		"source impedance":       "measure the source impedance and state it with its tolerance in rig.toml, [output] source_ohms and tolerance",
-		"load impedance":         "measure the load and state it with its tolerance in rig.toml, [input] load_ohms and tolerance",
-		"cable capacitance":      "state [input] cable_pF in rig.toml",
-		"linearity":              "state [calibration] linearity_db in rig.toml as the interface's maker gives it",
-		"gain drift":             "touch no knob between the takes and state [calibration] gain_drift_db in rig.toml",
-		"gain raised for after":  "measure the gain step and state [calibration] after_gain_uncertainty_db in rig.toml, or keep the gain",
-		"carry-over":             "use parts of a closer tolerance, or a bench with the source and load of the service",
-		"other parts":            "use a bench with the source and load of the service",
-		"repeatability of after": "record after again, longer or with more level, nothing moving",
+		"source impedance":                "measure the source impedance and state it with its tolerance in rig.toml, [output] source_ohms and tolerance",
+		"load impedance":                  "measure the load and state it with its tolerance in rig.toml, [input] load_ohms and tolerance",
+		"cable capacitance":               "state [input] cable_pF in rig.toml",
+		"source, load and cable together": "measure source and load and state them with their tolerances in rig.toml",
+		"linearity":                       "state [calibration] linearity_db in rig.toml as the interface's maker gives it",
+		"gain drift":                      "touch no knob between the takes and state [calibration] gain_drift_db in rig.toml",
+		"gain raised for after":           "measure the gain step and state [calibration] after_gain_uncertainty_db in rig.toml, or keep the gain",
+		"carry-over":                      "use parts of a closer tolerance, or a bench with the source and load of the service",
+		"other parts":                     "use a bench with the source and load of the service",
+		"repeatability of after":          "record after again, longer or with more level, nothing moving",
 	}[largest.Source]
 	if mend == "" {
 		mend = "record before again, longer or with more level, nothing moving"

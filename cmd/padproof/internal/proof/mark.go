@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 
+	"padproof/analysis"
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
@@ -131,7 +132,7 @@ func (a answer) eitherCheck(d *Drawing, reading compare.LossReading, mark *Mark)
 // read, against the mark where the mark is for this bench.
 func (a answer) benchCheck(d *Drawing, reading compare.LossReading, mark *Mark) (result.Check, error) {
 	budget := uncertainty.Budget{Terms: reading.Terms}
-	u, err := budget.ExpandedU(0.95)
+	u, err := budget.ExpandedU(compare.Coverage)
 	if err != nil {
 		return result.Check{}, err
 	}
@@ -170,7 +171,7 @@ func (a answer) withoutMark(check result.Check, d *Drawing, mark *Mark) (result.
 		if err != nil {
 			return check, err
 		}
-		a.Notes = append(a.Notes, fmt.Sprintf("a matched %.4g Ω pad of %.2f dB would read %.2f dB on this bench", ohms, lossDB, c.LossDB(d.Rig.Ends, 997)))
+		a.Notes = append(a.Notes, fmt.Sprintf("a matched %.4g Ω pad of %.2f dB would read %.2f dB on this bench", ohms, lossDB, c.LossDB(d.Rig.Ends, analysis.ToneHz)))
 	}
 	return check, nil
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/cmplx"
 
+	"padproof/analysis"
 	"padproof/cmd/padproof/internal/result"
 	"padproof/compare"
 	"padproof/compare/network"
@@ -27,7 +28,7 @@ type PredictOptions struct {
 
 // DefaultPredict is the tone of the test signal, a loud line level and the
 // largest current of a P48 microphone (IEC 61938).
-var DefaultPredict = PredictOptions{ToneHz: 997, InputDBu: 24, PhantomMA: 10}
+var DefaultPredict = PredictOptions{ToneHz: analysis.ToneHz, InputDBu: 24, PhantomMA: 10}
 
 // Predict says what a drawing should measure on its rig and in service, what
 // this bench could not see, and which recordings to make.
@@ -44,7 +45,7 @@ func Predict(d *Drawing, o PredictOptions) (*result.Prediction, error) {
 		Unseen:  []result.Unseen{}, Budget: []result.Term{},
 		Recordings: recordings(d),
 		Assumed:    d.assumed(),
-		Warnings:   warnings(d),
+		Warnings:   warnings(d, o.ToneHz),
 		Cautions:   result.Cautions,
 	}
 	return p, d.foretell(p, o.ToneHz)
@@ -57,7 +58,7 @@ func (d *Drawing) foretell(p *result.Prediction, toneHz float64) error {
 		p.Reason = "nothing comes through this drawing at the tone"
 		return nil
 	}
-	reading := compare.LossReading{LossDB: expected + 0, FreqHz: toneHz, Terms: append([]uncertainty.Term{
+	reading := compare.LossReading{LossDB: expected, FreqHz: toneHz, Terms: append([]uncertainty.Term{
 		uncertainty.FromSample("repeatability of before", goodStdErrDB, goodStdErrDof, 1),
 		uncertainty.FromSample("repeatability of after", goodStdErrDB, goodStdErrDof, 1),
 	}, d.Gains.Terms()...)}
@@ -76,6 +77,14 @@ func (d *Drawing) foretell(p *result.Prediction, toneHz float64) error {
 	p.Limit = &result.Limit{Low: result.Number(limit.Low), High: result.Number(limit.High)}
 	verdict, reason, unseen := d.judgeLoss(k, loss, limit)
 	p.Verdict, p.Reason = string(verdict), reason
+	switch pending := pendingChecks(d.Limits); {
+	case verdict == compare.Fail && reason == "":
+		p.Reason = "the limits do not hold what the drawing gives"
+	case verdict == compare.Pass && d.Limits.RequireTestSignal:
+		p.Verdict, p.Reason = string(compare.Unproven), "the drawing asks for the test signal, which this version does not read in full"
+	case verdict == compare.Pass && len(pending) > 0:
+		p.Verdict, p.Reason = string(compare.Unproven), "limits are set that this version does not prove yet: "+pending[0].Name
+	}
 	p.Unseen = unseenOf(unseen)
 	return nil
 }
@@ -158,17 +167,17 @@ func phantomOf(c *network.Circuit, milliamps float64) *result.Phantom {
 
 // warnings are what a drawing on its ends should be told of. A load of at least
 // ten times the source for voltage transfer is common practice, no source.
-func warnings(d *Drawing) []string {
+func warnings(d *Drawing, toneHz float64) []string {
 	texts := []string{}
 	for _, at := range []struct {
 		name string
 		ends network.Ends
 	}{{"on the bench", d.Rig.Ends}, {"in service", d.Service}} {
-		source := cmplx.Abs(d.Circuit.OutputImpedance(at.ends, DefaultPredict.ToneHz))
+		source := cmplx.Abs(d.Circuit.OutputImpedance(at.ends, toneHz))
 		if at.ends.LoadOhms < 10*source && !matched(at.ends) {
 			texts = append(texts, fmt.Sprintf("%s the load of %.4g Ω is less than ten times the pad's output impedance of %.4g Ω: the loss depends on the load", at.name, at.ends.LoadOhms, source))
 		}
-		if input := cmplx.Abs(d.Circuit.InputImpedance(at.ends, DefaultPredict.ToneHz)); input < 10*at.ends.SourceOhms && !matched(at.ends) {
+		if input := cmplx.Abs(d.Circuit.InputImpedance(at.ends, toneHz)); input < 10*at.ends.SourceOhms && !matched(at.ends) {
 			texts = append(texts, fmt.Sprintf("%s the pad's input impedance of %.4g Ω is less than ten times the source of %.4g Ω: the loss depends on the source", at.name, input, at.ends.SourceOhms))
 		}
 		if d.Rig.Ends == d.Service {
