@@ -32,7 +32,9 @@ const (
 // of the one before in front.
 type flatFinder struct {
 	rateHz float64
+	hop    int
 	found  Clipped
+	cuts   []uint8 // cut peaks that begin in each hop, 255 at most
 }
 
 // chunk looks through b, whose first sample has the number frame, for runs at low and high, the
@@ -65,14 +67,21 @@ func (f *flatFinder) chunk(b []float64, fresh int, frame int64, low, high float6
 				step = resolution(b)
 			}
 			if stepNeeded(b, start, end) > flatness*step {
-				f.note(end-start, float64(frame+int64(start))/f.rateHz, b[i])
+				f.note(end-start, frame+int64(start), b[i])
 			}
 		}
 		i += (end - 1 - i) / leastRun * leastRun // once a run is enough
 	}
 }
 
-func (f *flatFinder) note(samples int, atSec, value float64) {
+func (f *flatFinder) note(samples int, frame int64, value float64) {
+	atSec := float64(frame) / f.rateHz
+	for int64(len(f.cuts))*int64(f.hop) <= frame {
+		f.cuts = append(f.cuts, 0)
+	}
+	if here := &f.cuts[frame/int64(f.hop)]; *here < math.MaxUint8 {
+		*here++
+	}
 	if f.found.Runs == 0 {
 		f.found.FirstSec = atSec
 		f.found.LevelDBFS = DBFSFromPeak(math.Abs(value))

@@ -10,6 +10,12 @@
 //  3. [MeasureTones] reads the channel once, from the first sample to the last, and returns a
 //     [Measurement]: a [Tone] for each stretch, peak, clipping, bad samples, and the [Track] of the
 //     short-term level.
+//  4. [Steady] judges the track between two times, those of a stage of the test signal or of
+//     [ToneSpan]: how far the level departs, steps, gaps, lost samples, crackle. [LevelBetween]
+//     reads the levels about the test signal's step, [Measurement.CutPeaks] says whether the tone
+//     itself is clipped, [Tone.Distortion] adds its harmonics, the noise taken off.
+//  5. [MeasureNoise] reads a take, or a part of one, without a signal: a [Noise] with its spectrum,
+//     level, hum and weighted figures. [HumIn] finds the hum beside a tone.
 //
 // [Generate] writes the test signal of [Schedule], [GenerateTone] a plain tone. [FitSine3] and
 // [FitSine4] are the sine fits of IEEE Std 1057 on a plain slice.
@@ -34,6 +40,11 @@
 // to a second, so that noise does not bias a weak tone, and the scatter of the batches gives the
 // standard error. Noise and harmonics are read from a [Spectrum] of the steady part.
 //
+// Noise is the sum of a spectrum's bins, the lines of the mains left out; how well such a sum is
+// known follows from window and overlap ([Spectrum.PowerIn]). The weightings are those of IEC 61672-1
+// and of ITU-R BS.468-4; the rates of the latter's quasi-peak detector are fitted to its burst tables
+// as remembered, not as read.
+//
 // # Limits
 //
 // Sample rates of 8 to 384 kHz. Tones from 20 Hz to 0.45 of the rate, steady for at least a second:
@@ -41,5 +52,5 @@
 // down its stretch is found with less certainty. A line closer than a few hertz to the tone, such as
 // a harmonic of the mains right beside it, cannot be told from it in a short take: it adds to the
 // level and shows as scatter only as far as it beats within the take. Memory grows with the length
-// of a take by 1.2 MB an hour, for the track.
+// of a take by 1.5 MB an hour, for the track.
 package analysis

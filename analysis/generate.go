@@ -31,11 +31,8 @@ func Generate(rateHz float64, emit func(block []float64) error) error {
 	e := &emitter{emit: emit}
 	for i, g := range segments {
 		first, next := g.frames(rateHz)
-		voice := g.voice(rateHz, int(next-first))
-		if g.Kind == SteadyTone {
-			voice = toneVoice(segments, i, rateHz)
-		}
-		if err := e.write(int(next-first), voice); err != nil {
+		voice := stageVoice(segments, i, rateHz)
+		if err := e.write(int(next-first), func(n int) float64 { return voice(float64(n)) }); err != nil {
 			return err
 		}
 	}
@@ -71,29 +68,38 @@ func (g Segment) frames(rateHz float64) (first, next int64) {
 	return int64(math.Round(g.StartSec * rateHz)), int64(math.Round((g.StartSec + g.LengthSec) * rateHz))
 }
 
+// stageVoice returns what gives sample n of stage i, n counted from its first.
+func stageVoice(segments []Segment, i int, rateHz float64) func(n float64) float64 {
+	if segments[i].Kind == SteadyTone {
+		return toneVoice(segments, i, rateHz)
+	}
+	first, next := segments[i].frames(rateHz)
+	return segments[i].voice(rateHz, float64(next-first))
+}
+
 // voice returns what gives sample n of a stage that is total samples long.
-func (g Segment) voice(rateHz float64, total int) func(n int) float64 {
+func (g Segment) voice(rateHz, total float64) func(n float64) float64 {
 	peak := PeakFromDBFS(g.LevelDBFS)
 	switch g.Kind {
 	case Chirp:
-		return func(n int) float64 {
-			t := float64(n) / rateHz
+		return func(n float64) float64 {
+			t := n / rateHz
 			phase := 2 * math.Pi * (g.FromHz*t + (g.ToHz-g.FromHz)*t*t/(2*g.LengthSec))
 			return peak * edges(n, total, markerEdgeSec*rateHz, markerEdgeSec*rateHz) * math.Sin(phase)
 		}
 	case Sweep: // exponential: the octaves all last equally long
 		steep := math.Log(g.ToHz/g.FromHz) / g.LengthSec
-		return func(n int) float64 {
-			phase := 2 * math.Pi * g.FromHz / steep * math.Expm1(steep*float64(n)/rateHz)
+		return func(n float64) float64 {
+			phase := 2 * math.Pi * g.FromHz / steep * math.Expm1(steep*n/rateHz)
 			return peak * edges(n, total, sweepRiseSec*rateHz, sweepFallSec*rateHz) * math.Sin(phase)
 		}
 	}
-	return func(int) float64 { return 0 }
+	return func(float64) float64 { return 0 }
 }
 
 // toneVoice is the tone's: its phase counts from where the tone begins, its edges stand only where
 // no tone follows or went before.
-func toneVoice(segments []Segment, i int, rateHz float64) func(n int) float64 {
+func toneVoice(segments []Segment, i int, rateHz float64) func(n float64) float64 {
 	begin := i
 	for begin > 0 && segments[begin-1].Kind == SteadyTone {
 		begin--
@@ -107,9 +113,9 @@ func toneVoice(segments []Segment, i int, rateHz float64) func(n int) float64 {
 	if i+1 == len(segments) || segments[i+1].Kind != SteadyTone {
 		fall = toneEdgeSec * rateHz
 	}
-	peak, skip, total := PeakFromDBFS(segments[i].LevelDBFS), int(first-origin), int(next-first)
-	return func(n int) float64 {
-		return peak * edges(n, total, rise, fall) * math.Sin(2*math.Pi*turns(segments[i].FromHz, n+skip, rateHz))
+	peak, skip, total := PeakFromDBFS(segments[i].LevelDBFS), float64(first-origin), float64(next-first)
+	return func(n float64) float64 {
+		return peak * edges(n, total, rise, fall) * math.Sin(2*math.Pi*math.Mod(segments[i].FromHz*(n+skip), rateHz)/rateHz)
 	}
 }
 
@@ -120,12 +126,12 @@ func turns(freqHz float64, n int, rateHz float64) float64 {
 
 // edges returns the raised cosine that lets sample n of total in over rise samples and out over
 // fall samples: 1 between, 0 at the very ends.
-func edges(n, total int, rise, fall float64) float64 {
+func edges(n, total, rise, fall float64) float64 {
 	gain := 1.0
-	if at := float64(n); at < rise {
-		gain *= 0.5 - 0.5*math.Cos(math.Pi*at/rise)
+	if rise > 0 && n < rise {
+		gain *= 0.5 - 0.5*math.Cos(math.Pi*n/rise)
 	}
-	if left := float64(total - 1 - n); left < fall {
+	if left := total - 1 - n; fall > 0 && left < fall {
 		gain *= 0.5 - 0.5*math.Cos(math.Pi*left/fall)
 	}
 	return gain

@@ -66,6 +66,7 @@ func MeasureTones(s Samples, stretches []Stretch) (*Measurement, error) {
 }
 
 func (p *pass) measurement() *Measurement {
+	p.track.cuts = p.flat.cuts
 	m := &Measurement{
 		Seconds: float64(p.frames) / p.rateHz, PeakDBFS: DBFSFromPeak(p.peak), PeakSec: float64(p.peakAt) / p.rateHz,
 		RMSDBFS: FloorDBFS, Clipped: p.flat.found, Bad: p.bad, Track: p.track,

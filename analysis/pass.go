@@ -40,8 +40,8 @@ func newPass(s Samples, stretches []Stretch) (*pass, error) {
 		return nil, err
 	}
 	hop := hopSamples(rateHz)
-	p := &pass{rateHz: rateHz, hop: hop, flat: flatFinder{rateHz: rateHz}}
-	p.track.HopSec = float64(hop) / rateHz
+	p := &pass{rateHz: rateHz, hop: hop, flat: flatFinder{rateHz: rateHz, hop: hop}}
+	p.track.HopSec, p.track.rateHz = float64(hop)/rateHz, rateHz
 	ordered := append([]Stretch(nil), stretches...)
 	sort.SliceStable(ordered, func(i, j int) bool { return ordered[i].StartSec < ordered[j].StartSec })
 	for i, g := range ordered {
@@ -139,6 +139,7 @@ func (p *pass) hopDone(x []float64, fit *blockFit, sums hopSums) {
 	hop := len(t.square)
 	t.square = append(t.square, float32(sums.square/float64(p.hop)))
 	t.leftover = append(t.leftover, float32(fit.leftover(sums)))
+	t.reach = append(t.reach, float32((sums.high-sums.low)/2))
 	if hop > 0 {
 		middle := int(p.frames)
 		back := cmplx.Rect(1, -2*math.Pi*turns(fit.freqHz, middle, p.rateHz))

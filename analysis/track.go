@@ -4,14 +4,17 @@ import "math/cmplx"
 
 // A Track is the short-term level over a whole recording: the sine fit of each 100 ms, one every
 // 50 ms, at the frequency of the nearest stretch. Outside the stretches it shows what there is near
-// that frequency. It takes 16 bytes a block, 1.2 MB an hour.
+// that frequency. It takes up to 21 bytes a block, 1.5 MB an hour.
 type Track struct {
 	HopSec float64 // from one block to the next; a block lasts two of them
 
 	blocks   []complex64 // amplitude at the block's middle against a steady cosine at freqHz
 	leftover []float32   // mean square of what the fit leaves of the block's first hop
 	square   []float32   // mean square of the block's first hop
+	reach    []float32   // half the way from its lowest to its highest sample
+	cuts     []uint8     // cut peaks in it; none in those beyond its end
 	spans    []trackSpan
+	rateHz   float64
 }
 
 // A trackSpan is the run of blocks that share one frequency.

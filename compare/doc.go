@@ -9,8 +9,21 @@
 //     package network, with the whole uncertainty budget; [FindUnseen] lists the
 //     parts that this bench could not have seen.
 //  3. [Decide] holds a figure and its expanded uncertainty against a [Limit].
-//  4. [PairTones] and [PairProblems] name what is wrong between two takes, and [Voids] says
+//  4. [JudgeNoise] takes the rig's noise off that of the unit and holds it against
+//     the thermal noise of the drawing; [JudgeHum] reads the hum. Both decide by
+//     methods of their own, in power. [JudgeResponse] and [JudgeFlatness] hold a
+//     response against the designed curve and against a level line.
+//  5. [PairTones] and [PairProblems] name what is wrong between two takes, and [Voids] says
 //     which checks a problem takes the ground from.
+//
+// [ReadLossTwice] reads the loss where takes were recorded a second time,
+// [ReadLossBoth] from the two channels of one take. The other checks come as a
+// [Finding] each, with its budget and, where it is open, what would settle it:
+// [JudgeSteadiness], [JudgeDistortion], [JudgeLegs], [JudgeBypass]. What single
+// takes show is named by [ClippedProblem], [DropoutProblems],
+// [SteppedProblems], [GainRidingProblem] and [LegsProblems], what a repeat
+// shows by [AgainProblems] and [BothProblems]. [FindSource] and [FindFullScale]
+// tell the rig's own figures from takes, with the lines for rig.toml.
 //
 // # Units and signs
 //

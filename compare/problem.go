@@ -24,6 +24,9 @@ const (
 	NotClosed        = "not-closed"
 	CutShort         = "cut-short"
 	BadSamples       = "bad-samples"
+	OneChannel       = "one-channel"
+	ToneInNoise      = "tone-in-noise"
+	BelowThermal     = "below-thermal"
 )
 
 // tonal are the checks that stand on the tone of before and after.
@@ -46,6 +49,9 @@ var voids = map[string][]string{
 	NotClosed:        tonal, // what is missing cannot be told: a file saved whole settles it
 	CutShort:         tonal,
 	BadSamples:       tonal,
+	OneChannel:       {"legs"},
+	ToneInNoise:      {"noise", "noise-level", "hum"},
+	BelowThermal:     {"noise", "noise-level", "hum"},
 }
 
 // Voids reports whether a problem leaves the named check without ground, so

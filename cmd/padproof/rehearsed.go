@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -24,13 +25,22 @@ func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p re
 		Schema: result.RehearseSchema, Pad: d.Name, Rig: d.Sheet.Name, Simulated: true,
 		Folder: f.out, Sheets: []string{"pad.toml", "rig.toml"},
 		Signal: f.signal, ToneHz: result.Number(toneHz), LevelDBFS: result.Number(p.LevelDBFS), NoiseDBFS: result.Number(p.NoiseDBFS),
-		Faults: []string{}, Varied: f.vary, Seed: p.Seed, Warnings: []string{},
+		HumDBFS: result.Number(p.HumDBFS), DriftPPM: result.Number(p.DriftPPM),
+		Faults: []string{}, Lies: append([]string{}, p.Lies...), Varied: f.vary, Seed: p.Seed, Flex: []result.RehearsedEvent{}, Warnings: []string{},
 		Drawing: losses(d.Circuit, d.Rig.Ends),
 		Truth: result.Truth{
 			Losses: losses(p.Pad, p.Bench.Ends), RecordedDB: result.Number(p.RecordedLossDB()),
 			SourceOhms: result.Number(p.Bench.Ends.SourceOhms), LoadOhms: result.Number(p.Bench.Ends.LoadOhms),
 			CablePF: result.Number(p.Bench.Ends.CableFarads / picofarad), GainOffsetDB: result.Number(p.Bench.OffsetDB),
 		},
+	}
+	r.Truth.UnitNoiseDBu, r.Truth.ThermalDBu = result.Missing, result.Missing
+	if slices.Contains(p.Takes, "pad-noise") {
+		unitDBu, thermalDBu := p.UnitNoiseDBu()
+		r.Truth.UnitNoiseDBu, r.Truth.ThermalDBu = result.Number(unitDBu), result.Number(thermalDBu)
+	}
+	for i, atSec := range p.FlexSec() {
+		r.Flex = append(r.Flex, result.RehearsedEvent{AtSec: result.Number(atSec), What: p.Flex[i]})
 	}
 	for _, fault := range faults {
 		r.Faults = append(r.Faults, fault.String())
@@ -44,11 +54,11 @@ func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p re
 	}
 	for _, t := range takes {
 		r.Takes = append(r.Takes, result.RehearsedTake{
-			Role: t.Role, File: t.File, RateHz: p.RateHz, Bits: p.Bits, Encoding: encoding,
+			Role: t.Role, File: t.File, RateHz: p.RateHz, Channels: t.Channels, Bits: p.Bits, Encoding: encoding,
 			Seconds: result.Number(float64(t.Frames) / float64(p.RateHz)),
 		})
 		if t.Clipped {
-			r.Warnings = append(r.Warnings, t.File+" lies beyond full scale: a lower --level-dbfs would not clip")
+			r.Warnings = append(r.Warnings, t.File+" lies beyond full scale and is clipped; a lower --level-dbfs may not be")
 		}
 	}
 	return r
@@ -59,6 +69,10 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 	for _, t := range r.Takes {
 		files = append(files, t.File)
 	}
+	names := strings.Join(files, ", ")
+	if n := len(files); n > 1 {
+		names = strings.Join(files[:n-1], ", ") + " and " + files[n-1]
+	}
 	unit := "a sound unit"
 	if len(r.Faults) > 0 {
 		unit = "a unit with " + strings.Join(r.Faults, " and ")
@@ -67,9 +81,19 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 		unit += ", drawn from its tolerances"
 	}
 	lines := []string{
-		fmt.Sprintf("Wrote %s to %s, SIMULATED, with %s: %s.", strings.Join(files, " and "), r.Folder, strings.Join(r.Sheets, " and "), unit),
+		fmt.Sprintf("Wrote %s to %s, SIMULATED, with %s: %s.", names, r.Folder, strings.Join(r.Sheets, " and "), unit),
 		fmt.Sprintf("True loss on this bench %s (the drawing's %s), in service %s (the drawing's %s).",
 			lossText(r.Truth.BenchDB), lossText(r.Drawing.BenchDB), lossText(r.Truth.ServiceDB), lossText(r.Drawing.ServiceDB)),
+	}
+	if r.Truth.UnitNoiseDBu.OK() {
+		lines = append(lines, fmt.Sprintf("The unit's true noise is %.2f dBu at the rig's input, 20 Hz to 20 kHz; thermal noise is %.2f dBu of it.",
+			float64(r.Truth.UnitNoiseDBu), float64(r.Truth.ThermalDBu)))
+	}
+	for _, e := range r.Flex {
+		lines = append(lines, fmt.Sprintf("In flex a %s at %.3f s.", e.What, float64(e.AtSec)))
+	}
+	if len(r.Lies) > 0 {
+		lines = append(lines, "The recordings lie: "+strings.Join(r.Lies, ", ")+".")
 	}
 	if r.Truth.GainOffsetDB != 0 && r.Truth.RecordedDB.OK() {
 		lines = append(lines, fmt.Sprintf("The gain of after is off by %+.3f dB, so that the takes hold %s.", r.Truth.GainOffsetDB, lossText(r.Truth.RecordedDB)))

@@ -20,6 +20,10 @@ const (
 	PartIs                        // "R3 is 360": a part of another value
 	PartDrifted                   // "R3 drifted +12 %"
 	PartsSwapped                  // "R1 and R3 swapped"
+	LegOpen                       // "hot leg open at in": between the pin and what is wired to it
+	LegToScreen                   // "hot leg to screen at in": the pin touches the screen
+	LegsCrossed                   // "legs crossed": hot for cold, at the output
+	EndsSwapped                   // "in and out swapped": the pad the wrong way round
 )
 
 // plainForms are the words of the forms that take nothing but a part.
@@ -30,15 +34,18 @@ var plainForms = map[string]FaultForm{
 // A Fault is one thing wrong with a unit, as an edit of its drawing.
 type Fault struct {
 	Form  FaultForm
-	Ref   string  // the part
+	Ref   string  // the part; none for faults of legs and plugs
 	Other string  // PartsSwapped: the second part
 	Kind  Kind    // PartIs: the part's, which the value is written by
 	Value float64 // PartIs: Ω, F or H; PartDrifted: relative change, 0.12 for +12 %
+	Pin   string  // LegOpen, LegToScreen: in.hot, in.cold, out.hot or out.cold
 }
 
 // ParseFault reads a fault of a drawing: "R3 open", "R3 short", "R3 x10", "R3 /10",
-// "R3 is 360", "R1 and R3 swapped" or "R3 drifted +12 %". Blanks between words may be
-// more than one, and the one before the per cent sign may be missing.
+// "R3 is 360", "R1 and R3 swapped" or "R3 drifted +12 %"; or one of legs and plugs: "hot leg
+// open at in", "cold leg to screen at out" and so on, "legs crossed", "in and out swapped"
+// (see [Circuit.LegFaults]). Blanks between words may be more than one, and the one before
+// the per cent sign may be missing.
 //
 // A value is ohms, or a code of IEC 60062 (4R7, 1k5, 680), or a number with its prefix
 // and unit (1.5 kΩ); for a capacitor 220p or 2n2, for an inductor 10m or 4m7. A drift has
@@ -48,6 +55,12 @@ func ParseFault(c *Circuit, text string) (Fault, error) {
 	words := strings.Fields(text)
 	if len(words) < 2 {
 		return Fault{}, c.notUnderstood(text)
+	}
+	if f, ok := parseLegFault(words); ok {
+		if err := c.checkLeg(f); err != nil {
+			return Fault{}, err
+		}
+		return f, nil
 	}
 	f := Fault{Ref: words[0]}
 	rest := strings.Join(words[2:], " ")
@@ -88,6 +101,9 @@ func (c *Circuit) notUnderstood(text string) error {
 	}
 	if other != p.Ref {
 		forms = append(forms, Fault{Form: PartsSwapped, Ref: p.Ref, Other: other}.String())
+	}
+	for _, f := range c.LegFaults() {
+		forms = append(forms, f.String())
 	}
 	return &Error{
 		Text: fmt.Sprintf("%q is no fault that is understood", text),
@@ -142,10 +158,13 @@ func parseDrift(ref, text string) (float64, error) {
 	return frac, nil
 }
 
-// Parts returns the refs that the fault is about, one or two.
+// Parts returns the refs that the fault is about: one, two, or none for one of legs and plugs.
 func (f Fault) Parts() []string {
-	if f.Form == PartsSwapped {
+	switch f.Form {
+	case PartsSwapped:
 		return []string{f.Ref, f.Other}
+	case LegOpen, LegToScreen, LegsCrossed, EndsSwapped:
+		return nil
 	}
 	return []string{f.Ref}
 }
@@ -163,6 +182,8 @@ func (f Fault) String() string {
 		return f.Ref + " drifted " + sign + decimal(math.Abs(f.Value), 2) + " %"
 	case PartsSwapped:
 		return f.Ref + " and " + f.Other + " swapped"
+	case LegOpen, LegToScreen, LegsCrossed, EndsSwapped:
+		return f.legText()
 	}
 	for word, form := range plainForms {
 		if form == f.Form {
@@ -174,7 +195,8 @@ func (f Fault) String() string {
 
 // Apply returns a copy of the drawing with the fault in it; tolerances stay with their
 // parts. A part that is not in the drawing changes nothing, and neither does ten times
-// or a tenth of a link.
+// or a tenth of a link, or a fault of legs that the drawing cannot have. "Leg to screen" adds
+// a link as a part of its own, by the fault's words as its ref.
 func (f Fault) Apply(c *Circuit) *Circuit {
 	p, _ := c.Part(f.Ref)
 	none, full := 0.0, math.Inf(1)
@@ -196,6 +218,8 @@ func (f Fault) Apply(c *Circuit) *Circuit {
 		return c.With(f.Ref, p.Value*(1+f.Value))
 	case PartsSwapped:
 		return c.Swapped(f.Ref, f.Other)
+	case LegOpen, LegToScreen, LegsCrossed, EndsSwapped:
+		return f.applyLeg(c)
 	}
 	return c
 }

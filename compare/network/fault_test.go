@@ -67,7 +67,7 @@ func TestParseFaultRefuses(t *testing.T) {
 		{"R1 melted", `"R1 melted"`, "R1 open"},
 		{"R1 open now", "no fault", "R1 open"},
 		{"R1 and R2", "no fault", "R1 open"},
-		{"hot leg open at in", "no fault", "R1 open"},
+		{"leg open at in", "no fault", "R1 open"},
 		{"R3 open", `no part "R3"`, "R1, R2, C1"},
 		{"R1 and R9 swapped", `no part "R9"`, "R1, R2, C1"},
 		{"R1 and R1 swapped", "itself", "two parts"},

@@ -46,7 +46,7 @@ class Part:
         return replace(self, value=value)
 
 
-class _Netlist:
+class Netlist:
     """Lines of one circuit, its nodes folded together where the bench makes them one."""
 
     def __init__(self, tag, fold):
@@ -112,7 +112,7 @@ class _Netlist:
         return self.node("out.hot"), self.node("out.cold")
 
 
-def _fold(unbalanced, ends, straight):
+def folded(unbalanced, ends, straight):
     """Which nodes are one: by the network, by the bench, by the cable that replaces the pad."""
     fold = {}
     cold_in = "screen" if unbalanced or ends.drive == "unbalanced" else "in.cold"
@@ -147,7 +147,7 @@ class Simulator:
             for i in places:
                 parts, unbalanced, ends, _ = self._cases[i]
                 for straight in (True, False):
-                    n = _Netlist(f"c{i}{'b' if straight else 'a'}", _fold(unbalanced, ends, straight))
+                    n = Netlist(f"c{i}{'b' if straight else 'a'}", folded(unbalanced, ends, straight))
                     n.drive(ends)
                     n.sense(ends)
                     if not straight:

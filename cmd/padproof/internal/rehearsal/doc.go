@@ -13,13 +13,32 @@
 //
 // # A take
 //
-// A signal goes through a chain of effects, block by block: gain, the circuit from source
-// to load, noise, dither; then it is rounded to the take's format. The level of the signal
-// is that of its tone in before, as a person sets it by the recorder's meter. Before is the
-// voltage across the load straight through, after that with the pad, both by nodal analysis
-// at every frequency, magnitude and phase, relative to the size of before's at the tone. The
-// gain raised for after comes on top. What lies beyond full scale is clipped, as in a
-// recorder.
+// A signal goes through a chain of effects, block by block, one chain for each channel: gain,
+// the circuit from source to load, hum, noise, dither; then it is rounded to the take's
+// format. The level of the signal is that of its tone in before, as a person sets it by the
+// recorder's meter. Before is the voltage across the load straight through, after that with
+// the pad, both by nodal analysis at every frequency, magnitude and phase, relative to the
+// size of before's at the tone. The gain raised for after comes on top. What lies beyond
+// full scale is clipped, as in a recorder.
+//
+// The other roles of a unit's folder ([Takes]) are made likewise: before-loaded has the known
+// resistor in the pad's place, bypass its contacts, legs and legs-before the voltage of each
+// leg to screen, both the straight signal beside the one through the pad. Calibration is a
+// tone of 200 Hz at the volts that the meter read. Flex is a steady tone, with events.
+//
+// Hum is the mains line and its harmonics to the tenth, harmonic n lower by 20 lg n². A
+// recorder's clock that runs fast or slow is made by evaluating the signal, a closed form, at
+// the recorder's own instants; nothing is interpolated.
+//
+// A lie ([Lies]) changes how a take is made, or the finished file.
+//
+// # Noise takes
+//
+// Rig-noise and pad-noise hold what stands at the rig's input terminals: thermal noise
+// 4kT·Re Z of the plug or of the pad with its plug (leg to leg, no tie to screen), through
+// the divider with load and cable; that of the load, unless it is quiet; the input's noise
+// current through all of them; the input's noise voltage. They are shaped with frequency as
+// the circuit shapes them, within 0.0001 dB. The recorder's own noise comes on top.
 //
 // The circuit is a filter whose taps are the inverse transform of its frequency response,
 // applied by overlap-save (common practice). From 10 Hz to 0.45 of the sample rate it keeps
@@ -44,6 +63,7 @@
 //
 // # Limits
 //
-// Circuits are linear: nothing distorts. A drawing that still rings or settles after some
+// Circuits are linear: nothing distorts. The load's thermal noise counts as that of one
+// resistor leg to leg, which is not quite so beside a pad whose parts to screen differ. A drawing that still rings or settles after some
 // ten seconds (at 48 kHz; less at higher rates) is refused.
 package rehearsal

@@ -31,7 +31,7 @@ func TestFilterConvolves(t *testing.T) {
 			}
 			return nil
 		}
-		err := scene{src, []effect{newFilter(kernel)}}.play(func(b []float64) error {
+		err := scene{src, [][]effect{{newFilter(kernel)}}}.play(func(b []float64) error {
 			got = append(got, b...)
 			return nil
 		})
@@ -105,13 +105,10 @@ func TestKernelHoldsResponse(t *testing.T) {
 func TestKernelOfACableIsShort(t *testing.T) {
 	p := plan(pad(t))
 	p.Bench.Ends.CableFarads = 300e-12
-	for _, r := range p.roles() {
-		s, err := p.scene(r)
-		if err != nil {
-			t.Fatal(err)
-		}
-		if f, ok := s.effects[1].(*filter); !ok || f.taps != leastTaps {
-			t.Errorf("%s: the second effect is %T with %d taps, want a filter with %d", r.name, s.effects[1], f.taps, leastTaps)
+	for _, role := range p.Takes {
+		s := staged(t, p, role)
+		if f, ok := s.channels[0][1].(*filter); !ok || f.taps != leastTaps {
+			t.Errorf("%s: the second effect is %T with %d taps, want a filter with %d", role, s.channels[0][1], f.taps, leastTaps)
 		}
 	}
 }

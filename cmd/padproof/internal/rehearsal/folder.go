@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"io/fs"
+	"math"
 	"os"
 	"path/filepath"
 	"strings"
@@ -13,10 +14,11 @@ import (
 
 // A Take is a recording that was made.
 type Take struct {
-	Role    string
-	File    string // its name in the folder
-	Frames  int64
-	Clipped bool // something lay beyond full scale
+	Role     string
+	File     string // its name in the folder
+	Channels int
+	Frames   int64
+	Clipped  bool // something lay beyond full scale
 }
 
 // Sheets are the files that describe pad and rig; copies of them lie beside the takes.
@@ -47,8 +49,7 @@ func (p Plan) Record(ctx context.Context, folder string, sheets Sheets) ([]Take,
 }
 
 func (p Plan) record(ctx context.Context, f *unitFolder, sheets Sheets) ([]Take, error) {
-	roles := p.roles()
-	if err := f.vacant(roles, sheets); err != nil {
+	if err := f.vacant(p.Takes, sheets); err != nil {
 		return nil, err
 	}
 	if err := f.makeFolder(f.path); err != nil {
@@ -60,8 +61,8 @@ func (p Plan) record(ctx context.Context, f *unitFolder, sheets Sheets) ([]Take,
 		}
 	}
 	var takes []Take
-	for _, r := range roles {
-		t, err := p.take(ctx, f, r)
+	for _, role := range p.Takes {
+		t, err := p.take(ctx, f, role)
 		if err != nil {
 			return nil, err
 		}
@@ -71,24 +72,29 @@ func (p Plan) record(ctx context.Context, f *unitFolder, sheets Sheets) ([]Take,
 }
 
 // take records one role.
-func (p Plan) take(ctx context.Context, f *unitFolder, r role) (Take, error) {
-	t := Take{Role: r.name, File: r.name + ".wav"}
+func (p Plan) take(ctx context.Context, f *unitFolder, role string) (Take, error) {
+	t := Take{Role: role, File: role + ".wav"}
+	r, err := p.recipe(p.madeAs(role))
+	if err != nil {
+		return t, err
+	}
 	s, err := p.scene(r)
 	if err != nil {
 		return t, err
 	}
+	t.Channels = len(r.paths)
 	path := filepath.Join(f.path, t.File)
 	w, err := capture.Create(path, p.format(r))
 	if err != nil {
 		return t, err
 	}
 	defer w.Abort()
-	err = s.play(func(block []float64) error {
-		for _, x := range block {
-			t.Clipped = t.Clipped || x > 1 || x < -1
+	err = s.play(func(frames []float64) error {
+		for _, x := range frames {
+			t.Clipped = t.Clipped || math.Abs(x) > 1 && !math.IsInf(x, 0)
 		}
-		t.Frames += int64(len(block))
-		return errors.Join(ctx.Err(), w.Write(block))
+		t.Frames += int64(len(frames) / t.Channels)
+		return errors.Join(ctx.Err(), w.Write(frames))
 	})
 	if err != nil {
 		return t, err
@@ -97,6 +103,9 @@ func (p Plan) take(ctx context.Context, f *unitFolder, r role) (Take, error) {
 		return t, err
 	}
 	f.made = append(f.made, path)
+	if r.afterwards != nil {
+		return t, r.afterwards(path)
+	}
 	return t, nil
 }
 
@@ -108,7 +117,7 @@ type unitFolder struct {
 }
 
 // vacant makes sure that none of the names is taken.
-func (f *unitFolder) vacant(roles []role, sheets Sheets) error {
+func (f *unitFolder) vacant(roles []string, sheets Sheets) error {
 	there, err := os.ReadDir(f.path)
 	if errors.Is(err, fs.ErrNotExist) {
 		return nil
@@ -123,8 +132,8 @@ func (f *unitFolder) vacant(roles []role, sheets Sheets) error {
 	for _, entry := range there {
 		name, path := strings.ToLower(entry.Name()), filepath.Join(f.path, entry.Name())
 		taken := false
-		for _, r := range roles {
-			taken = taken || name == r.name+".wav"
+		for _, role := range roles {
+			taken = taken || name == role+".wav"
 		}
 		sheet, isSheet := sheetOf[name]
 		if taken || isSheet && !same(path, sheet) {

@@ -52,7 +52,7 @@ func TestRecordFillsAFolder(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	want := []Take{{Role: "before", File: "before.wav", Frames: 52800}, {Role: "after", File: "after.wav", Frames: 52800}}
+	want := []Take{{Role: "before", File: "before.wav", Channels: 1, Frames: 52800}, {Role: "after", File: "after.wav", Channels: 1, Frames: 52800}}
 	if !slices.Equal(takes, want) {
 		t.Errorf("Record() = %+v, want %+v", takes, want)
 	}

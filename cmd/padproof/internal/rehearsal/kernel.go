@@ -21,6 +21,7 @@ const (
 	// enough, and with the most taps the second (0.0004 dB) will do. What lies 120 dB under
 	// the peak of the response need not be so exact.
 	closeFrac, enoughFrac = 1e-7, 5e-5
+	roughFrac             = 1e-5 // 0.0001 dB: close enough for noise
 	depthFrac             = 1e-6
 )
 
@@ -34,6 +35,11 @@ var errSlow = errors.New("the drawing rings or settles too slowly to be simulate
 // The taps are the inverse transform of the response at evenly spaced frequencies, which is
 // exact at those; their number is doubled until it also holds half way between.
 func kernel(rateHz float64, response func(freqHz float64) complex128) ([]float64, error) {
+	return kernelWithin(rateHz, closeFrac, response)
+}
+
+// kernelWithin does so until the response is kept within a part of itself.
+func kernelWithin(rateHz, withinFrac float64, response func(freqHz float64) complex128) ([]float64, error) {
 	at := func(turns float64) complex128 { return realAtHalf(response(turns*rateHz), turns) }
 	n := leastTaps
 	grid := make([]complex128, n/2+1)
@@ -47,7 +53,7 @@ func kernel(rateHz float64, response func(freqHz float64) complex128) ([]float64
 			between[k] = at((float64(k) + 0.5) / float64(n))
 		}
 		off := worst(taps, between, rateHz)
-		if off <= closeFrac || n == mostTaps && off <= enoughFrac {
+		if off <= withinFrac || n == mostTaps && off <= enoughFrac {
 			return slices.Concat(taps[n/2:], taps[:n/2]), nil
 		}
 		if n == mostTaps || math.IsNaN(off) {

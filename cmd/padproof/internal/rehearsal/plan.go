@@ -1,10 +1,8 @@
 package rehearsal
 
 import (
-	"errors"
 	"fmt"
 	"math"
-	"math/cmplx"
 
 	"padproof/analysis"
 	"padproof/capture"
@@ -14,8 +12,13 @@ import (
 // Mark begins the comment inside every rehearsed take.
 const Mark = "SIMULATED by padproof rehearse"
 
-// SilenceSec lies before and after a steady tone.
-const SilenceSec = 0.5
+const (
+	// SilenceSec lies before and after a steady tone.
+	SilenceSec = 0.5
+
+	// CalibrationHz is the tone of calibration: cheap meters are true there.
+	CalibrationHz = 200.0
+)
 
 // A Signal is what is played.
 type Signal struct {
@@ -36,22 +39,66 @@ func (s Signal) FreqHz() float64 {
 type Plan struct {
 	Pad       *network.Circuit // as built
 	Bench     Bench            // as it is
+	Takes     []string         // roles, see [Takes]
 	Signal    Signal
-	LevelDBFS float64 // of the (first) tone in before: at most 0, at least -200
-	NoiseDBFS float64 // see the package's manual; -Inf for none
-	Seed      uint64  // of the noise
-	RateHz    int     // 8000 to 384000
-	Bits      int     // 16, 24 or 32
-	Float     bool    // samples as floats, of 32 bits
-	Note      string  // added to the mark in every take; may be empty
+	LevelDBFS float64  // of the (first) tone in before: at most 0, at least -200
+	NoiseDBFS float64  // see the package's manual; -Inf for none
+	HumDBFS   float64  // of the mains line, in every take; -Inf for none
+	NoiseSec  float64  // how long the noise takes last
+	DriftPPM  float64  // how much faster the recorder's clock runs than the player's
+	Flex      []string // what happens in flex, see [FlexEvents]
+	Lies      []string // what is wrong with the recordings, see [Lies]
+	Seed      uint64   // of all that is random
+	RateHz    int      // 8000 to 384000
+	Bits      int      // 16, 24 or 32
+	Float     bool     // samples as floats, of 32 bits
+	Note      string   // added to the mark in every take; may be empty
 }
 
-// Check returns what is wrong with a plan's figures, or nil.
+// mostSec is an hour: what goes on longer shows nothing more.
+const mostSec = 3600.0
+
+// offDBFS is so low that it counts as nothing.
+const offDBFS = -300.0
+
+// RecordedLossDB returns the loss that before and after hold at the tone, the stated gain of
+// after taken off: the pad's on this bench less what the gain was off by, lies apart. It is
+// +Inf where nothing comes through.
+func (p Plan) RecordedLossDB() float64 {
+	return p.Pad.LossDB(p.Bench.Ends, p.Signal.FreqHz()) - p.Bench.OffsetDB
+}
+
+// step is that of an integer sample.
+func (p Plan) step() float64 { return math.Ldexp(1, 1-p.Bits) }
+
+func (p Plan) format(r recipe) capture.Format {
+	comment := Mark + ": " + r.role
+	if p.Note != "" {
+		comment += ", " + p.Note
+	}
+	return capture.Format{
+		RateHz: p.RateHz, Channels: len(r.paths), Bits: p.Bits, Float: p.Float, Comment: comment,
+		Frames: int64(math.Ceil(p.sec(r.role) * p.heardHz())),
+	}
+}
+
+// sec is how long a take is, by the player's clock.
+func (p Plan) sec(role string) float64 {
+	switch {
+	case role == rigNoise || role == padNoise:
+		return p.NoiseSec
+	case p.Signal.Test && role != "flex" && role != "calibration":
+		return analysis.SignalSec()
+	}
+	return p.steadySec(role) + 2*SilenceSec
+}
+
+// Check returns what is wrong with a plan, or nil.
 func (p Plan) Check() error {
 	highest := keptToFrac * float64(p.RateHz)
 	switch {
 	case p.Pad == nil:
-		return errors.New("there is no pad to rehearse")
+		return fmt.Errorf("there is no pad to rehearse")
 	case p.RateHz < 8000 || p.RateHz > 384000:
 		return fmt.Errorf("a sample rate is 8000 to 384000 Hz, not %d", p.RateHz)
 	case p.Bits != 16 && p.Bits != 24 && p.Bits != 32:
@@ -62,91 +109,20 @@ func (p Plan) Check() error {
 		return fmt.Errorf("the tone's level is -200 to 0 dBFS, not %v", p.LevelDBFS)
 	case !(p.NoiseDBFS <= 0):
 		return fmt.Errorf("the noise is at most 0 dBFS (-inf for none), not %v", p.NoiseDBFS)
+	case !(p.HumDBFS <= 0):
+		return fmt.Errorf("the hum is at most 0 dBFS (-inf for none), not %v", p.HumDBFS)
 	case !p.Signal.Test && !(p.Signal.ToneHz >= keptFromHz && p.Signal.ToneHz <= highest):
 		return fmt.Errorf("a tone is %g Hz to 0.45 of the sample rate, %g Hz; not %v Hz", keptFromHz, highest, p.Signal.ToneHz)
 	case !p.Signal.Test && !(p.Signal.Sec > 0 && p.Signal.Sec <= mostSec):
 		return fmt.Errorf("a tone lasts up to %g s, not %v", mostSec, p.Signal.Sec)
+	case !(math.Abs(p.DriftPPM) <= mostDriftPPM):
+		return fmt.Errorf("two clocks differ by up to %d ppm, not %v", mostDriftPPM, p.DriftPPM)
 	}
-	return p.Bench.Ends.Check()
-}
-
-// mostSec is an hour: a tone that goes on longer shows nothing more.
-const mostSec = 3600.0
-
-// RecordedLossDB returns the loss that the takes hold at the tone, the stated gain of after
-// taken off: the pad's on this bench less what the gain was off by. It is +Inf where nothing
-// comes through.
-func (p Plan) RecordedLossDB() float64 {
-	return p.Pad.LossDB(p.Bench.Ends, p.Signal.FreqHz()) - p.Bench.OffsetDB
-}
-
-// A role is a take that the plan makes.
-type role struct {
-	name   string
-	gainDB float64
-	volts  func(straight, withPad complex128) complex128 // which of the load's voltages it records
-}
-
-func (p Plan) roles() []role {
-	return []role{
-		{"before", 0, func(straight, _ complex128) complex128 { return straight }},
-		{"after", p.Bench.AfterGainDB + p.Bench.OffsetDB, func(_, withPad complex128) complex128 { return withPad }},
+	if err := p.Bench.Ends.Check(); err != nil {
+		return err
 	}
+	return p.checkTakes()
 }
 
-// scene sets up one take.
-func (p Plan) scene(r role) (scene, error) {
-	straight, _ := p.Pad.LoadVolts(p.Bench.Ends, p.Signal.FreqHz())
-	full := cmplx.Abs(straight) // its size alone: at 0 Hz the response must stay real
-	if !(full > 0) {
-		return scene{}, errors.New("nothing comes through this bench even without the pad")
-	}
-	rate := float64(p.RateHz)
-	taps, err := kernel(rate, func(freqHz float64) complex128 {
-		return r.volts(p.Pad.LoadVolts(p.Bench.Ends, freqHz)) / complex(full, 0)
-	})
-	if err != nil {
-		return scene{}, err
-	}
-	return scene{p.source(), append([]effect{
-		gain(analysis.RatioFromDB(p.LevelDBFS + r.gainDB)),
-		newFilter(taps),
-	}, p.recorder(r)...)}, nil
-}
-
-// source plays the signal, its first tone at full scale.
-func (p Plan) source() source {
-	rate := float64(p.RateHz)
-	if p.Signal.Test {
-		return testSignal(rate)
-	}
-	quiet := silence(rate, SilenceSec)
-	return inTurn(quiet, tone(rate, p.Signal.ToneHz, p.Signal.Sec), quiet)
-}
-
-// recorder is what the recorder itself adds.
-func (p Plan) recorder(r role) []effect {
-	n := noise{noiseRMS(p.NoiseDBFS, float64(p.RateHz)), randomFor(p.Seed, r.name+": noise")}
-	step := math.Ldexp(1, 1-p.Bits)
-	if p.Float || n.rms >= step/2 {
-		return []effect{n}
-	}
-	return []effect{n, dither{step, randomFor(p.Seed, r.name+": dither")}}
-}
-
-func (p Plan) format(r role) capture.Format {
-	comment := Mark + ": " + r.name
-	if p.Note != "" {
-		comment += ", " + p.Note
-	}
-	return capture.Format{RateHz: p.RateHz, Channels: 1, Bits: p.Bits, Float: p.Float, Comment: comment, Frames: p.frames()}
-}
-
-// frames is how long each take is.
-func (p Plan) frames() int64 {
-	rate := float64(p.RateHz)
-	if p.Signal.Test {
-		return int64(math.Round(analysis.SignalSec() * rate))
-	}
-	return 2*int64(math.Round(SilenceSec*rate)) + int64(math.Round(p.Signal.Sec*rate))
-}
+// mostDriftPPM is far beyond the clocks of any two machines that work.
+const mostDriftPPM = 1000

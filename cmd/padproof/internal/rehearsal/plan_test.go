@@ -42,29 +42,32 @@ func lPadLossDB(sourceOhms, r1, r2, loadOhms float64) float64 {
 func plan(c *network.Circuit) Plan {
 	return Plan{
 		Pad: c, Bench: bench, Signal: Signal{ToneHz: 997, Sec: 2}, LevelDBFS: -6,
-		NoiseDBFS: math.Inf(-1), Seed: 1, RateHz: 48000, Bits: 32, Float: true,
+		NoiseDBFS: math.Inf(-1), HumDBFS: math.Inf(-1), Seed: 1, RateHz: 48000, Bits: 32, Float: true,
+		Takes: []string{"before", "after"}, NoiseSec: 1,
 	}
 }
 
-// recorded plays one take of a plan without a file.
-func recorded(t *testing.T, p Plan, name string) []float64 {
+// staged sets up one take.
+func staged(t *testing.T, p Plan, role string) scene {
 	t.Helper()
-	for _, r := range p.roles() {
-		if r.name != name {
-			continue
-		}
-		s, err := p.scene(r)
-		if err != nil {
-			t.Fatal(err)
-		}
-		var all []float64
-		if err := s.play(func(b []float64) error { all = append(all, b...); return nil }); err != nil {
-			t.Fatal(err)
-		}
-		return all
+	r, err := p.recipe(p.madeAs(role))
+	if err != nil {
+		t.Fatal(err)
 	}
-	t.Fatalf("no role %q", name)
-	return nil
+	s, err := p.scene(r)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
+
+// recorded plays one take of a plan without a file; two channels are interleaved.
+func recorded(t *testing.T, p Plan, role string) (all []float64) {
+	t.Helper()
+	if err := staged(t, p, role).play(func(b []float64) error { all = append(all, b...); return nil }); err != nil {
+		t.Fatal(err)
+	}
+	return all
 }
 
 // written records a plan into a fresh folder and reads one take back.
@@ -307,6 +310,8 @@ func TestCheckRefuses(t *testing.T) {
 		"0.45":        func(p *Plan) { p.Signal.ToneHz = 22000 },
 		"lasts up to": func(p *Plan) { p.Signal.Sec = 0 },
 		"load of":     func(p *Plan) { p.Bench.Ends.LoadOhms = 0 },
+		"the hum":     func(p *Plan) { p.HumDBFS = 1 },
+		"ppm":         func(p *Plan) { p.DriftPPM = math.NaN() },
 	} {
 		p := plan(pad(t))
 		change(&p)
@@ -318,10 +323,7 @@ func TestCheckRefuses(t *testing.T) {
 
 func TestPlayStopsAtAnError(t *testing.T) {
 	p := plan(pad(t))
-	s, err := p.scene(p.roles()[0])
-	if err != nil {
-		t.Fatal(err)
-	}
+	s := staged(t, p, "before")
 	full := errors.New("disk full")
 	if err := s.play(func([]float64) error { return full }); !errors.Is(err, full) {
 		t.Errorf("play() = %v, want %v", err, full)

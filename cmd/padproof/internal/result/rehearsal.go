@@ -21,13 +21,17 @@ type Rehearsal struct {
 	ToneHz    Number   `json:"tone_hz"`    // that the losses are for
 	LevelDBFS Number   `json:"level_dbfs"` // of the tone in before
 	NoiseDBFS Number   `json:"noise_dbfs"` // 20 Hz to 20 kHz, in every take; null for none
+	HumDBFS   Number   `json:"hum_dbfs"`   // of the mains line, in every take; null for none
+	DriftPPM  Number   `json:"drift_ppm"`  // how much faster the recorder's clock runs than the player's
 	Faults    []string `json:"faults"`
+	Lies      []string `json:"lies"`   // what is wrong with the recordings
 	Varied    bool     `json:"varied"` // unit and bench drawn from their tolerances
 	Seed      uint64   `json:"seed"`
 
-	Drawing  Losses   `json:"drawing"` // as stated
-	Truth    Truth    `json:"truth"`   // as rehearsed
-	Warnings []string `json:"warnings"`
+	Flex     []RehearsedEvent `json:"flex"`    // what happens in it
+	Drawing  Losses           `json:"drawing"` // as stated
+	Truth    Truth            `json:"truth"`   // as rehearsed
+	Warnings []string         `json:"warnings"`
 }
 
 // Losses are those of a pad at the tone; null where nothing comes through.
@@ -44,7 +48,15 @@ type Truth struct {
 	LoadOhms     Number          `json:"load_ohms"`
 	CablePF      Number          `json:"cable_pf"`
 	GainOffsetDB Number          `json:"gain_offset_db"` // of after, beyond the stated gain
+	UnitNoiseDBu Number          `json:"unit_noise_dbu"` // at the rig's input, 20 Hz to 20 kHz; null without pad-noise
+	ThermalDBu   Number          `json:"thermal_dbu"`    // how much of it is thermal
 	Parts        []RehearsedPart `json:"parts"`
+}
+
+// A RehearsedEvent is something that happens while the pad is flexed.
+type RehearsedEvent struct {
+	AtSec Number `json:"at_s"`
+	What  string `json:"what"` // step, dropout or crackle
 }
 
 // A RehearsedPart is a part as built. Value is null for an open resistor or coil
@@ -60,6 +72,7 @@ type RehearsedTake struct {
 	Role     string `json:"role"`
 	File     string `json:"file"` // name in the folder
 	RateHz   int    `json:"rate_hz"`
+	Channels int    `json:"channels"`
 	Bits     int    `json:"bits"`
 	Encoding string `json:"encoding"` // integer or float
 	Seconds  Number `json:"seconds"`
