@@ -43,7 +43,7 @@ func JudgeDistortion(before, after analysis.Tone, linearityDB float64, limit Lim
 		f.Budget.Terms = distortionTerms(a, linearityDB)
 	}
 	var err error
-	if f.UDB, err = f.Budget.ExpandedU(coverage); err != nil {
+	if f.UDB, err = f.Budget.ExpandedU(Coverage); err != nil {
 		return f, err
 	}
 	f.judge(limit, rule, aBest, bBest)

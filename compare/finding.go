@@ -35,7 +35,7 @@ func (f *Finding) leaveOpen(format string, args ...any) {
 // decide works out U from the budget and holds the figure against the limit. An UNPROVEN names
 // what would shrink the largest doubt.
 func (f *Finding) decide(rule Rule) (err error) {
-	if f.UDB, err = f.Budget.ExpandedU(coverage); err != nil {
+	if f.UDB, err = f.Budget.ExpandedU(Coverage); err != nil {
 		return err
 	}
 	f.Verdict, f.Reason = Decide(rule, f.Measured, f.UDB, f.Limit, f.Expected)
@@ -74,14 +74,18 @@ const (
 	channelsInSrc  = "channel match of the inputs"
 	channelsSrc    = "channel match"
 	legLoadsSrc    = "loads of the legs"
-	legSourcesSrc  = "source impedance"
-	legCableSrc    = "cable capacitance"
+	sourceSrc      = "source impedance"
+	cableSrc       = "cable capacitance"
 	blockNoiseSrc  = "noise in the block that departs most"
 	afterHarmonics = "noise at the harmonics of after"
 	rigHarmonics   = "noise at the harmonics of before"
 	loadedRepeats  = "repeatability of before-loaded"
 	knownResistor  = "the known resistor"
 	loadSrc        = "load impedance"
+	togetherSrc    = "source, load and cable together"
+	afterGainSrc   = "gain raised for after"
+	carrySrc       = "carry-over"
+	otherPartsSrc  = "other parts"
 	meterSrc       = "the meter"
 	toneRepeats    = "repeatability of calibration"
 )
@@ -95,11 +99,17 @@ var mends = map[string]string{
 	channelsInSrc:  "record before and after through one channel, or measure both channels on one signal and state [calibration] channel_match_db in rig.toml",
 	channelsSrc:    "record legs-before, the same two channels straight through, or state [calibration] channel_match_db in rig.toml",
 	legLoadsSrc:    "measure what loads each leg and state [input] legs_load_ohms and tolerance in rig.toml",
-	legSourcesSrc:  "measure the source impedance (before-loaded) and state [output] source_ohms and tolerance in rig.toml",
-	legCableSrc:    "state [input] cable_pF in rig.toml",
+	sourceSrc:      "measure the source impedance (before-loaded) and state [output] source_ohms and tolerance in rig.toml",
+	cableSrc:       "state [input] cable_pF in rig.toml",
 	blockNoiseSrc:  "record after again with more level or gain",
 	afterHarmonics: "record after again, longer or with more level",
 	rigHarmonics:   "record before again, longer",
+	beforeRepeats:  "record before again, longer or with more level, nothing moving",
+	afterRepeats:   "record after again, longer or with more level, nothing moving",
+	togetherSrc:    "measure source (before-loaded) and load and state them with their tolerances in rig.toml",
+	afterGainSrc:   "measure the gain step and state [calibration] after_gain_uncertainty_db in rig.toml, or keep the gain",
+	carrySrc:       "use parts of a closer tolerance, or a bench with the source and load of the service",
+	otherPartsSrc:  "use a bench with the source and load of the service",
 	loadSrc:        "measure the load and state it with its tolerance in rig.toml, [input] load_ohms and tolerance",
 	knownResistor:  "use a resistor of a closer tolerance, near the source impedance in value",
 	meterSrc:       "use a better meter, and state its accuracy as [calibration] uncertainty_db in rig.toml",

@@ -52,7 +52,7 @@ func FindSource(c SourceCase) (FoundSource, error) {
 		return f, err
 	}
 	f.Budget.Terms = sourceTerms(c, r, base, f.Ohms)
-	f.UOhms, err = f.Budget.ExpandedU(coverage)
+	f.UOhms, err = f.Budget.ExpandedU(Coverage)
 	return f, err
 }
 
@@ -147,7 +147,7 @@ func sourceTerms(c SourceCase, r LossReading, base benchAcross, ohms float64) []
 	if !math.IsInf(c.Rig.Ends.LoadOhms, 0) {
 		add(loadSrc, c.Rig.LoadTolFrac*c.Rig.Ends.LoadOhms, func(b *benchAcross, by float64) { b.ends.LoadOhms += by })
 	}
-	add(legCableSrc, c.Rig.CableTolFarads, func(b *benchAcross, by float64) { b.ends.CableFarads = math.Max(0, b.ends.CableFarads+by) })
+	add(cableSrc, c.Rig.CableTolFarads, func(b *benchAcross, by float64) { b.ends.CableFarads = math.Max(0, b.ends.CableFarads+by) })
 	return terms
 }
 
@@ -202,7 +202,7 @@ func FindFullScale(tone analysis.Tone, volts, meterUDB, linearityDB float64) (Fo
 		f.Warning = fmt.Sprintf("calibration holds %.4g Hz; many meters are true from 100 to 400 Hz only: record it at 200 Hz, say", tone.FreqHz)
 	}
 	var err error
-	f.UDB, err = f.Budget.ExpandedU(coverage)
+	f.UDB, err = f.Budget.ExpandedU(Coverage)
 	return f, err
 }
 

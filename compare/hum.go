@@ -107,7 +107,7 @@ func (f *HumFigure) read(r HumReading, calibrationUDB float64) error {
 		uncertainty.FromNormal("noise under the lines", r.Hum.StdU/size, 1),
 		uncertainty.FromNormal(calibrationTerm, calibrationUDB/2, 1/dbPerNeperPower),
 	}}
-	u, err := f.Budget.ExpandedU(coverage)
+	u, err := f.Budget.ExpandedU(Coverage)
 	if err != nil {
 		return err
 	}

@@ -236,7 +236,7 @@ func (m modelLegs) terms() []uncertainty.Term {
 		half(channelsSrc, c.ChannelMatchDB)
 	}
 	half(linearitySrc, c.LinearityDB)
-	half(legSourcesSrc, m.sourceDB(c.Rig.SourceTolFrac))
+	half(sourceSrc, m.sourceDB(c.Rig.SourceTolFrac))
 	load, tol := c.LegsLoadOhms, c.Rig.LoadTolFrac
 	if tol > 0 && tol < 1 && !math.IsInf(load, 0) { // so large a resistor beside it lowers a load by its tolerance
 		half(legLoadsSrc, m.shuntedDB("out.hot", load*(1-tol)/tol))

@@ -91,7 +91,7 @@ func ReadStep(loudDBFS, loudStdErrDB, lowDBFS, lowStdErrDB, linearityDB float64)
 		s.Budget.Terms = append(s.Budget.Terms, uncertainty.FromRectangle(linearitySrc, linearityDB, 1))
 	}
 	var err error
-	s.UDB, err = s.Budget.ExpandedU(coverage)
+	s.UDB, err = s.Budget.ExpandedU(Coverage)
 	return s, err
 }
 
@@ -108,7 +108,7 @@ func GainRidingProblem(s ToneStep) (p Problem, ok bool) {
 // MovedU is the expanded uncertainty of the difference of two takes that should be alike.
 func MovedU(first, again analysis.Tone) float64 {
 	b := uncertainty.Budget{Terms: []uncertainty.Term{repeatability(beforeRepeats, first), repeatability(beforeTwice, again)}}
-	u, err := b.ExpandedU(coverage)
+	u, err := b.ExpandedU(Coverage)
 	if err != nil {
 		return math.NaN()
 	}
@@ -157,16 +157,17 @@ func LegsProblems(channels int, hot, cold analysis.Tone, silentHot, silentCold b
 	return []Problem{{Name: OneChannel, AtSec: math.NaN(), Text: text}}
 }
 
-// copyDB and copyRad are what two tones of the same samples differ by: rounding alone.
-const copyDB, copyRad = 1e-6, 1e-6
+// What two tones of the same samples differ by: rounding alone.
+const copyDB, copyRad, copyNoiseDB = 1e-7, 1e-6, 1e-4
 
 // sameSamples tells a copy, at the same polarity or turned over, from two recordings or two inputs,
 // whose noise differs. Two legs, or two takes from a player and a recorder on one clock, may agree
-// closely in level and phase, but not in scatter as well.
+// closely in level and phase, but not in the noise beside the tone as well.
 func sameSamples(a, b analysis.Tone) bool {
 	turn := math.Abs(math.Remainder(a.PhaseRad-b.PhaseRad, math.Pi))
 	return a.Blocks > 0 && a.StartSec == b.StartSec && a.EndSec == b.EndSec &&
-		math.Abs(a.LevelDBFS-b.LevelDBFS) < copyDB && turn < copyRad && math.Abs(a.ScatterDB-b.ScatterDB) < copyDB
+		math.Abs(a.LevelDBFS-b.LevelDBFS) < copyDB && turn < copyRad &&
+		math.Abs(a.NoiseDBFS-b.NoiseDBFS) < copyNoiseDB && math.Abs(a.ScatterDB-b.ScatterDB) <= 1e-3*a.ScatterDB
 }
 
 // BothProblems names what the two channels of both.wav show together.

@@ -85,7 +85,7 @@ func JudgeLoss(k LossCase) (Loss, error) {
 	l.ServiceDB = l.ServiceExpectedDB + l.Beta*(l.BenchDB-l.BenchExpectedDB)
 	l.Budget.Terms = serviceTerms(k, l.Beta)
 	if over.leftDB > 0 {
-		l.Budget.Terms = append(l.Budget.Terms, uncertainty.FromNormal("carry-over", over.leftDB, 1))
+		l.Budget.Terms = append(l.Budget.Terms, uncertainty.FromNormal(carrySrc, over.leftDB, 1))
 	}
 	l.UDB, err = l.Budget.ExpandedU(Coverage)
 	return l, err
@@ -110,7 +110,7 @@ func judgeOutside(k LossCase, l Loss) (Loss, error) {
 	l.Beta = 0
 	rest := uncertainty.Budget{Terms: serviceTerms(k, 0)}
 	if r.leftDB > 0 {
-		rest.Terms = append(rest.Terms, uncertainty.FromNormal("other parts", r.leftDB, 1))
+		rest.Terms = append(rest.Terms, uncertainty.FromNormal(otherPartsSrc, r.leftDB, 1))
 	}
 	restUDB, err := rest.ExpandedU(Coverage)
 	if math.IsInf(r.highDB, 1) {
@@ -119,7 +119,7 @@ func judgeOutside(k LossCase, l Loss) (Loss, error) {
 	}
 	half := (r.highDB - r.lowDB) / 2
 	l.ServiceDB, l.UDB = r.lowDB+half, half+restUDB
-	l.Budget.Terms = append(rest.Terms, uncertainty.FromRectangle("carry-over", half, 1))
+	l.Budget.Terms = append(rest.Terms, uncertainty.FromRectangle(carrySrc, half, 1))
 	return l, err
 }
 

@@ -214,7 +214,7 @@ func (m *noiseModel) ranges() []uncertainty.Term {
 // all of pad-noise may be the unit's.
 func (m *noiseModel) subtract(b uncertainty.Budget, c noiseChange) (subtraction, error) {
 	pad, rig := m.recorded(c)
-	u, err := b.ExpandedU(coverage)
+	u, err := b.ExpandedU(Coverage)
 	if m.noRig() {
 		return subtraction{value: pad / m.expected, u: u}, err
 	}

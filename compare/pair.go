@@ -21,6 +21,7 @@ const (
 	mostWeakUDB     = 0.5  // expanded, of what the takes' own scatter leaves
 	swappedDB       = 0.1  // a passive pad has no gain; so much may come of the rig
 	sameSNRDB       = 0.02
+	trimmedDB       = 1e-4       // a recording cut shorter keeps its level so closely, a pad does not
 	sameDB, sameRad = 1e-3, 2e-3 // two recordings agree so closely once in a thousand, and only of no loss at all
 )
 
@@ -35,7 +36,7 @@ func PairProblems(before, after Side, reading LossReading, designedDB func(freqH
 	b, a := before.Tone, after.Tone
 	weakUDB := scatterU(reading)
 	switch {
-	case sameRecording(before, after):
+	case sameRecording(before, after) || math.Abs(b.LevelDBFS-a.LevelDBFS) < trimmedDB && designedDB(b.FreqHz) > 100*trimmedDB:
 		add(SameRecording, "before and after are one and the same recording; record after through the pad")
 	case reading.LossDB < -(weakUDB + swappedDB):
 		add(SwappedTakes, "after is %.2f dB louder than before, which no passive pad does; the takes are swapped, or the gain was raised between them (state it as [calibration] after_gain_db in rig.toml)", -reading.LossDB)

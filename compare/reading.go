@@ -23,8 +23,8 @@ func ReadLoss(before, after analysis.Tone, g Gains) LossReading {
 		LossDB: before.LevelDBFS - after.LevelDBFS + g.AfterDB,
 		FreqHz: before.FreqHz,
 		Terms: []uncertainty.Term{
-			repeatability("repeatability of before", before),
-			repeatability("repeatability of after", after),
+			repeatability(beforeRepeats, before),
+			repeatability(afterRepeats, after),
 		},
 	}
 	r.Terms = append(r.Terms, g.Terms()...)
@@ -38,7 +38,7 @@ func (g Gains) Terms() []uncertainty.Term {
 	for _, t := range []struct {
 		source string
 		half   float64
-	}{{"linearity", g.LinearityDB}, {"gain drift", g.DriftDB}, {"gain raised for after", g.AfterDoubtDB}} {
+	}{{linearitySrc, g.LinearityDB}, {driftSrc, g.DriftDB}, {afterGainSrc, g.AfterDoubtDB}} {
 		if t.half > 0 {
 			terms = append(terms, uncertainty.FromRectangle(t.source, t.half, 1))
 		}

@@ -151,7 +151,7 @@ func (j *responseJudge) point(p analysis.ResponsePoint) error {
 	}
 	budget := j.budget(p)
 	var err error
-	if d.UDB, err = budget.ExpandedU(coverage); err != nil {
+	if d.UDB, err = budget.ExpandedU(Coverage); err != nil {
 		return err
 	}
 	outsideUDB, err := budget.ExpandedU(1 - familyRisk/float64(len(j.judged)))

@@ -16,13 +16,13 @@ type rigMove struct {
 
 func (r Rig) moves() []rigMove {
 	all := []rigMove{
-		{"source impedance", r.SourceTolFrac * r.Ends.SourceOhms, func(e *network.Ends, sign float64) {
+		{sourceSrc, r.SourceTolFrac * r.Ends.SourceOhms, func(e *network.Ends, sign float64) {
 			e.SourceOhms = math.Max(0, e.SourceOhms+sign*r.SourceTolFrac*r.Ends.SourceOhms)
 		}},
-		{"load impedance", r.LoadTolFrac * r.Ends.LoadOhms, func(e *network.Ends, sign float64) {
+		{loadSrc, r.LoadTolFrac * r.Ends.LoadOhms, func(e *network.Ends, sign float64) {
 			e.LoadOhms = math.Max(0, e.LoadOhms+sign*r.LoadTolFrac*r.Ends.LoadOhms)
 		}},
-		{"cable capacitance", r.CableTolFarads, func(e *network.Ends, sign float64) {
+		{cableSrc, r.CableTolFarads, func(e *network.Ends, sign float64) {
 			e.CableFarads = math.Max(0, e.CableFarads+sign*r.CableTolFarads)
 		}},
 	}
@@ -83,7 +83,7 @@ func rigTerms(k LossCase, beta float64) []uncertainty.Term {
 		terms = append(terms, uncertainty.FromRectangle(m.source, m.half, -beta*most/m.half))
 	}
 	if together := k.Rig.cornerDB(c, f) - sum; together > 1e-6 {
-		terms = append(terms, uncertainty.FromRectangle("source, load and cable together", together, beta))
+		terms = append(terms, uncertainty.FromRectangle(togetherSrc, together, beta))
 	}
 	return terms
 }

@@ -59,7 +59,7 @@ func wasJudged(s *analysis.Steadiness) bool { return s != nil && s.Blocks > 0 }
 // block at all, and may have lowered it. At 95 % the rectangle reaches two of a block's standard
 // deviations beyond the noise taken off.
 func steadyTerms(s analysis.Steadiness) []uncertainty.Term {
-	half := (s.NoiseDB + 2*s.BlockDB) / coverage
+	half := (s.NoiseDB + 2*s.BlockDB) / Coverage
 	return []uncertainty.Term{uncertainty.FromRectangle(blockNoiseSrc, half, 1)}
 }
 

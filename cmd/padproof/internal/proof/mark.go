@@ -97,57 +97,59 @@ func padOf(name string, ohms ...float64) (*network.Circuit, error) {
 
 // eitherCheck judges a mark as both kinds of matched pad: what holds for one
 // alone proves nothing, since nobody has looked inside.
-func (a answer) eitherCheck(d *Drawing, reading compare.LossReading, mark *Mark) (result.Check, error) {
-	first, err := a.drawnCheck(d, reading, mark)
+func (c *check) eitherCheck(reading compare.LossReading) (result.Check, []result.Term, error) {
+	first, terms, err := c.drawnCheck(reading)
 	if err != nil {
-		return first, err
+		return first, nil, err
 	}
-	other := *d
-	other.Circuit, other.Alternative = d.Alternative, nil
-	b := answer{&result.Answer{}}
-	second, err := b.drawnCheck(&other, reading, mark)
+	other := *c
+	drawing := *c.Drawing
+	drawing.Circuit, drawing.Alternative = c.Alternative, nil
+	other.Drawing, other.answer = &drawing, &result.Answer{}
+	second, _, err := other.drawnCheck(reading)
 	if err != nil {
-		return second, err
+		return second, nil, err
 	}
+	a := c.answer
 	for i := range a.Unseen {
-		a.Unseen[i].Part += " of the " + d.Circuit.Name()
+		a.Unseen[i].Part += " of the " + c.Circuit.Name()
 	}
-	for _, u := range b.Unseen {
+	for _, u := range other.answer.Unseen {
 		u.Part += " of the " + other.Circuit.Name()
 		a.Unseen = append(a.Unseen, u)
 	}
-	a.Assumed = append(a.Assumed, fmt.Sprintf("a symmetrical matched pad, %s or %s, parts within ±%.0f %% (no drawing)", d.Circuit.Name(), other.Circuit.Name(), matchedTolFrac*100))
+	a.Assumed = append(a.Assumed, fmt.Sprintf("a symmetrical matched pad, %s or %s, parts within ±%.0f %% (no drawing)", c.Circuit.Name(), other.Circuit.Name(), matchedTolFrac*100))
 	if first.Verdict != second.Verdict {
 		first.Reason = fmt.Sprintf("as a %s pad it would be %s, as a %s pad %s; give a drawing, or use a bench of the impedance marked",
-			d.Circuit.Name(), first.Verdict, other.Circuit.Name(), second.Verdict)
+			c.Circuit.Name(), first.Verdict, other.Circuit.Name(), second.Verdict)
 		first.Verdict = string(compare.Unproven)
 	}
 	apart := math.Abs(float64(first.Measured-second.Measured)) / 2
 	first.Measured = (first.Measured + second.Measured) / 2
 	first.Uncertainty = result.Number(math.Max(float64(first.Uncertainty), float64(second.Uncertainty)) + apart)
-	return first, nil
+	return first, terms, nil
 }
 
 // benchCheck is the loss of a pad of which no model is known: what this bench
 // read, against the mark where the mark is for this bench.
-func (a answer) benchCheck(d *Drawing, reading compare.LossReading, mark *Mark) (result.Check, error) {
+func (c *check) benchCheck(reading compare.LossReading) (result.Check, []result.Term, error) {
 	budget := uncertainty.Budget{Terms: reading.Terms}
 	u, err := budget.ExpandedU(compare.Coverage)
 	if err != nil {
-		return result.Check{}, err
+		return result.Check{}, nil, err
 	}
-	a.Budget = append(a.Budget, termsOf("loss", budget)...)
-	check := lossOf()
-	check.Measured, check.Uncertainty = result.Number(reading.LossDB), result.Number(u)
-	if mark == nil || !mark.OnThisBench {
-		return a.withoutMark(check, d, mark)
+	one := emptyCheck("loss", "dB")
+	one.Measured, one.Uncertainty = result.Number(reading.LossDB), result.Number(u)
+	if c.mark == nil || !c.mark.OnThisBench {
+		err = c.withoutMark(&one)
+		return one, termsOf("loss", budget), err
 	}
-	check.Expected = result.Number(mark.LossDB)
-	if limit, set := d.lossLimit(mark.LossDB); set {
-		verdict, reason := compare.Decide(compare.Guarded, reading.LossDB, u, limit, mark.LossDB)
-		decide(&check, verdict, reason, limit, mark.LossDB)
+	one.Expected = result.Number(c.mark.LossDB)
+	if limit, set := c.lossLimit(c.mark.LossDB); set {
+		verdict, reason := compare.Decide(c.rule, reading.LossDB, u, limit, c.mark.LossDB)
+		decide(&one, verdict, reason, limit, c.mark.LossDB)
 	}
-	return check, nil
+	return one, termsOf("loss", budget), nil
 }
 
 // commonOhms are impedances that pads are often marked for: common practice, no
@@ -155,23 +157,23 @@ func (a answer) benchCheck(d *Drawing, reading compare.LossReading, mark *Mark) 
 var commonOhms = []float64{50, 75, 150, 200, 600}
 
 // withoutMark shows the loss beside what pads of common impedances would read.
-func (a answer) withoutMark(check result.Check, d *Drawing, mark *Mark) (result.Check, error) {
-	check.Verdict = string(compare.Unproven)
-	check.Reason = "no drawing says what this pad should read; give a pad.toml, or --marked-loss-db with --marked-ohms or --on-this-bench, and --within-db"
-	lossDB := float64(check.Measured)
-	if mark != nil {
-		lossDB = mark.LossDB
-		check.Reason = "the mark holds for an impedance that was not given; add --marked-ohms, or --on-this-bench if it is what this bench should read"
+func (c *check) withoutMark(one *result.Check) error {
+	one.Verdict = string(compare.Unproven)
+	one.Reason = "no drawing says what this pad should read; give a pad.toml, or --marked-loss-db with --marked-ohms or --on-this-bench, and --within-db"
+	lossDB := float64(one.Measured)
+	if c.mark != nil {
+		lossDB = c.mark.LossDB
+		one.Reason = "the mark holds for an impedance that was not given; add --marked-ohms, or --on-this-bench if it is what this bench should read"
 	}
 	if lossDB < 0.1 {
-		return check, nil // no pad reads like this
+		return nil // no pad reads like this
 	}
 	for _, ohms := range commonOhms {
-		c, _, err := matchedPad(d.Sheet, ohms, lossDB)
+		pad, _, err := matchedPad(c.Sheet, ohms, lossDB)
 		if err != nil {
-			return check, err
+			return err
 		}
-		a.Notes = append(a.Notes, fmt.Sprintf("a matched %.4g Ω pad of %.2f dB would read %.2f dB on this bench", ohms, lossDB, c.LossDB(d.Rig.Ends, analysis.ToneHz)))
+		c.answer.Notes = append(c.answer.Notes, fmt.Sprintf("a matched %.4g Ω pad of %.2f dB would read %.2f dB on this bench", ohms, lossDB, pad.LossDB(c.Rig.Ends, analysis.ToneHz)))
 	}
-	return check, nil
+	return nil
 }

@@ -10,6 +10,7 @@ import (
 	"padproof/analysis"
 	"padproof/capture"
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
 )
 
@@ -23,7 +24,11 @@ type take struct {
 	samples  *capture.Channel
 	found    []analysis.Stretch
 	measured *analysis.Measurement
-	judged   *analysis.Tone // the stretch that the loss is judged at
+	judged   *analysis.Tone      // the stretch that the loss is judged at
+	placed   *analysis.Placement // where the test signal lies; nil without it
+	noise    *analysis.Noise     // of a take that holds no tone
+	steady   analysis.Steadiness
+	stepped  bool // the test signal's step was read: automatic gain would have shown
 	sha256   string
 	problems []compare.Problem
 }
@@ -69,8 +74,10 @@ func (t *take) find(atHz []float64) error {
 // explain turns what analysis says of a take into a problem.
 func (t *take) explain(err error) error {
 	var other *analysis.OtherToneError
+	leg := t.role == unit.Legs || t.role == unit.LegsBefore
 	switch {
 	case err == nil:
+	case leg && errors.Is(err, analysis.ErrNoTone): // a dead leg is the unit's, not the take's
 	case errors.Is(err, analysis.ErrSilent):
 		t.problem(compare.ChannelSilent, math.NaN(), "channel %d holds digital silence; look at the cable, the routing and the channel, and record again", t.channel)
 	case errors.As(err, &other):
@@ -98,6 +105,11 @@ func hertzList(freqs []float64) string {
 
 // measure reads the whole take once: its tones, its facts, its hash.
 func (t *take) measure() error {
+	if len(t.found) > 0 {
+		if err := t.place(); err != nil {
+			return err
+		}
+	}
 	m, err := analysis.MeasureTones(t.samples, t.found)
 	if err != nil {
 		t.found = nil
@@ -120,20 +132,73 @@ func (t *take) noteSamples() {
 	if m.Bad.Count > 0 {
 		t.problem(compare.BadSamples, m.Bad.FirstSec, "%d samples are no numbers (NaN or infinite); export the take again, or record it again", m.Bad.Count)
 	}
-	if c := m.Clipped; c.Runs > 0 && t.touchesTone(c.FirstSec, c.LastSec) {
-		t.problem(compare.Clipped, c.FirstSec, "%d peaks are cut off at %.1f dBFS; lower the level or the gain by a few dB and record again", c.Runs, c.LevelDBFS)
+	for _, tone := range m.Tones {
+		if p, cut := compare.ClippedProblem(m.CutPeaks(tone), m.PeakDBFS); cut {
+			t.problems = append(t.problems, p)
+			break
+		}
+	}
+	if tone, ok := t.mainTone(); ok {
+		t.noteSteadiness(tone)
 	}
 }
 
-// touchesTone reports whether something between two times lies in a steady
-// part, or whether there is none to tell by.
-func (t *take) touchesTone(fromSec, toSec float64) bool {
-	for _, tone := range t.measured.Tones {
-		if fromSec < tone.EndSec && toSec > tone.StartSec {
-			return true
+// noteSteadiness judges the level track of the take's main tone: a stage of the
+// test signal, or all of a plain tone.
+func (t *take) noteSteadiness(tone analysis.Tone) {
+	from, to := analysis.ToneSpan(&t.measured.Track, tone)
+	if t.placed != nil {
+		for _, stage := range analysis.Schedule(t.samples.RateHz()) {
+			if stage.Kind == analysis.SteadyTone && stage.LevelDBFS == analysis.SignalPeakDBFS {
+				from, to = t.placed.TakeSec(stage.StartSec), t.placed.TakeSec(stage.StartSec+stage.LengthSec)
+			}
 		}
+	} else if len(t.measured.Tones) > 1 {
+		from, to = tone.StartSec, tone.EndSec // several levels or tones: each is steady by itself
 	}
-	return len(t.measured.Tones) == 0
+	t.steady = analysis.Steady(&t.measured.Track, tone, from, to)
+	moved := t.role == unit.Flex
+	t.problems = append(t.problems, compare.DropoutProblems(t.steady, moved)...)
+	if !moved {
+		t.problems = append(t.problems, compare.SteppedProblems(t.steady)...)
+	}
+}
+
+// place looks for the test signal. Samples lost between its markers are a
+// problem of the take.
+func (t *take) place() error {
+	p, err := analysis.FindSignal(t.samples, t.found...)
+	var apart *analysis.MarkersApartError
+	switch {
+	case errors.As(err, &apart):
+		t.problem(compare.Dropout, math.NaN(), "%v; use a larger buffer, close other programs, and record again", apart)
+	case errors.Is(err, analysis.ErrNoSignal):
+	case err != nil:
+		return fmt.Errorf("%s: %w", t.path, err)
+	default:
+		t.placed = &p
+	}
+	return nil
+}
+
+// noteStep holds the test signal's 10 dB step against what was recorded.
+func (t *take) noteStep(linearityDB float64) error {
+	if t.placed == nil {
+		return nil
+	}
+	stepDB, standardU, err := analysis.StepDB(t.samples, *t.placed)
+	if err != nil {
+		return nil // the step is cut off: nothing is shown by it
+	}
+	step, err := compare.ReadStep(stepDB, standardU, 0, 0, linearityDB)
+	if err != nil {
+		return err
+	}
+	t.stepped = true
+	if p, riding := compare.GainRidingProblem(step); riding {
+		t.problems = append(t.problems, p)
+	}
+	return nil
 }
 
 // fileIn is the take's path as seen from the unit's folder.
@@ -155,6 +220,12 @@ func (t *take) capture(folder string) result.Capture {
 		ScatterDB: result.Missing, NoiseDBFS: result.Missing, SNRDB: result.Missing, RMSDBFS: result.Missing,
 		PeakDBFS: result.Missing, FromSec: result.Missing, ToSec: result.Missing,
 		Harmonics: []result.Number{}, Problems: []result.Problem{},
+	}
+	if t.placed != nil {
+		c.ClockPPM = result.NumberOf(1e6 * (t.placed.Ratio - 1))
+	}
+	if t.noise != nil {
+		c.NoiseDBFS, c.PeakDBFS = result.Number(t.noise.LevelDBFS), result.Number(t.noise.PeakDBFS)
 	}
 	if t.measured != nil {
 		c.PeakDBFS = result.Number(t.measured.PeakDBFS)

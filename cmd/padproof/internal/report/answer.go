@@ -91,7 +91,14 @@ func checkRow(c result.Check) []string {
 	if verdict == "" {
 		verdict = "no limit"
 	}
-	return []string{c.Name, verdict, fixed(c.Measured, places), fixed(c.Expected, places), limits(c, places), doubt(c.Uncertainty, places), c.Unit}
+	measured, u := fixed(c.Measured, places), doubt(c.Uncertainty, places)
+	switch {
+	case c.Unit == "":
+		measured, u = fixed(c.Measured, 0), dash
+	case !c.Measured.OK() && c.Bound != nil && c.Bound.OK():
+		measured, u = "below "+fixed(*c.Bound, 1), dash
+	}
+	return []string{c.Name, verdict, measured, fixed(c.Expected, places), limits(c, places), u, c.Unit}
 }
 
 func tones(p *page, a *result.Answer) {

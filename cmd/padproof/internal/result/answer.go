@@ -54,6 +54,37 @@ type Check struct {
 	Ratio       Number  `json:"tolerance_ratio"` // half-width of the limits over the uncertainty
 	Bench       *Figure `json:"bench,omitempty"`
 	Spread      *Spread `json:"spread,omitempty"`
+
+	// Of single checks.
+	MeasuredDBu *Number         `json:"measured_dbu,omitempty"` // noise
+	ExpectedDBu *Number         `json:"expected_dbu,omitempty"` // noise: thermal, by the drawing
+	RigDBu      *Number         `json:"rig_dbu,omitempty"`      // noise, hum: the rig's own
+	Bound       *Number         `json:"bound,omitempty"`        // noise, distortion, hum: the highest value the takes allow
+	RigDB       *Number         `json:"rig_db,omitempty"`       // distortion: the same from before
+	AWeighted   *Number         `json:"a_weighted_dbu,omitempty"`
+	QuasiPeak   *Number         `json:"quasi_peak_468_dbu,omitempty"`
+	From        string          `json:"from,omitempty"` // hum, steadiness: the take that shows it
+	MainsHz     *Number         `json:"mains_hz,omitempty"`
+	PhaseDeg    *Number         `json:"phase_deg,omitempty"` // legs
+	Events      []Event         `json:"events,omitempty"`    // steadiness
+	Points      []ResponsePoint `json:"points,omitempty"`    // response, flatness
+	LowCornerHz *Number         `json:"low_corner_hz,omitempty"`
+	HighCorner  *Number         `json:"high_corner_hz,omitempty"`
+}
+
+// An Event is a step, a dropout or a crackle in a tone.
+type Event struct {
+	AtSec Number `json:"at_s"`
+	DB    Number `json:"db"`
+	What  string `json:"what"`
+}
+
+// A ResponsePoint is one point of a response; losses are relative to the tone.
+type ResponsePoint struct {
+	FreqHz      Number `json:"freq_hz"`
+	Measured    Number `json:"measured"`
+	Expected    Number `json:"expected"`
+	Uncertainty Number `json:"uncertainty"`
 }
 
 // A Figure is a reading beside what the drawing gives.
@@ -139,7 +170,8 @@ type Capture struct {
 	PeakDBFS  Number    `json:"peak_dbfs"`
 	FromSec   Number    `json:"steady_from_s"`
 	ToSec     Number    `json:"steady_to_s"`
-	Harmonics []Number  `json:"harmonics_db"` // 2nd to 10th, relative to the tone
+	ClockPPM  *Number   `json:"clock_ppm,omitempty"` // of the recorder against the test signal's player
+	Harmonics []Number  `json:"harmonics_db"`        // 2nd to 10th, relative to the tone
 	Problems  []Problem `json:"problems"`
 }
 

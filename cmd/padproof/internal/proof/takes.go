@@ -1,0 +1,224 @@
+package proof
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"sync"
+
+	"padproof/analysis"
+	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/unit"
+	"padproof/compare"
+)
+
+// takes are the recordings of one unit, by role. The two channels of legs,
+// legs-before and both are a take each: the second has the role with " 2"
+// behind it.
+type takes struct {
+	by    map[string]*take
+	order []*take // as opened; one for each file
+}
+
+// second is the key of a take's second channel.
+func second(role string) string { return role + " 2" }
+
+func (ts *takes) close() {
+	for _, t := range ts.order {
+		t.file.Close()
+	}
+}
+
+// tone is the tone that a take is judged at, if the take is there and holds one.
+func (ts *takes) tone(role string) (analysis.Tone, bool) {
+	if t := ts.by[role]; t != nil && t.measured != nil {
+		return t.mainTone()
+	}
+	return analysis.Tone{}, false
+}
+
+// again is the tone of a repeated take, nil where there is none.
+func (ts *takes) again(role string) *analysis.Tone {
+	if tone, ok := ts.tone(role); ok {
+		return &tone
+	}
+	return nil
+}
+
+// openTakes opens every take of the unit. One that cannot be read ends it all:
+// a take that somebody made is part of what he wants judged.
+func openTakes(u *unit.Unit) (*takes, error) {
+	ts := &takes{by: map[string]*take{}}
+	for _, role := range unit.Roles() {
+		path := u.Files[role]
+		if path == "" {
+			continue
+		}
+		t, err := openTake(role, path)
+		if err != nil {
+			ts.close()
+			return nil, err
+		}
+		ts.by[role] = t
+		ts.order = append(ts.order, t)
+	}
+	if ts.by[unit.Before] != nil && ts.by[unit.After] != nil {
+		return ts, nil
+	}
+	if both := ts.by[unit.Both]; both != nil && ts.by[unit.After] == nil {
+		return ts, nil
+	}
+	ts.close()
+	return nil, &result.Error{
+		File: u.Folder, Text: "there is no pair of takes: before.wav and after.wav, or both.wav",
+		Hint: "record the tone straight through as before.wav and through the pad as after.wav",
+	}
+}
+
+// pair are the take straight through and the one through the pad.
+func (ts *takes) pair() (straight, through *take) {
+	if both := ts.by[unit.Both]; both != nil && ts.by[unit.After] == nil {
+		return both, ts.by[second(unit.Both)]
+	}
+	return ts.by[unit.Before], ts.by[unit.After]
+}
+
+// afterTone are the takes that hold before's tone, and noiseTakes those that
+// hold none.
+var (
+	afterTone  = []string{unit.BeforeAgain, unit.AfterAgain, unit.BeforeLoaded, unit.Bypass, unit.Flex}
+	noiseTakes = []string{unit.RigNoise, unit.PadNoise}
+	legTakes   = []string{unit.Legs, unit.LegsBefore}
+)
+
+// measure settles the channels, finds the tone straight through and, in every
+// other take, what that tells to look for: under a strong pad the strongest
+// line may be hum. Then the takes are read, two at once.
+func (ts *takes) measure(channel int, matchDB, mainsHz float64) error {
+	first, err := ts.settleFirst(channel, matchDB)
+	if err != nil {
+		return err
+	}
+	if err := first.find(nil); err != nil {
+		return err
+	}
+	atHz := frequencies(first.found)
+	jobs := []func() error{first.measure}
+	for _, t := range ts.toneTakes(first) {
+		if t.channel == 0 {
+			if err := t.followChannel(first, channel, atHz, matchDB); err != nil {
+				return err
+			}
+		}
+		jobs = append(jobs, func() error { return t.findAndMeasure(atHz) })
+	}
+	if t := ts.by[unit.Calibration]; t != nil {
+		if err := t.pickChannel(channel, nil, matchDB); err != nil {
+			return err
+		}
+		jobs = append(jobs, func() error { return errors.Join(t.find(nil), t.measure()) })
+	}
+	for _, role := range noiseTakes {
+		if t := ts.by[role]; t != nil {
+			t.use(min(first.channel, t.facts.Channels))
+			jobs = append(jobs, func() error { return t.measureNoise(mainsHz) })
+		}
+	}
+	return inTwos(jobs)
+}
+
+// settleFirst gives the take straight through its channel, and the takes of two
+// channels both of theirs.
+func (ts *takes) settleFirst(channel int, matchDB float64) (*take, error) {
+	for _, role := range append([]string{unit.Both}, legTakes...) {
+		t := ts.by[role]
+		if t == nil {
+			continue
+		}
+		t.use(1)
+		if t.facts.Channels >= 2 {
+			other := &take{role: role, path: t.path, file: t.file, facts: t.facts}
+			other.use(2)
+			ts.by[second(role)] = other
+		} else if role == unit.Both {
+			return nil, &result.Error{File: t.path, Text: "there is one channel only", Hint: "record two outputs at once: channel 1 straight through, channel 2 through the pad"}
+		}
+	}
+	first, _ := ts.pair()
+	if first.channel == 0 {
+		return first, first.pickChannel(channel, nil, matchDB)
+	}
+	return first, nil
+}
+
+// toneTakes are all that hold the first take's tone, but for itself.
+func (ts *takes) toneTakes(first *take) []*take {
+	var all []*take
+	roles := append([]string{unit.Before, unit.After, unit.Both, second(unit.Both)}, afterTone...)
+	for _, role := range legTakes {
+		roles = append(roles, role, second(role))
+	}
+	for _, role := range roles {
+		if t := ts.by[role]; t != nil && t != first {
+			all = append(all, t)
+		}
+	}
+	return all
+}
+
+func (t *take) findAndMeasure(atHz []float64) error {
+	if len(atHz) > 0 {
+		if err := t.find(atHz); err != nil {
+			return err
+		}
+	}
+	return t.measure()
+}
+
+// measureNoise reads a take that holds no tone.
+func (t *take) measureNoise(mainsHz float64) error {
+	n, err := analysis.MeasureNoise(t.samples, 0, math.Inf(1), mainsHz)
+	switch {
+	case errors.Is(err, analysis.ErrSilent):
+		t.problem(compare.ChannelSilent, math.NaN(), "channel %d holds digital silence, not even the recorder's own noise; look at the routing and record again", t.channel)
+	case errors.Is(err, analysis.ErrNoiseTooShort):
+		t.problem(compare.TooShort, math.NaN(), "%v; record 60 s", err)
+	case err != nil:
+		return fmt.Errorf("%s: %w", t.path, err)
+	default:
+		t.noise = n
+		if p := compare.NoiseProblem(n); p.Name != "" {
+			t.problems = append(t.problems, p)
+		}
+		if n.Bad.Count > 0 {
+			t.problem(compare.BadSamples, n.Bad.FirstSec, "%d samples are no numbers (NaN or infinite); export the take again, or record it again", n.Bad.Count)
+		}
+	}
+	t.sha256, err = t.file.SHA256()
+	return err
+}
+
+// inTwos runs jobs, two at a time, and returns the first error in their order.
+func inTwos(jobs []func() error) error {
+	errs := make([]error, len(jobs))
+	next := make(chan int)
+	var wait sync.WaitGroup
+	for range min(2, len(jobs)) {
+		wait.Go(func() {
+			for i := range next {
+				errs[i] = jobs[i]()
+			}
+		})
+	}
+	for i := range jobs {
+		next <- i
+	}
+	close(next)
+	wait.Wait()
+	for _, err := range errs {
+		if err != nil {
+			return err
+		}
+	}
+	return nil
+}
