@@ -59,19 +59,17 @@ func doubtsBut(c *network.Circuit, index int, doubt float64) []float64 {
 	return doubts
 }
 
-// othersDB is how far the tolerances of all parts but one (-1: of all) may move
-// the loss, each at its worst. A 95 % spread would not do: the deviation that
-// counts as within the tolerances reaches to the worst case, and a part that
-// the bench does not see must fit up to there.
+// othersDB is the 95 % spread that the tolerances of all parts but one (-1: of
+// all) give the loss.
 func othersDB(c *network.Circuit, e network.Ends, freqHz float64, but int) float64 {
 	s := c.Sensitivities(e, freqHz)
 	var sum float64
 	for i, p := range c.Parts() {
-		if v := math.Abs(s[i]) * p.TolFrac; i != but && !math.IsNaN(v) && !math.IsInf(v, 0) {
-			sum += v
+		if v := s[i] * p.TolFrac / math.Sqrt(3); i != but && !math.IsNaN(v) && !math.IsInf(v, 0) {
+			sum += v * v
 		}
 	}
-	return sum
+	return 1.96 * math.Sqrt(sum)
 }
 
 // A fitting value is one of a part that, moved there alone, explains a bench
@@ -93,26 +91,35 @@ type fitting struct {
 // that explain the bench loss within the doubt of the reading, of the rig and of
 // the other parts. That doubt is the one of the circuit with the value in it: a
 // wrong part may make rig and other parts weigh far more than on the drawing.
-// uDB is the expanded uncertainty of the bench loss on the drawing.
-func (k LossCase) valuesThatFit(index int, benchDB, uDB float64) []fitting {
+// uDB is the expanded uncertainty of the bench loss on the drawing; believedDB is
+// a deviation that counts as within the tolerances for a sound unit, and must
+// then for one with a wrong part too.
+func (k LossCase) valuesThatFit(index int, benchDB, uDB, believedDB float64) []fitting {
 	part := k.Circuit.Parts()[index]
 	own := uncertainty.Budget{Terms: k.Reading.Terms}.CombinedU()
 	factor := 2.0
 	if drawn := math.Hypot(own, k.Rig.cornerDB(k.Circuit, k.Reading.FreqHz)/math.Sqrt(3)); drawn > 0 && uDB > 2*drawn {
 		factor = uDB / drawn // few degrees of freedom
 	}
-	width := uDB + othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, index)
+	w := width{own, factor, believedDB}
+	nominal := uDB + math.Max(believedDB, othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, index))
 	var fits []fitting
-	for _, value := range k.candidates(part, benchDB, width) {
-		if f, ok := k.fit(index, value, benchDB, own, factor); ok {
+	for _, value := range k.candidates(part, benchDB, nominal) {
+		if f, ok := k.fit(index, value, benchDB, w); ok {
 			fits = append(fits, f)
 		}
 	}
 	return fits
 }
 
+// A width is what a bench loss may be off by and still be explained.
+type width struct {
+	own, factor float64 // standard uncertainty of the reading alone, and what expands it
+	believedDB  float64
+}
+
 // fit tries one value.
-func (k LossCase) fit(index int, value, benchDB, own, factor float64) (fitting, bool) {
+func (k LossCase) fit(index int, value, benchDB float64, w width) (fitting, bool) {
 	freqHz := k.Reading.FreqHz
 	c := k.Circuit.With(k.Circuit.Parts()[index].Ref, value)
 	bench := c.LossDB(k.Rig.Ends, freqHz)
@@ -120,7 +127,11 @@ func (k LossCase) fit(index int, value, benchDB, own, factor float64) (fitting, 
 		return fitting{}, false
 	}
 	corner := k.Rig.cornerDB(c, freqHz)
-	f := fitting{value: value, withinDB: factor*own + corner + othersDB(c, k.Rig.Ends, freqHz, index)}
+	// Near a null of the circuit slopes say nothing: no tolerance moves a loss by more than this.
+	const mostDB = 20
+	others := math.Max(math.Min(othersDB(c, k.Rig.Ends, freqHz, index), mostDB), w.believedDB)
+	corner = math.Min(corner, mostDB)
+	f := fitting{value: value, withinDB: w.factor*w.own + corner + others}
 	if math.Abs(bench-benchDB) > f.withinDB*(1+1e-9) {
 		return fitting{}, false
 	}
@@ -133,7 +144,7 @@ func (k LossCase) fit(index int, value, benchDB, own, factor float64) (fitting, 
 	f.aloneLeftDB = carryOver(c, k.Rig.Ends, k.Service, freqHz, doubtsBut(c, index, unknown)).leftDB
 	over := carryOver(c, k.Rig.Ends, k.Service, freqHz, doubtsBut(c, index, 0))
 	f.carriedDB += over.beta * (benchDB - bench)
-	f.carriedUDB = math.Hypot(1.96*over.leftDB, over.beta*factor*math.Hypot(own, corner/math.Sqrt(3)))
+	f.carriedUDB = math.Hypot(1.96*over.leftDB, over.beta*w.factor*math.Hypot(w.own, corner/math.Sqrt(3)))
 	return f, true
 }
 

@@ -13,6 +13,7 @@ const (
 	mostMovedDB    = 0.1  // gain-moved, beyond U
 	mostStepOffDB  = 0.05 // gain-riding, beyond U
 	sameFreqWithin = mostFreqShift
+	loudBurstDB    = -20.0 // of a burst beside the tone, as loud as only the tone itself, cut up, can be
 )
 
 // ClippedProblem names cut peaks in the tone; ok is false where there are none.
@@ -46,6 +47,9 @@ func DropoutProblems(s analysis.Steadiness, moved bool) []Problem {
 	var found []Problem
 	for _, e := range s.Events {
 		switch {
+		case e.What == analysis.Crackle && e.DB > loudBurstDB && !moved:
+			found = append(found, Problem{Name: Dropout, AtSec: e.AtSec, Text: fmt.Sprintf(
+				"the tone is broken for a moment at %.2f s (%.0f dB of it): a lost buffer or a loose contact; use a larger buffer, look at the plugs, and record again", e.AtSec, e.DB)})
 		case e.What != analysis.Dropout:
 		case e.JumpDeg != 0:
 			found = append(found, Problem{Name: Dropout, AtSec: e.AtSec, Text: fmt.Sprintf(

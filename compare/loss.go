@@ -137,11 +137,11 @@ func (r *reach) include(fromDB, toDB, leftDB float64) {
 func (k LossCase) explain(l Loss) reach {
 	r := reach{lowDB: math.Inf(1), highDB: math.Inf(-1)}
 	for i := range k.Circuit.Parts() {
-		for _, v := range k.valuesThatFit(i, l.BenchDB, l.BenchUDB) {
+		for _, v := range k.valuesThatFit(i, l.BenchDB, l.BenchUDB, 0) {
 			r.include(v.serviceDB, v.serviceDB, v.aloneLeftDB)
 		}
 	}
-	for _, w := range k.swapsThatFit(l.BenchDB, l.BenchUDB) {
+	for _, w := range k.swapsThatFit(l.BenchDB, l.BenchUDB, 0) {
 		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
 		r.include(w.serviceDB, w.serviceDB, over.leftDB)
 	}

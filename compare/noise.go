@@ -191,7 +191,7 @@ func (m *noiseModel) figure(overThermal bool, base float64) (NoiseFigure, error)
 func (m *noiseModel) belowThermal(f NoiseFigure) (Problem, error) {
 	rest := uncertainty.Budget{Terms: f.Budget.Terms[:len(f.Budget.Terms)-len(m.ranges())]}
 	wideU, err := rest.ExpandedU(sureCoverage)
-	if err != nil || f.value.value+f.value.ranging+wideU >= 1 {
+	if err != nil || f.value.value+f.value.ranging+wideU >= m.leastThermal() {
 		return Problem{}, err
 	}
 	shown := "less than nothing of"
@@ -201,6 +201,19 @@ func (m *noiseModel) belowThermal(f NoiseFigure) (Problem, error) {
 	return Problem{Name: BelowThermal, AtSec: math.NaN(), Text: fmt.Sprintf(
 		"the rig's noise taken off, pad-noise shows %s the thermal noise of the drawing, which no unit can: check noise_full_scale_dbu and the gain, the plugs (noise_plug_ohms, pad_plug_ohms) and that both takes had the same gain",
 		shown)}, nil
+}
+
+// leastThermal is the thermal noise of a unit whose resistors are all at the low
+// end of their tolerances, in parts of the drawing's: an output resistance falls
+// no faster than they do.
+func (m *noiseModel) leastThermal() float64 {
+	most := 0.0
+	for _, p := range m.Circuit.Parts() {
+		if p.Kind == network.Resistor {
+			most = math.Max(most, p.TolFrac)
+		}
+	}
+	return 1 - most
 }
 
 // sureCoverage is three standard uncertainties.

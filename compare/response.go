@@ -231,7 +231,7 @@ func (j *responseJudge) conclude() {
 
 // gap says where the range is not covered, or "".
 func (j *responseJudge) gap() string {
-	const from = "the response from %.4g to %.4g Hz is not shown; record the whole test signal at a rate that reaches it, with more level over noise and hum"
+	const from = "the response from %.4g to %.4g Hz is not shown; record the whole test signal at a rate that reaches it, with more level over noise and hum, or set response_from_hz and response_to_hz to what is asked for"
 	const slack = 1 + 1e-6
 	reach := j.FromHz * slack
 	for i, p := range j.judged {

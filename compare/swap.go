@@ -17,7 +17,7 @@ type swapped struct {
 
 // swapsThatFit are the swaps of two parts that explain a bench loss within uDB
 // and what the tolerances of the parts may bring.
-func (k LossCase) swapsThatFit(benchDB, uDB float64) []swapped {
+func (k LossCase) swapsThatFit(benchDB, uDB, believedDB float64) []swapped {
 	var all []swapped
 	parts := k.Circuit.Parts()
 	for i, b := range parts {
@@ -29,7 +29,7 @@ func (k LossCase) swapsThatFit(benchDB, uDB float64) []swapped {
 			s := swapped{
 				refs: []string{a.Ref, b.Ref}, kind: a.Kind, circuit: c,
 				benchDB: c.LossDB(k.Rig.Ends, k.Reading.FreqHz), serviceDB: c.LossDB(k.Service, k.Reading.FreqHz),
-				withinDB: uDB + othersDB(c, k.Rig.Ends, k.Reading.FreqHz, -1),
+				withinDB: uDB + math.Max(believedDB, othersDB(c, k.Rig.Ends, k.Reading.FreqHz, -1)),
 			}
 			if math.Abs(s.benchDB-benchDB) <= s.withinDB {
 				all = append(all, s)

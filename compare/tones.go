@@ -11,6 +11,17 @@ import (
 // two clocks may record them, from tones of two settings.
 func SameFrequency(aHz, bHz float64) bool { return math.Abs(aHz/bHz-1) <= mostFreqShift }
 
+// IsMainsLine tells a line that is likely to be hum: one of the first ten
+// harmonics of 50 or 60 Hz, within half a per cent.
+func IsMainsLine(freqHz float64) bool {
+	for _, mainsHz := range []float64{50, 60} {
+		if n := math.Round(freqHz / mainsHz); n >= 1 && n <= 10 && math.Abs(freqHz/(n*mainsHz)-1) < 0.005 {
+			return true
+		}
+	}
+	return false
+}
+
 // levelStepDB is how far two stretches of one tone must lie apart to count as
 // two levels, beyond what their scatter explains.
 const levelStepDB = 0.1

@@ -28,9 +28,10 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 	if math.IsNaN(benchDB) || math.IsInf(benchDB, 0) || k.Rig.Ends == k.Service {
 		return nil // where bench and service are alike, what was read is the answer
 	}
+	believedDB := math.Abs(benchDB - k.Circuit.LossDB(k.Rig.Ends, k.Reading.FreqHz))
 	var all []Unseen
 	for i, p := range k.Circuit.Parts() {
-		fits := k.valuesThatFit(i, benchDB, benchUDB)
+		fits := k.valuesThatFit(i, benchDB, benchUDB, believedDB)
 		breaking, broken := nearestBreaking(fits, p, limit)
 		if !broken {
 			continue
@@ -46,7 +47,7 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 		u.SourceOhms, u.LoadOhms = k.betterEnds(i)
 		all = append(all, u)
 	}
-	return append(all, k.unseenSwaps(benchDB, benchUDB, limit)...)
+	return append(all, k.unseenSwaps(benchDB, benchUDB, believedDB, limit)...)
 }
 
 // nearestBreaking is the value nearest the drawing's, outside its tolerance, at
@@ -85,9 +86,9 @@ func (k LossCase) betterEnds(index int) (sourceOhms, loadOhms float64) {
 	return math.NaN(), math.NaN()
 }
 
-func (k LossCase) unseenSwaps(benchDB, benchUDB float64, limit Limit) []Unseen {
+func (k LossCase) unseenSwaps(benchDB, benchUDB, believedDB float64, limit Limit) []Unseen {
 	var all []Unseen
-	for _, w := range k.swapsThatFit(benchDB, benchUDB) {
+	for _, w := range k.swapsThatFit(benchDB, benchUDB, believedDB) {
 		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
 		service := w.serviceDB + over.beta*(benchDB-w.benchDB)
 		doubt := math.Hypot(1.96*over.leftDB, over.beta*benchUDB)

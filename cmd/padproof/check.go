@@ -17,6 +17,7 @@ type checkFlags struct {
 	within      float64
 	markedOhms  float64
 	onThisBench bool
+	played      string
 }
 
 func newCheck() *cobra.Command {
@@ -26,8 +27,9 @@ func newCheck() *cobra.Command {
 		Short: "Check one unit from its recordings",
 		Long: `Check one unit: PASS, FAIL or UNPROVEN, with figures and uncertainty.
 
-FOLDER holds the unit's takes, before.wav and after.wav, and the sheets pad.toml and
-rig.toml; sheets and before.wav may lie one folder up and then serve every unit there.
+FOLDER holds the unit's takes, before.wav and after.wav at least, and the sheets pad.toml
+and rig.toml; sheets, and takes of the rig alone, may lie one folder up and then serve every
+unit there.
 Or name the files by role. With no drawing, say what is marked on the pad: the mark is
 judged as a symmetrical matched pad of --marked-ohms, or with --on-this-bench as what
 this bench should read.`,
@@ -47,6 +49,23 @@ this bench should read.`,
 	path("rig", "the bench, rig.toml", "toml")
 	path("before", "the take straight through, no pad", "wav")
 	path("after", "the take through the pad", "wav")
+	for _, role := range []struct{ name, what string }{
+		{"before-again", "straight through once more, afterwards: catches a moved knob"},
+		{"after-again", "the pad unplugged and plugged again: catches a connector"},
+		{"before-loaded", "straight through with a known resistor across the input"},
+		{"calibration", "a tone of which a meter read the volts"},
+		{"bypass", "through the unit with its pad switched out"},
+		{"rig-noise", "the input closed by the noise plug"},
+		{"pad-noise", "the pad's output to the input, its own input closed by the pad plug"},
+		{"flex", "through the pad while it is flexed and tapped"},
+		{"legs", "two channels, hot to screen and cold to screen, pad in circuit"},
+		{"legs-before", "the same two channels straight through"},
+		{"both", "instead of before and after: channel 1 straight, channel 2 through the pad"},
+	} {
+		path(role.name, role.what, "wav")
+	}
+	flags.StringVar(&f.played, "signal", "", "the WAV that was played, where it is not the test signal: gives the response")
+	_ = cmd.MarkFlagFilename("signal", "wav")
 	flags.IntVar(&f.channel, "channel", 0, "the channel that holds the tone, from 1; found if left out")
 	flags.Float64Var(&f.markedLoss, "marked-loss-db", 0, "no drawing: the loss marked on the pad")
 	flags.Float64Var(&f.within, "within-db", 0, "no drawing: how far off the mark is still good")
@@ -128,7 +147,7 @@ func (f checkFlags) unit(cmd *cobra.Command, args []string) (*unit.Unit, error) 
 }
 
 func (f checkFlags) options(cmd *cobra.Command) (proof.Options, error) {
-	o := proof.Options{Channel: f.channel}
+	o := proof.Options{Channel: f.channel, Played: f.played}
 	given := cmd.Flags().Changed
 	if given("channel") && f.channel < 1 {
 		return o, usageError(cmd, "--channel counts from 1, not %d", f.channel)

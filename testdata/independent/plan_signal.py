@@ -77,6 +77,8 @@ def response(rng, i):
         # Nothing in it is a tone: what the loss is cannot be told by one.
         del unit.truth["recorded_loss_db"]
     unit.limits = {"response_plus_minus_db": 0.5}
+    if kind == "stepped":
+        unit.limits |= {"response_from_hz": STEPS_HZ[0], "response_to_hz": STEPS_HZ[-1]}
     off = abs(unit.truth["response_db"])
     unit.expect = "pass" if off < 0.3 and not kind.startswith("70 dB") else "not-pass" if off > 0.5 else ""
     unit.truth.update(ratio_ppm=ppm, noise_dbfs=noise, hum=bool(hum), rate_hz=rate, player_hz=player,

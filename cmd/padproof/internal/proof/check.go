@@ -30,7 +30,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	defer ts.close()
 	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
 	cal := d.Sheet.Calibration
-	if err := ts.measure(o.Channel, cal.ChannelMatchDB, d.Sheet.MainsHz); err != nil {
+	if err := ts.measure(o.Channel, cal.ChannelMatchDB, d.Sheet.MainsHz, o.Played != ""); err != nil {
 		return nil, err
 	}
 	if err := c.judge(); err != nil {

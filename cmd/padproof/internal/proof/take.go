@@ -80,6 +80,8 @@ func (t *take) explain(err error) error {
 	case leg && errors.Is(err, analysis.ErrNoTone): // a dead leg is the unit's, not the take's
 	case errors.Is(err, analysis.ErrSilent):
 		t.problem(compare.ChannelSilent, math.NaN(), "channel %d holds digital silence; look at the cable, the routing and the channel, and record again", t.channel)
+	case errors.As(err, &other) && compare.IsMainsLine(other.FreqHz):
+		t.problem(compare.NoTone, math.NaN(), "no tone at %s, only hum at %.4g Hz, %.1f dBFS; look at the pad's connections, and record again with the tone playing", hertzList(other.WantHz), other.FreqHz, other.LevelDBFS)
 	case errors.As(err, &other):
 		t.problem(compare.FrequencyDiffers, math.NaN(), "no tone at %s, but one at %.6g Hz, %.1f dBFS; record both takes with one setting of the generator", hertzList(other.WantHz), other.FreqHz, other.LevelDBFS)
 	case errors.Is(err, analysis.ErrTooShort):
@@ -153,7 +155,7 @@ func (t *take) noteSteadiness(tone analysis.Tone) {
 				from, to = t.placed.TakeSec(stage.StartSec), t.placed.TakeSec(stage.StartSec+stage.LengthSec)
 			}
 		}
-	} else if len(t.measured.Tones) > 1 {
+	} else if len(t.measured.Tones) > 1 && t.role != unit.Flex {
 		from, to = tone.StartSec, tone.EndSec // several levels or tones: each is steady by itself
 	}
 	t.steady = analysis.Steady(&t.measured.Track, tone, from, to)

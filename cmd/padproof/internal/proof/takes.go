@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"sync"
 
 	"padproof/analysis"
@@ -93,14 +94,18 @@ var (
 
 // measure settles the channels, finds the tone straight through and, in every
 // other take, what that tells to look for: under a strong pad the strongest
-// line may be hum. Then the takes are read, two at once.
-func (ts *takes) measure(channel int, matchDB, mainsHz float64) error {
+// line may be hum. Then the takes are read, two at once. With anything played, a
+// take straight through need not hold a tone.
+func (ts *takes) measure(channel int, matchDB, mainsHz float64, anything bool) error {
 	first, err := ts.settleFirst(channel, matchDB)
 	if err != nil {
 		return err
 	}
 	if err := first.find(nil); err != nil {
 		return err
+	}
+	if anything {
+		first.problems = without(first.problems, compare.NoTone, compare.TooShort)
 	}
 	atHz := frequencies(first.found)
 	jobs := []func() error{first.measure}
@@ -110,7 +115,11 @@ func (ts *takes) measure(channel int, matchDB, mainsHz float64) error {
 				return err
 			}
 		}
-		jobs = append(jobs, func() error { return t.findAndMeasure(atHz) })
+		lookHz := atHz
+		if len(atHz) > 0 && (t.role == unit.Legs || t.role == unit.LegsBefore) {
+			lookHz = ts.legTonesHz(t.role, atHz)
+		}
+		jobs = append(jobs, func() error { return t.findAndMeasure(lookHz) })
 	}
 	if t := ts.by[unit.Calibration]; t != nil {
 		if err := t.pickChannel(channel, nil, matchDB); err != nil {
@@ -175,6 +184,22 @@ func (t *take) findAndMeasure(atHz []float64) error {
 	return t.measure()
 }
 
+// legTonesHz are the tones to look for in the legs: before's, or where the legs
+// were recorded with another, that.
+func (ts *takes) legTonesHz(role string, atHz []float64) []float64 {
+	for _, key := range []string{role, second(role)} {
+		t := ts.by[key]
+		if t == nil {
+			continue
+		}
+		var other *analysis.OtherToneError
+		if _, err := analysis.FindTonesAt(t.samples, atHz); errors.As(err, &other) && !compare.IsMainsLine(other.FreqHz) {
+			return []float64{other.FreqHz}
+		}
+	}
+	return atHz
+}
+
 // measureNoise reads a take that holds no tone.
 func (t *take) measureNoise(mainsHz float64) error {
 	n, err := analysis.MeasureNoise(t.samples, 0, math.Inf(1), mainsHz)
@@ -196,6 +221,17 @@ func (t *take) measureNoise(mainsHz float64) error {
 	}
 	t.sha256, err = t.file.SHA256()
 	return err
+}
+
+// without leaves out the problems of some names.
+func without(problems []compare.Problem, names ...string) []compare.Problem {
+	var rest []compare.Problem
+	for _, p := range problems {
+		if !slices.Contains(names, p.Name) {
+			rest = append(rest, p)
+		}
+	}
+	return rest
 }
 
 // inTwos runs jobs, two at a time, and returns the first error in their order.
