@@ -133,6 +133,9 @@ func runRehearse(cmd *cobra.Command, f rehearseFlags) error {
 	}
 	r := f.rehearsed(drawing, faults, plan, takes)
 	r.Warnings = append(r.Warnings, leftOut...)
+	if r.Proven, err = provenBy(f.out); err != nil {
+		r.Warnings = append(r.Warnings, "padproof check cannot judge these takes: "+describe(err).Error())
+	}
 	if wantsJSON(cmd) {
 		return writeJSON(cmd.OutOrStdout(), r)
 	}

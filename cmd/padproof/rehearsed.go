@@ -11,6 +11,7 @@ import (
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/rehearsal"
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare/network"
 )
 
@@ -64,6 +65,41 @@ func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p re
 	return r
 }
 
+// provenBy checks the takes that were written: which limits this rig could
+// prove, and which not, and why.
+func provenBy(folder string) ([]result.Proven, error) {
+	proven := []result.Proven{}
+	u, err := unit.Open(folder)
+	if err != nil {
+		return proven, err
+	}
+	answer, err := proof.Check(u, proof.Options{})
+	if err != nil {
+		return proven, err
+	}
+	for _, c := range answer.Checks {
+		if c.Verdict != "" {
+			proven = append(proven, result.Proven{Check: c.Name, Verdict: c.Verdict, Reason: c.Reason})
+		}
+	}
+	return proven, nil
+}
+
+func provenText(r *result.Rehearsal) []string {
+	if len(r.Proven) == 0 {
+		return nil
+	}
+	lines := []string{"These takes prove of the limits set:"}
+	for _, p := range r.Proven {
+		line := "  " + p.Check + ": " + p.Verdict
+		if p.Reason != "" {
+			line += " (" + p.Reason + ")"
+		}
+		lines = append(lines, line)
+	}
+	return lines
+}
+
 func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 	var files []string
 	for _, t := range r.Takes {
@@ -101,6 +137,7 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 	for _, warning := range r.Warnings {
 		lines = append(lines, "Warning: "+warning+".")
 	}
+	lines = append(lines, provenText(r)...)
 	lines = append(lines, "Next: padproof check "+quoteForShell(r.Folder))
 	_, err := fmt.Fprintln(w, strings.Join(lines, "\n"))
 	return err

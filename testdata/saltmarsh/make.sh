@@ -1,5 +1,6 @@
 #!/bin/sh
-# Make the demo's simulated captures again: a sound unit, and one with the wrong shunt.
+# Make the demo's simulated captures again: a sound unit recorded with
+# the test signal, and one with the wrong shunt recorded with a plain tone.
 set -eu
 cd "$(dirname "$0")/../.."
 make_unit() {
@@ -8,8 +9,8 @@ make_unit() {
     shift 2
     rm -rf "$folder"
     go run ./cmd/padproof rehearse --pad testdata/saltmarsh/pad.toml --rig testdata/saltmarsh/rig.toml \
-        --out "$folder" --vary --seed "$seed" --seconds 3 "$@"
+        --out "$folder" --vary --seed "$seed" "$@"
     rm "$folder/pad.toml" "$folder/rig.toml" # those one folder up serve every unit
 }
-make_unit 0417 417
-make_unit 0418 418 --fault "R3 is 360"
+make_unit 0417 417 --signal test --bits 16
+make_unit 0418 418 --seconds 3 --fault "R3 is 360"

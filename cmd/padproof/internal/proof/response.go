@@ -129,5 +129,6 @@ func (c *check) playedResponse(straight, through *take) ([]analysis.ResponsePoin
 	if _, err := analysis.FindSignal(played); err == nil {
 		return nil, &result.Error{File: c.played, Text: "is the test signal itself", Hint: "leave --signal out: the test signal is recognised by its markers"}
 	}
-	return analysis.PlayedResponse(played, straight.samples, through.samples)
+	points, err := analysis.PlayedResponse(played, straight.samples, through.samples)
+	return analysis.WithoutMains(points, c.Sheet.MainsHz), err
 }

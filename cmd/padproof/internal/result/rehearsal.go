@@ -34,6 +34,13 @@ type Rehearsal struct {
 	Warnings []string         `json:"warnings"`
 }
 
+// Proven is what a rehearsed unit's takes prove of one limit.
+type Proven struct {
+	Check   string `json:"check"`
+	Verdict string `json:"verdict"`
+	Reason  string `json:"reason"`
+}
+
 // Losses are those of a pad at the tone; null where nothing comes through.
 type Losses struct {
 	BenchDB   Number `json:"bench_loss_db"`
