@@ -30,6 +30,7 @@ type Rehearsal struct {
 
 	Flex     []RehearsedEvent `json:"flex"`    // what happens in it
 	Drawing  Losses           `json:"drawing"` // as stated
+	Proven   []Proven         `json:"proven"`  // what check makes of the takes, limit by limit
 	Truth    Truth            `json:"truth"`   // as rehearsed
 	Warnings []string         `json:"warnings"`
 }
