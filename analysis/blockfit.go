@@ -67,13 +67,13 @@ func newBlockFit(rateHz, freqHz float64) (*blockFit, error) {
 // holds just one of 1, cos, sin.
 func (f *blockFit) invert() error {
 	hop := len(f.rise)
-	x := make([]float64, 2*hop)
+	columns := [3][]float64{make([]float64, 2*hop), make([]float64, 2*hop), make([]float64, 2*hop)}
+	for n := range 2 * hop {
+		columns[0][n] = 1
+		columns[2][n], columns[1][n] = math.Sincos(2 * math.Pi * turns(f.freqHz, n, f.rateHz))
+	}
 	block, one := mat.NewDense(3, 3, nil), mat.NewDense(3, 3, nil)
-	for c := range 3 {
-		for n := range x {
-			sin, cos := math.Sincos(2 * math.Pi * turns(f.freqHz, n, f.rateHz))
-			x[n] = [3]float64{1, cos, sin}[c]
-		}
+	for c, x := range columns {
 		first, second := f.sums(x[:hop]), f.sums(x[hop:])
 		for r, v := range f.join(first, second) {
 			block.Set(r, c, v)

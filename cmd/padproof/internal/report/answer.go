@@ -49,7 +49,7 @@ func checks(p *page, a *result.Answer) {
 		return
 	}
 	p.line("")
-	rows := [][]string{{"check", "verdict", "measured", "expected", "limits", "±U", "unit"}}
+	rows := [][]string{{"check", "verdict", "measured", "expected", "limits", "±U", "unit", "limit/U"}}
 	for _, c := range a.Checks {
 		rows = append(rows, checkRow(c))
 		if c.Bench != nil {
@@ -75,14 +75,23 @@ func checks(p *page, a *result.Answer) {
 		if c.Name == "loss" && c.AtHz != nil {
 			p.item("  judged at: ", hertz(*c.AtHz, 1))
 		}
-		if c.Ratio.OK() {
-			p.item("  ", fmt.Sprintf("The limits of %s are %s times as wide as U.", c.Name, significant(float64(c.Ratio))))
-		}
 		if c.Spread != nil && c.Spread.Low95.OK() {
 			p.item("  ", fmt.Sprintf("Sound units of this drawing read %s to %s %s (95 %%), %s to %s at worst.",
 				fixed(c.Spread.Low95, 2), fixed(c.Spread.High95, 2), c.Unit, fixed(c.Spread.WorstLow, 2), fixed(c.Spread.WorstHigh, 2)))
 		}
 	}
+}
+
+// ratio is how many times the limits are wider than U, "over 99" where that is
+// no matter.
+func ratio(n result.Number) string {
+	switch {
+	case !n.OK():
+		return dash
+	case n > 99:
+		return "over 99"
+	}
+	return toDigits(float64(n), 2)
 }
 
 func checkRow(c result.Check) []string {
@@ -98,7 +107,7 @@ func checkRow(c result.Check) []string {
 	case !c.Measured.OK() && c.Bound != nil && c.Bound.OK():
 		measured, u = "below "+fixed(*c.Bound, 1), dash
 	}
-	return []string{c.Name, verdict, measured, fixed(c.Expected, places), limits(c, places), u, c.Unit}
+	return []string{c.Name, verdict, measured, fixed(c.Expected, places), limits(c, places), u, c.Unit, ratio(c.Ratio)}
 }
 
 func tones(p *page, a *result.Answer) {
