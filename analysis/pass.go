@@ -42,6 +42,7 @@ func newPass(s Samples, stretches []Stretch) (*pass, error) {
 	hop := hopSamples(rateHz)
 	p := &pass{rateHz: rateHz, hop: hop, flat: flatFinder{rateHz: rateHz, hop: hop}}
 	p.track.HopSec, p.track.rateHz = float64(hop)/rateHz, rateHz
+	p.track.room(int(min(s.Frames()/int64(hop)+1, mostRoom)))
 	ordered := append([]Stretch(nil), stretches...)
 	sort.SliceStable(ordered, func(i, j int) bool { return ordered[i].StartSec < ordered[j].StartSec })
 	for i, g := range ordered {

@@ -23,6 +23,15 @@ type trackSpan struct {
 	freqHz float64
 }
 
+// mostRoom is an hour of blocks: a header may claim any length.
+const mostRoom = 72000
+
+// room makes room for so many blocks at once, so that growing leaves nothing behind.
+func (t *Track) room(blocks int) {
+	t.blocks = make([]complex64, 0, blocks)
+	t.square, t.leftover, t.reach = make([]float32, 0, blocks), make([]float32, 0, blocks), make([]float32, 0, blocks)
+}
+
 // Len returns the number of blocks.
 func (t *Track) Len() int { return len(t.blocks) }
 
