@@ -127,7 +127,7 @@ func AgainProblems(before, again Side) []Problem {
 	add := func(name, format string, args ...any) {
 		found = append(found, Problem{Name: name, AtSec: math.NaN(), Text: fmt.Sprintf(format, args...)})
 	}
-	if before.SHA256 == again.SHA256 || before.Frames == again.Frames && sameSamples(b, a) {
+	if before.SHA256 == again.SHA256 || before.Frames == again.Frames && SameSamples(b, a) {
 		add(SameRecording, "before and before-again are one and the same recording; record before-again anew, after all the others")
 		return found
 	}
@@ -153,7 +153,7 @@ func LegsProblems(channels int, hot, cold analysis.Tone, silentHot, silentCold b
 		text = "both channels hold digital silence; look at routing and cables, and record again"
 	case silentHot || silentCold:
 		text = "one channel holds digital silence: nothing was routed to it; arm both inputs and record again"
-	case sameSamples(hot, cold):
+	case SameSamples(hot, cold):
 		text = "both channels hold one and the same signal; give each leg an input of its own, and record as two channels, not mono"
 	default:
 		return nil
@@ -164,10 +164,10 @@ func LegsProblems(channels int, hot, cold analysis.Tone, silentHot, silentCold b
 // What two tones of the same samples differ by: rounding alone.
 const copyDB, copyRad, copyNoiseDB = 1e-7, 1e-6, 1e-4
 
-// sameSamples tells a copy, at the same polarity or turned over, from two recordings or two inputs,
+// SameSamples tells a copy, at the same polarity or turned over, from two recordings or two inputs,
 // whose noise differs. Two legs, or two takes from a player and a recorder on one clock, may agree
 // closely in level and phase, but not in the noise beside the tone as well.
-func sameSamples(a, b analysis.Tone) bool {
+func SameSamples(a, b analysis.Tone) bool {
 	turn := math.Abs(math.Remainder(a.PhaseRad-b.PhaseRad, math.Pi))
 	return a.Blocks > 0 && a.StartSec == b.StartSec && a.EndSec == b.EndSec &&
 		math.Abs(a.LevelDBFS-b.LevelDBFS) < copyDB && turn < copyRad &&
@@ -182,7 +182,7 @@ func BothProblems(straight, through analysis.Tone, reading LossReading) []Proble
 	}
 	weakUDB := scatterU(reading)
 	switch {
-	case sameSamples(straight, through):
+	case SameSamples(straight, through):
 		add(SameRecording, "both channels hold one and the same signal; channel 1 goes straight through, channel 2 through the pad")
 	case reading.LossDB < -(weakUDB + swappedDB):
 		add(SwappedTakes, "channel 2 is %.2f dB louder than channel 1, which no passive pad does; the channels are swapped: the pad belongs into channel 2", -reading.LossDB)

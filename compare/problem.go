@@ -29,29 +29,35 @@ const (
 	BelowThermal     = "below-thermal"
 )
 
-// tonal are the checks that stand on the tone of before and after.
-var tonal = []string{"loss", "response", "flatness", "distortion", "polarity", "bypass", "legs", "steadiness"}
+// tonal are the checks that stand on a tone, quiet those that stand on its
+// absence, and every is all of them.
+var (
+	tonal = []string{"loss", "response", "flatness", "distortion", "polarity", "bypass", "legs", "steadiness"}
+	quiet = []string{"noise", "noise-level", "hum"}
+	every = append(append([]string{}, tonal...), quiet...)
+)
 
-// voids says which checks a problem of a take takes the ground from. A problem
-// that is not in it voids nothing: it is shown, and the answer stands.
+// voids says which checks a problem of a take takes the ground from, where the
+// check stands on that take. A problem that is not in it voids nothing: it is
+// shown, and the answer stands.
 var voids = map[string][]string{
-	Clipped:          tonal,
-	GainRiding:       {"loss", "response", "flatness", "steadiness", "noise", "noise-level", "hum"},
-	GainMoved:        {"loss", "bypass", "noise", "noise-level", "hum"},
-	ChannelSilent:    tonal,
-	Dropout:          tonal,
-	SwappedTakes:     tonal,
-	SameRecording:    tonal,
-	FrequencyDiffers: tonal,
-	NoTone:           tonal,
-	TooShort:         tonal,
+	Clipped:          every,
+	GainRiding:       every,
+	GainMoved:        {"loss", "bypass", "hum"},
+	ChannelSilent:    every,
+	Dropout:          every,
+	SwappedTakes:     every,
+	SameRecording:    every,
+	FrequencyDiffers: every,
+	NoTone:           every,
+	TooShort:         every,
 	TooWeak:          {"loss", "bypass"},
-	NotClosed:        tonal, // what is missing cannot be told: a file saved whole settles it
-	CutShort:         tonal,
-	BadSamples:       tonal,
+	NotClosed:        every, // what is missing cannot be told: a file saved whole settles it
+	CutShort:         every,
+	BadSamples:       every,
 	OneChannel:       {"legs"},
-	ToneInNoise:      {"noise", "noise-level", "hum"},
-	BelowThermal:     {"noise", "noise-level", "hum"},
+	ToneInNoise:      quiet,
+	BelowThermal:     quiet,
 }
 
 // Voids reports whether a problem leaves the named check without ground, so

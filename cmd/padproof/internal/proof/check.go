@@ -29,6 +29,9 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	}
 	defer ts.close()
 	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
+	if o.Played != "" && d.Circuit == nil {
+		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
+	}
 	cal := d.Sheet.Calibration
 	if err := ts.measure(o.Channel, cal.ChannelMatchDB, d.Sheet.MainsHz, o.Played != ""); err != nil {
 		return nil, err
@@ -73,9 +76,11 @@ func (c *check) judge() (err error) {
 	if c.rule, err = compare.ParseRule(c.Limits.Decision); err != nil {
 		return err
 	}
-	if err := c.pairUp(); err != nil {
+	c.takes.noteCopies()
+	if err := c.takes.noteSteps(c.Gains.LinearityDB); err != nil {
 		return err
 	}
+	c.pairUp()
 	if err := c.findRig(); err != nil {
 		return err
 	}
@@ -92,6 +97,11 @@ func (c *check) judge() (err error) {
 // add enters a check with its budget; a problem of one of the takes that it
 // stands on takes its ground away.
 func (c *check) add(one result.Check, terms []result.Term, on ...*take) {
+	for _, t := range on {
+		if t != nil {
+			on = append(on, c.takes.by[second(t.role)])
+		}
+	}
 	void(&one, on...)
 	c.answer.Checks = append(c.answer.Checks, one)
 	c.answer.Budget = append(c.answer.Budget, terms...)
@@ -154,6 +164,8 @@ func (c *check) finish(u *unit.Unit) *result.Answer {
 	a.Verdict = string(verdict)
 	switch {
 	case reason == "":
+	case c.mark == nil && c.Circuit == nil:
+		a.Reason = reason + ": there is no drawing; give a pad.toml, or say what is marked on the pad"
 	case c.mark != nil:
 		a.Reason = reason + ": say with --within-db how far off the mark is still good"
 	default:

@@ -11,12 +11,12 @@ import (
 
 // pairUp settles at which stretches of the tone the takes are judged, and names
 // what only two takes together show.
-func (c *check) pairUp() error {
+func (c *check) pairUp() {
 	straight, through := c.takes.pair()
 	b, t, problems, ok := compare.PairTones(straight.measured.Tones, through.measured.Tones)
 	through.problems = append(through.problems, problems...)
 	if !ok {
-		return nil
+		return
 	}
 	straight.judged, through.judged = &b, &t
 	reading := c.reading()
@@ -29,11 +29,6 @@ func (c *check) pairUp() error {
 		repeat := c.takes.by[unit.BeforeAgain]
 		repeat.problems = append(repeat.problems, compare.AgainProblems(side(straight, b), side(repeat, again))...)
 	}
-	linearityDB := c.Gains.LinearityDB
-	if err := straight.noteStep(linearityDB); err != nil {
-		return err
-	}
-	return through.noteStep(linearityDB)
 }
 
 func side(t *take, tone analysis.Tone) compare.Side {

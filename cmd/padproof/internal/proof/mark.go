@@ -127,6 +127,10 @@ func (c *check) eitherCheck(reading compare.LossReading) (result.Check, []result
 	apart := math.Abs(float64(first.Measured-second.Measured)) / 2
 	first.Measured = (first.Measured + second.Measured) / 2
 	first.Uncertainty = result.Number(math.Max(float64(first.Uncertainty), float64(second.Uncertainty)) + apart)
+	if limit, set := c.lossLimit(c.mark.LossDB); set && first.Verdict == string(compare.Pass) {
+		verdict, reason := compare.Decide(c.rule, float64(first.Measured), float64(first.Uncertainty), limit, c.mark.LossDB)
+		decide(&first, verdict, reason, limit, c.mark.LossDB)
+	}
 	return first, terms, nil
 }
 

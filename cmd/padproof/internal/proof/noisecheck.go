@@ -1,6 +1,8 @@
 package proof
 
 import (
+	"errors"
+	"fmt"
 	"math"
 
 	"padproof/analysis"
@@ -12,6 +14,10 @@ import (
 const dBPerNeperPower = 10 / math.Ln10 // decibels of a small relative change of power
 
 const picoamp = 1e-12
+
+// plugTolFrac is the tolerance taken for a plug: that of a common metal-film
+// part. rig.toml has no key for it.
+const plugTolFrac = 0.01
 
 // noise judges the unit's noise over thermal, and its level, from pad-noise and
 // rig-noise.
@@ -54,7 +60,11 @@ func (c *check) lacksNoise(over, level compare.Limit, pad *take) {
 		limit compare.Limit
 	}{{emptyCheck("noise", "dB"), over}, {emptyCheck("noise-level", "dBu"), level}} {
 		if one.limit.IsSet() {
-			decide(&one.check, compare.Unproven, "there is no noise of the unit to judge; record rig-noise.wav and pad-noise.wav, 60 s each", one.limit, math.NaN())
+			reason := "there is no noise of the unit to judge; record rig-noise.wav and pad-noise.wav, 60 s each"
+			if pad != nil {
+				reason = "pad-noise.wav holds no noise that can be judged; record it again, 60 s"
+			}
+			decide(&one.check, compare.Unproven, reason, one.limit, math.NaN())
 			c.add(one.check, nil, pad)
 		}
 	}
@@ -73,18 +83,34 @@ func (c *check) addNoise(name, unitName string, n compare.UnitNoise, f compare.N
 			one.QuasiPeak = result.NumberOf(q.MeanDBFS + c.found.noiseDBu)
 		}
 	}
-	c.add(one, scaledTerms(name, f.Budget, dBPerNeperPower), pad, c.takes.by[unit.RigNoise])
+	straight, through := c.takes.pair() // automatic gain there was at work here too
+	c.add(one, scaledTerms(name, f.Budget, dBPerNeperPower), pad, c.takes.by[unit.RigNoise], riding(straight), riding(through))
+}
+
+// riding is the take if automatic gain was at work in it, else nil.
+func riding(t *take) *take {
+	for _, p := range t.problems {
+		if p.Name == compare.GainRiding {
+			return t
+		}
+	}
+	return nil
 }
 
 // noiseBench is the rig as it recorded the noise takes.
 func (c *check) noiseBench() compare.NoiseBench {
 	cal := c.Sheet.Calibration
+	padPlugTolFrac := plugTolFrac
+	if c.Sheet.Assumes("calibration.pad_plug_ohms") {
+		padPlugTolFrac = c.Rig.SourceTolFrac
+	}
 	return compare.NoiseBench{
 		Ends: c.Rig.Ends, LoadTolFrac: c.Rig.LoadTolFrac, CableTolFarads: c.Rig.CableTolFarads,
 		FullScaleDBu: c.found.noiseDBu, CalibrationUDB: c.found.uDB, GainDriftDB: cal.NoiseGainDriftDB,
 		LowAmps:       (cal.NoiseCurrentPA - cal.NoiseCurrentHalfPA) * picoamp,
 		HighAmps:      (cal.NoiseCurrentPA + cal.NoiseCurrentHalfPA) * picoamp,
 		NoisePlugOhms: cal.NoisePlugOhms, PadPlugOhms: cal.PadPlugOhms,
+		NoisePlugTolFrac: plugTolFrac, PadPlugTolFrac: padPlugTolFrac,
 		TempC: c.Sheet.TemperatureC, TempHalfC: c.Sheet.TemperatureHalfC,
 	}
 }
@@ -105,7 +131,12 @@ func (c *check) hum() error {
 	if err != nil {
 		return err
 	}
-	f, err := compare.JudgeHum(compare.HumCase{Unit: unitHum, Rig: rigHum, CalibrationUDB: c.found.uDB})
+	uDB := c.found.uDB
+	if unitHum.Noise.Hum == nil { // read in after: its gain against before's is in doubt too
+		g := c.Gains
+		uDB = math.Hypot(uDB, 2/math.Sqrt(3)*math.Hypot(g.AfterDoubtDB, math.Hypot(g.DriftDB, g.LinearityDB)))
+	}
+	f, err := compare.JudgeHum(compare.HumCase{Unit: unitHum, Rig: rigHum, CalibrationUDB: uDB})
 	if err != nil {
 		return err
 	}
@@ -116,7 +147,7 @@ func (c *check) hum() error {
 	one.From, one.Bound, one.RigDBu, one.MainsHz = f.From, result.NumberOf(f.Bound), result.NumberOf(f.RigDBu), result.NumberOf(f.MainsHz)
 	on := []*take{through}
 	if f.From == compare.FromPadNoise {
-		on = []*take{c.takes.by[unit.PadNoise], c.takes.by[unit.RigNoise]}
+		on = []*take{c.takes.by[unit.PadNoise], c.takes.by[unit.RigNoise], riding(straight), riding(through)}
 	}
 	c.add(one, scaledTerms("hum", f.Budget, dBPerNeperPower), on...)
 	return nil
@@ -158,8 +189,11 @@ func silenceHum(t *take, mainsHz float64) (*analysis.Hum, error) {
 		return nil, nil
 	}
 	n, err := analysis.MeasureNoise(t.samples, from, to, mainsHz)
-	if err != nil {
-		return nil, nil // digital silence holds no hum; anything else was read before
+	switch {
+	case errors.Is(err, analysis.ErrSilent) || errors.Is(err, analysis.ErrNoiseTooShort):
+		return nil, nil // digital silence holds no hum
+	case err != nil:
+		return nil, fmt.Errorf("%s: %w", t.path, err)
 	}
 	return n.Hum, nil
 }

@@ -55,7 +55,8 @@ func (c *check) findSource(found *result.Found) (bool, error) {
 	if !ok || !c.judgedPair() {
 		return false, nil
 	}
-	if t := c.takes.by[unit.BeforeLoaded]; c.voided(t) {
+	straight, _ := c.takes.pair()
+	if c.voided(c.takes.by[unit.BeforeLoaded]) || c.voided(straight) || c.voided(c.takes.by[unit.BeforeAgain]) {
 		c.answer.Warnings = append(c.answer.Warnings, "before-loaded was left out: see Problems")
 		return false, nil
 	}
@@ -81,6 +82,9 @@ func (c *check) findSource(found *result.Found) (bool, error) {
 
 // voided reports whether a problem keeps a take's level from being used.
 func (c *check) voided(t *take) bool {
+	if t == nil {
+		return false
+	}
 	for _, p := range t.problems {
 		if compare.Voids(p.Name, "loss") {
 			return true

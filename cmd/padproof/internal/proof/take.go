@@ -140,6 +140,9 @@ func (t *take) noteSamples() {
 			break
 		}
 	}
+	if len(m.Tones) == 0 && m.Clipped.Runs > 0 { // no tone to look within: music, say
+		t.problem(compare.Clipped, m.Clipped.FirstSec, "%d peaks are cut off at %.1f dBFS; lower the level or the gain and record again", m.Clipped.Runs, m.Clipped.LevelDBFS)
+	}
 	if tone, ok := t.mainTone(); ok {
 		t.noteSteadiness(tone)
 	}

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"path/filepath"
 	"slices"
 	"sync"
 
@@ -111,7 +112,7 @@ func (ts *takes) measure(channel int, matchDB, mainsHz float64, anything bool) e
 	jobs := []func() error{first.measure}
 	for _, t := range ts.toneTakes(first) {
 		if t.channel == 0 {
-			if err := t.followChannel(first, channel, atHz, matchDB); err != nil {
+			if err := t.followChannel(ts.leader(t.role, first), channel, atHz, matchDB); err != nil {
 				return err
 			}
 		}
@@ -122,18 +123,26 @@ func (ts *takes) measure(channel int, matchDB, mainsHz float64, anything bool) e
 		jobs = append(jobs, func() error { return t.findAndMeasure(lookHz) })
 	}
 	if t := ts.by[unit.Calibration]; t != nil {
-		if err := t.pickChannel(channel, nil, matchDB); err != nil {
-			return err
-		}
+		t.use(min(first.channel, t.facts.Channels))
 		jobs = append(jobs, func() error { return errors.Join(t.find(nil), t.measure()) })
 	}
 	for _, role := range noiseTakes {
 		if t := ts.by[role]; t != nil {
-			t.use(min(first.channel, t.facts.Channels))
+			t.use(min(ts.leader(unit.PadNoise, first).channel, t.facts.Channels))
 			jobs = append(jobs, func() error { return t.measureNoise(mainsHz) })
 		}
 	}
 	return inTwos(jobs)
+}
+
+// leader is the take whose channel a role follows: with both channels in one
+// take, what goes through the pad follows the second.
+func (ts *takes) leader(role string, first *take) *take {
+	_, through := ts.pair()
+	if first.role == unit.Both && slices.Contains([]string{unit.AfterAgain, unit.Bypass, unit.Flex, unit.PadNoise}, role) {
+		return through
+	}
+	return first
 }
 
 // settleFirst gives the take straight through its channel, and the takes of two
@@ -200,6 +209,10 @@ func (ts *takes) legTonesHz(role string, atHz []float64) []float64 {
 	return atHz
 }
 
+// noiseClipsDBFS is where a noise take counts as clipped: noise has no level
+// that it keeps, so one sample at full scale is enough.
+const noiseClipsDBFS = -0.01
+
 // measureNoise reads a take that holds no tone.
 func (t *take) measureNoise(mainsHz float64) error {
 	n, err := analysis.MeasureNoise(t.samples, 0, math.Inf(1), mainsHz)
@@ -214,6 +227,9 @@ func (t *take) measureNoise(mainsHz float64) error {
 		t.noise = n
 		if p := compare.NoiseProblem(n); p.Name != "" {
 			t.problems = append(t.problems, p)
+		}
+		if n.PeakDBFS > noiseClipsDBFS {
+			t.problem(compare.Clipped, math.NaN(), "the noise reaches %.2f dBFS, full scale; lower the gain and record both noise takes again", n.PeakDBFS)
 		}
 		if n.Bad.Count > 0 {
 			t.problem(compare.BadSamples, n.Bad.FirstSec, "%d samples are no numbers (NaN or infinite); export the take again, or record it again", n.Bad.Count)
@@ -234,6 +250,35 @@ func without(problems []compare.Problem, names ...string) []compare.Problem {
 	return rest
 }
 
+// noteCopies names takes that are copies of another: the later one proves
+// nothing. Before and after are held against each other elsewhere, more closely.
+func (ts *takes) noteCopies() {
+	for i, later := range ts.order {
+		for _, t := range ts.order[:i] {
+			if t.sha256 == later.sha256 || ts.sameTone(t.role, later.role) {
+				later.problem(compare.SameRecording, math.NaN(), "this is the recording %s once more; record each take by itself", filepath.Base(t.path))
+				break
+			}
+		}
+	}
+}
+
+func (ts *takes) sameTone(role, other string) bool {
+	a, okA := ts.tone(role)
+	b, okB := ts.tone(other)
+	return okA && okB && compare.SameSamples(a, b)
+}
+
+// noteSteps looks for automatic gain in every take of the test signal.
+func (ts *takes) noteSteps(linearityDB float64) error {
+	for _, t := range ts.by {
+		if err := t.noteStep(linearityDB); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
 // inTwos runs jobs, two at a time, and returns the first error in their order.
 func inTwos(jobs []func() error) error {
 	errs := make([]error, len(jobs))
@@ -242,7 +287,7 @@ func inTwos(jobs []func() error) error {
 	for range min(2, len(jobs)) {
 		wait.Go(func() {
 			for i := range next {
-				errs[i] = jobs[i]()
+				errs[i] = guarded(jobs[i])
 			}
 		})
 	}
@@ -257,4 +302,15 @@ func inTwos(jobs []func() error) error {
 		}
 	}
 	return nil
+}
+
+// guarded turns a fault of the program in a worker into an error: the end that
+// Go makes of it has the exit status of UNPROVEN.
+func guarded(job func() error) (err error) {
+	defer func() {
+		if r := recover(); r != nil {
+			err = fmt.Errorf("a fault in padproof itself: %v", r)
+		}
+	}()
+	return job()
 }

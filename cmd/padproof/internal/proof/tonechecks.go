@@ -92,14 +92,9 @@ func (c *check) steadiness() error {
 		return err
 	}
 	one, terms := checkOf("steadiness", "dB", f.Finding)
-	one.From = f.From
-	for _, s := range []*analysis.Steadiness{k.After, k.Flex} {
-		if s == nil {
-			continue
-		}
-		for _, e := range s.Events {
-			one.Events = append(one.Events, result.Event{AtSec: result.Number(e.AtSec), DB: result.Number(e.DB), What: e.What})
-		}
+	one.From, one.AtSec = f.From, result.NumberOf(f.AtSec)
+	for _, e := range f.Events {
+		one.Events = append(one.Events, result.Event{AtSec: result.Number(e.AtSec), DB: result.Number(e.DB), What: e.What})
 	}
 	c.add(one, terms, through, flex)
 	return nil
@@ -112,17 +107,24 @@ func (c *check) bypass() error {
 	if take == nil && !limit.IsSet() {
 		return nil
 	}
-	straight, _ := c.takes.pair()
+	straight, through := c.takes.pair()
 	tone, ok := c.takes.tone(unit.Bypass)
 	f := compare.NoBypass(limit)
-	if ok && c.judgedPair() {
+	switch {
+	case ok && c.judgedPair():
+		g := c.Gains
+		if straight.role == unit.Both { // other channels, out and in
+			g.AfterDoubtDB += 2 * c.Sheet.Calibration.ChannelMatchDB
+		}
 		var err error
-		if f, err = compare.JudgeBypass(c.before(), tone, c.Gains, limit, c.rule); err != nil {
+		if f, err = compare.JudgeBypass(c.before(), tone, g, limit, c.rule); err != nil {
 			return err
 		}
+	case take != nil && limit.IsSet():
+		f.Reason = "bypass.wav or before.wav holds no tone to compare: see Problems"
 	}
 	one, terms := checkOf("bypass", "dB", f)
-	c.add(one, terms, straight, take)
+	c.add(one, terms, straight, take, c.takes.by[unit.BeforeAgain], riding(through))
 	return nil
 }
 
@@ -139,7 +141,7 @@ func (c *check) legs() error {
 		c.add(one, nil)
 		return nil
 	}
-	hotTone, coldTone := legOf(hot), legOf(cold)
+	hotTone, coldTone := legsOf(hot, cold)
 	hot.problems = append(hot.problems, compare.LegsProblems(hot.facts.Channels, hotTone.Tone, coldTone.Tone, silent(hot), silent(cold))...)
 	k := compare.LegsCase{
 		Circuit: c.Circuit, Rig: c.Rig, LegsLoadOhms: c.Sheet.LegsLoadOhms(c.Circuit.Unbalanced()),
@@ -157,17 +159,40 @@ func (c *check) legs() error {
 		one.PhaseDeg = result.NumberOf(f.PhaseDeg)
 	}
 	before := c.takes.by[unit.LegsBefore]
-	c.add(one, terms, hot, before)
+	if before != nil {
+		b, d := legsOf(before, c.takes.by[second(unit.LegsBefore)])
+		before.problems = append(before.problems, compare.LegsProblems(before.facts.Channels, b.Tone, d.Tone, silent(before), silent(c.takes.by[second(unit.LegsBefore)]))...)
+	}
+	straight, through := c.takes.pair()
+	c.add(one, terms, hot, before, riding(straight), riding(through))
 	return nil
 }
 
-// legOf is one channel of a take of legs.
-func legOf(t *take) compare.Leg {
+// legsOf are the two channels of a take of legs, at one tone: the hot leg's, or
+// the cold one's where the hot leg is dead.
+func legsOf(hot, cold *take) (h, c compare.Leg) {
+	h = legOf(hot, 0)
+	if h.NoTone {
+		return h, legOf(cold, 0)
+	}
+	return h, legOf(cold, h.Tone.FreqHz)
+}
+
+// legOf is one channel of a take of legs, at a frequency where that is not 0.
+func legOf(t *take, freqHz float64) compare.Leg {
 	if t == nil || t.measured == nil {
 		return compare.Leg{NoTone: true, MostDBFS: analysis.FloorDBFS}
 	}
-	tone, ok := t.mainTone()
-	return compare.Leg{Tone: tone, NoTone: !ok, MostDBFS: t.measured.PeakDBFS}
+	leg := compare.Leg{NoTone: true, MostDBFS: t.measured.PeakDBFS}
+	for _, tone := range t.measured.Tones {
+		if freqHz == 0 {
+			tone, _ = t.mainTone()
+		}
+		if freqHz == 0 || compare.SameFrequency(tone.FreqHz, freqHz) {
+			return compare.Leg{Tone: tone, MostDBFS: leg.MostDBFS}
+		}
+	}
+	return leg
 }
 
 // silent reports digital silence in a channel.

@@ -66,6 +66,7 @@ type Check struct {
 	From        string          `json:"from,omitempty"` // hum, steadiness: the take that shows it
 	MainsHz     *Number         `json:"mains_hz,omitempty"`
 	PhaseDeg    *Number         `json:"phase_deg,omitempty"` // legs
+	AtSec       *Number         `json:"at_s,omitempty"`      // steadiness: of the largest departure
 	Events      []Event         `json:"events,omitempty"`    // steadiness
 	Points      []ResponsePoint `json:"points,omitempty"`    // response, flatness
 	LowCornerHz *Number         `json:"low_corner_hz,omitempty"`
