@@ -43,7 +43,7 @@ var (
 var voids = map[string][]string{
 	Clipped:          every,
 	GainRiding:       every,
-	GainMoved:        {"loss", "bypass", "hum"},
+	GainMoved:        {"loss", "response", "flatness", "steadiness", "bypass", "hum"},
 	ChannelSilent:    every,
 	Dropout:          every,
 	SwappedTakes:     every,

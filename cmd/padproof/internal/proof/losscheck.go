@@ -19,11 +19,11 @@ func (c *check) pairUp() {
 		return
 	}
 	straight.judged, through.judged = &b, &t
-	reading := c.reading()
 	if straight.role == unit.Both {
-		through.problems = append(through.problems, compare.BothProblems(b, t, reading)...)
+		through.problems = append(through.problems, compare.BothProblems(b, t, c.reading())...)
 	} else {
-		through.problems = append(through.problems, compare.PairProblems(side(straight, b), side(through, t), reading, c.designedDB)...)
+		// Before and after alone: a repeat averages away what these show.
+		through.problems = append(through.problems, compare.PairProblems(side(straight, b), side(through, t), compare.ReadLoss(b, t, c.Gains), c.designedDB)...)
 	}
 	if again, ok := c.takes.tone(unit.BeforeAgain); ok && straight.role == unit.Before {
 		repeat := c.takes.by[unit.BeforeAgain]

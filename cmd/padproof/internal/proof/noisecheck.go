@@ -87,10 +87,11 @@ func (c *check) addNoise(name, unitName string, n compare.UnitNoise, f compare.N
 	c.add(one, scaledTerms(name, f.Budget, dBPerNeperPower), pad, c.takes.by[unit.RigNoise], riding(straight), riding(through))
 }
 
-// riding is the take if automatic gain was at work in it, else nil.
+// riding is the take if it shows that the rig as a whole lies: automatic gain at
+// work, or takes swapped; else nil.
 func riding(t *take) *take {
 	for _, p := range t.problems {
-		if p.Name == compare.GainRiding {
+		if p.Name == compare.GainRiding || p.Name == compare.SwappedTakes {
 			return t
 		}
 	}

@@ -128,5 +128,5 @@ func (c *check) findScale(found *result.Found) (bool, error) {
 
 // say tells what a take found of the rig, and how to keep it.
 func (c *check) say(what, figure string, lines []string) {
-	c.answer.Notes = append(c.answer.Notes, fmt.Sprintf("%s, as measured: %s; to keep it, write into rig.toml: %s", what, figure, strings.Join(lines, " ")))
+	c.answer.Notes = append(c.answer.Notes, fmt.Sprintf("%s, as measured: %s; to keep it, write into rig.toml, under %s: %s", what, figure, lines[0], strings.Join(lines[1:], " and ")))
 }

@@ -97,6 +97,9 @@ func (t *take) explain(err error) error {
 func hertzList(freqs []float64) string {
 	text := ""
 	for i, f := range freqs {
+		if i > 0 && compare.SameFrequency(f, freqs[i-1]) {
+			continue
+		}
 		if i > 0 {
 			text += ", "
 		}
@@ -201,7 +204,22 @@ func (t *take) noteStep(linearityDB float64) error {
 	}
 	t.stepped = true
 	if p, riding := compare.GainRidingProblem(step); riding {
-		t.problems = append(t.problems, p)
+		t.problems = append(without(t.problems, compare.GainMoved), p) // it moved the gain, and nobody's hand
+	}
+	return nil
+}
+
+// noteGaps looks for lost buffers in the sweep.
+func (t *take) noteGaps() error {
+	if t.placed == nil {
+		return nil
+	}
+	gaps, err := analysis.SweepGaps(t.samples, *t.placed)
+	if err != nil {
+		return fmt.Errorf("%s: %w", t.path, err)
+	}
+	for _, at := range gaps {
+		t.problem(compare.Dropout, at, "the sweep breaks off for a moment: a lost buffer or a loose contact; use a larger buffer, look at the plugs, and record again")
 	}
 	return nil
 }

@@ -269,10 +269,11 @@ func (ts *takes) sameTone(role, other string) bool {
 	return okA && okB && compare.SameSamples(a, b)
 }
 
-// noteSteps looks for automatic gain in every take of the test signal.
+// noteSteps looks for automatic gain, and for gaps in the sweep, in every take of
+// the test signal.
 func (ts *takes) noteSteps(linearityDB float64) error {
 	for _, t := range ts.by {
-		if err := t.noteStep(linearityDB); err != nil {
+		if err := errors.Join(t.noteStep(linearityDB), t.noteGaps()); err != nil {
 			return err
 		}
 	}

@@ -38,7 +38,7 @@ func (c *check) polarity() error {
 		case sign == 1:
 			one.Verdict = string(compare.Pass)
 		default:
-			one.Verdict, one.Reason = string(compare.Fail), "the pad turns the signal over: hot and cold are crossed on one side"
+			one.Verdict, one.Reason = string(compare.Fail), "the signal comes out turned over: hot and cold are crossed in the pad or in a cable of after"
 		}
 	}
 	c.add(one, nil, straight, through)
@@ -58,6 +58,9 @@ func (c *check) distortion() error {
 		return err
 	}
 	one, terms := checkOf("distortion", "dB", f.Finding)
+	if !one.Measured.OK() {
+		one.Uncertainty, one.Ratio = result.Missing, result.Missing
+	}
 	one.RigDB, one.Bound = result.NumberOf(f.RigDB), result.NumberOf(f.MostDB)
 	c.add(one, terms, straight, through)
 	return nil

@@ -60,9 +60,7 @@ func checks(p *page, a *result.Answer) {
 	}
 	p.table("", rows)
 	for _, c := range a.Checks {
-		if c.Reason != "" {
-			p.item("  "+c.Name+": ", c.Reason)
-		}
+		details(p, c)
 	}
 	p.line("")
 	if a.BenchEnds != nil {
@@ -82,6 +80,19 @@ func checks(p *page, a *result.Answer) {
 	}
 }
 
+// details are the sentences that belong to a check.
+func details(p *page, c result.Check) {
+	if c.Reason != "" {
+		p.item("  "+c.Name+": ", c.Reason)
+	}
+	if c.AtHz != nil && c.Name != "loss" && c.Verdict != "PASS" && c.Verdict != "" {
+		p.item("  "+c.Name+": ", "largest at "+hertz(*c.AtHz, 0))
+	}
+	for _, e := range c.Events {
+		p.item("  "+c.Name+": ", fmt.Sprintf("%s of %s dB in %s at %s s", e.What, fixed(e.DB, 2), c.From, fixed(e.AtSec, 2)))
+	}
+}
+
 // ratio is how many times the limits are wider than U, "over 99" where that is
 // no matter.
 func ratio(n result.Number) string {
@@ -96,6 +107,9 @@ func ratio(n result.Number) string {
 
 func checkRow(c result.Check) []string {
 	places := decimals(c.Uncertainty)
+	if c.Unit == "" {
+		places = 0
+	}
 	verdict := c.Verdict
 	if verdict == "" {
 		verdict = "no limit"

@@ -44,8 +44,12 @@ func doubt(u result.Number, places int) string {
 
 // limits prints the ends of a limit that are there.
 func limits(c result.Check, places int) string {
-	places = max(places, 2)
+	if c.Unit != "" {
+		places = max(places, 2)
+	}
 	switch {
+	case c.Low.OK() && c.Low == c.High:
+		return fixed(c.Low, places)
 	case c.Low.OK() && c.High.OK():
 		return fixed(c.Low, places) + " to " + fixed(c.High, places)
 	case c.Low.OK():

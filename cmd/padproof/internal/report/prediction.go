@@ -52,7 +52,7 @@ func proof(p *page, r *result.Prediction) {
 	p.line("")
 	text := "With takes recorded well, U of the loss in service would be " + doubt(r.U, decimals(r.U)) + " dB"
 	if r.Limit != nil {
-		c := result.Check{Low: r.Limit.Low, High: r.Limit.High}
+		c := result.Check{Unit: "dB", Low: r.Limit.Low, High: r.Limit.High}
 		text += "; the limits are " + limits(c, 2) + " dB"
 	}
 	p.item("", text+".")
