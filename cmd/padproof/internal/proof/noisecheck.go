@@ -35,6 +35,7 @@ func (c *check) noise() error {
 	if rig != nil {
 		k.RigNoise = rig.noise
 	}
+	c.answer.Assumed = append(c.answer.Assumed, fmt.Sprintf("the plugs of the noise takes within ±%.0f %%", 100*plugTolFrac))
 	n, err := compare.JudgeNoise(k)
 	if err != nil {
 		return err

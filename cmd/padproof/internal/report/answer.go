@@ -88,9 +88,32 @@ func details(p *page, c result.Check) {
 	if c.AtHz != nil && c.Name != "loss" && c.Verdict != "PASS" && c.Verdict != "" {
 		p.item("  "+c.Name+": ", "largest at "+hertz(*c.AtHz, 0))
 	}
+	if c.LowCornerHz != nil {
+		p.item("  "+c.Name+": ", "down by 3 dB at "+hertz(*c.LowCornerHz, 0))
+	}
+	if c.HighCorner != nil {
+		p.item("  "+c.Name+": ", "down by 3 dB at "+hertz(*c.HighCorner, 0))
+	}
+	if c.Name == "noise" && c.ExpectedDBu != nil {
+		p.item("  noise: ", noiseText(c))
+	}
 	for _, e := range c.Events {
 		p.item("  "+c.Name+": ", fmt.Sprintf("%s of %s dB in %s at %s s", e.What, fixed(e.DB, 2), c.From, fixed(e.AtSec, 2)))
 	}
+}
+
+// noiseText gives the levels behind a noise figure, as far as they are known.
+func noiseText(c result.Check) string {
+	var parts []string
+	for _, level := range []struct {
+		name string
+		dBu  *result.Number
+	}{{"unit", c.MeasuredDBu}, {"thermal by the drawing", c.ExpectedDBu}, {"rig", c.RigDBu}, {"as recorded, A-weighted", c.AWeighted}, {"quasi-peak weighted", c.QuasiPeak}} {
+		if level.dBu != nil && level.dBu.OK() {
+			parts = append(parts, level.name+" "+fixed(*level.dBu, 1)+" dBu")
+		}
+	}
+	return strings.Join(parts, ", ")
 }
 
 // ratio is how many times the limits are wider than U, "over 99" where that is
