@@ -140,12 +140,20 @@ func unrepeated(texts []string) []string {
 	return once
 }
 
+func namesOf(problems []compare.Problem) []string {
+	var names []string
+	for _, p := range problems {
+		names = append(names, p.Name)
+	}
+	return names
+}
+
 // finish adds the takes, the notes and the unit's verdict.
 func (c *check) finish(u *unit.Unit) *result.Answer {
 	a := c.answer
 	for _, t := range c.takes.order {
 		if other := c.takes.by[second(t.role)]; other != nil {
-			t.problems = append(t.problems, other.problems...)
+			t.problems = append(t.problems, without(other.problems, namesOf(t.problems)...)...)
 		}
 		a.Captures = append(a.Captures, t.capture(u.Folder))
 		for _, comment := range t.facts.Comments {

@@ -253,8 +253,12 @@ func without(problems []compare.Problem, names ...string) []compare.Problem {
 // noteCopies names takes that are copies of another: the later one proves
 // nothing. Before and after are held against each other elsewhere, more closely.
 func (ts *takes) noteCopies() {
+	straight, through := ts.pair()
 	for i, later := range ts.order {
 		for _, t := range ts.order[:i] {
+			if t == straight && later == through {
+				continue
+			}
 			if t.sha256 == later.sha256 || ts.sameTone(t.role, later.role) {
 				later.problem(compare.SameRecording, math.NaN(), "this is the recording %s once more; record each take by itself", filepath.Base(t.path))
 				break
