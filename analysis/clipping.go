@@ -13,7 +13,6 @@ type Clipped struct {
 	Runs      int     // cut peaks
 	Samples   int     // samples in them
 	FirstSec  float64 // start of the first; 0 where there is none
-	LastSec   float64 // start of the last; 0 where there is none
 	LevelDBFS float64 // of a sine that would just reach the first cut; 0 at full scale
 }
 
@@ -86,7 +85,6 @@ func (f *flatFinder) note(samples int, frame int64, value float64) {
 		f.found.FirstSec = atSec
 		f.found.LevelDBFS = DBFSFromPeak(math.Abs(value))
 	}
-	f.found.LastSec = atSec
 	f.found.Runs++
 	f.found.Samples += samples
 }

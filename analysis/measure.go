@@ -83,7 +83,7 @@ func (p *pass) measurement() *Measurement {
 func (m *Measurement) noteOverload() {
 	for _, t := range m.Tones {
 		if m.Clipped.Runs == 0 && t.LevelDBFS > overloadDBFS && m.PeakDBFS <= 0 {
-			m.Clipped = Clipped{Runs: 1, Samples: 1, FirstSec: t.StartSec, LastSec: t.EndSec, LevelDBFS: m.PeakDBFS}
+			m.Clipped = Clipped{Runs: 1, Samples: 1, FirstSec: t.StartSec, LevelDBFS: m.PeakDBFS}
 		}
 	}
 }

@@ -53,8 +53,7 @@ func JudgeDistortion(before, after analysis.Tone, linearityDB float64, limit Lim
 // distortionTerms are the doubt of a level of harmonics, in dB of amplitude: half the relative
 // change of the power.
 func distortionTerms(d analysis.Distortion, linearityDB float64) []uncertainty.Term {
-	const dbPerPower = 10 / math.Ln10
-	terms := []uncertainty.Term{uncertainty.FromNormal(afterHarmonics, d.StandardU/d.Power, dbPerPower)}
+	terms := []uncertainty.Term{uncertainty.FromNormal(afterHarmonics, d.StandardU/d.Power, DBPerPower)}
 	if linearityDB > 0 {
 		terms = append(terms, uncertainty.FromRectangle(linearitySrc, linearityDB, 1))
 	}

@@ -105,7 +105,7 @@ func (f *HumFigure) read(r HumReading, calibrationUDB float64) error {
 	}
 	f.Budget = uncertainty.Budget{Terms: []uncertainty.Term{
 		uncertainty.FromNormal("noise under the lines", r.Hum.StdU/size, 1),
-		uncertainty.FromNormal(calibrationTerm, calibrationUDB/2, 1/dbPerNeperPower),
+		uncertainty.FromNormal(calibrationTerm, calibrationUDB/2, 1/DBPerPower),
 	}}
 	u, err := f.Budget.ExpandedU(Coverage)
 	if err != nil {

@@ -100,7 +100,9 @@ func (f NoiseFigure) drowned() bool {
 
 const drownedPart = 0.5
 
-const dbPerNeperPower = 10 / math.Ln10 // decibels of a small relative change of power
+// DBPerPower is how many decibels a small relative change of power is, in parts
+// of it.
+const DBPerPower = 10 / math.Ln10
 
 // JudgeNoise subtracts the rig's noise from that of pad and rig, all at the rig's input terminals and
 // in power:

@@ -138,12 +138,12 @@ func (m *noiseModel) budget(overThermal bool, c noiseChange) uncertainty.Budget 
 	}
 	add(uncertainty.FromNormal(padTerm, m.padPart*shorter, pad/m.expected))
 	if m.noRig() {
-		add(uncertainty.FromNormal(calibrationTerm, m.Bench.CalibrationUDB/2, pad/m.expected/dbPerNeperPower))
+		add(uncertainty.FromNormal(calibrationTerm, m.Bench.CalibrationUDB/2, pad/m.expected/DBPerPower))
 		return uncertainty.Budget{Terms: terms}
 	}
 	add(uncertainty.FromNormal(rigTerm, m.rigPart*shorter, -rig/m.expected))
-	add(uncertainty.FromRectangle(driftTerm, m.Bench.GainDriftDB, -rig/m.expected/dbPerNeperPower))
-	add(uncertainty.FromNormal(calibrationTerm, m.Bench.CalibrationUDB/2, (pad-rig)/m.expected/dbPerNeperPower))
+	add(uncertainty.FromRectangle(driftTerm, m.Bench.GainDriftDB, -rig/m.expected/DBPerPower))
+	add(uncertainty.FromNormal(calibrationTerm, m.Bench.CalibrationUDB/2, (pad-rig)/m.expected/DBPerPower))
 
 	for _, v := range m.moves {
 		ratio := func(at [2]network.Thermal) float64 {

@@ -48,7 +48,6 @@ type check struct {
 	takes  *takes
 	mark   *Mark
 	played string
-	rule   compare.Rule
 	found  scale // what dBFS stand for
 	answer *result.Answer
 }
@@ -72,10 +71,7 @@ func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
 
 // judge makes the checks in the order in which they are shown. What the takes
 // tell of the rig comes first, since the loss stands on it.
-func (c *check) judge() (err error) {
-	if c.rule, err = compare.ParseRule(c.Limits.Decision); err != nil {
-		return err
-	}
+func (c *check) judge() error {
 	c.takes.noteCopies()
 	if err := c.takes.noteSteps(c.Gains.LinearityDB); err != nil {
 		return err

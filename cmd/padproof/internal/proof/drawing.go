@@ -23,6 +23,7 @@ type Drawing struct {
 	Service     network.Ends
 	Gains       compare.Gains
 	Limits      sheet.Limits
+	Rule        compare.Rule // how a figure is held against its limit
 	Sheet       *sheet.Rig
 }
 
@@ -53,6 +54,9 @@ func draw(pad *sheet.Pad, rig *sheet.Rig) (*Drawing, error) {
 		return nil, err
 	}
 	d := &Drawing{Name: pad.Name, Circuit: circuit, Limits: pad.Limits}
+	if d.Rule, err = compare.ParseRule(pad.Limits.Decision); err != nil {
+		return nil, err
+	}
 	if err := d.onRig(rig); err != nil {
 		return nil, err
 	}

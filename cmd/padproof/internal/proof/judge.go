@@ -11,17 +11,13 @@ import (
 // judgeLoss holds a loss against its limit and then asks what the bench could
 // not have seen: a PASS stands only where nothing is left open.
 func (d *Drawing) judgeLoss(k compare.LossCase, loss compare.Loss, limit compare.Limit) (compare.Verdict, string, []compare.Unseen) {
-	rule, err := compare.ParseRule(d.Limits.Decision)
-	if err != nil {
-		return compare.Unproven, err.Error(), nil
-	}
 	if loss.AtLeastDB > limit.High {
 		return compare.Fail, fmt.Sprintf("every part that would explain the reading, moved alone, gives %.2f dB or more in service", loss.AtLeastDB), nil
 	}
 	if math.IsNaN(loss.ServiceDB) {
 		return compare.Unproven, "no single part of the drawing, and no swap of two, explains what was read on the bench; look at gain, source and load, or measure the parts", nil
 	}
-	verdict, reason := compare.Decide(rule, loss.ServiceDB, loss.UDB, limit, loss.ServiceExpectedDB)
+	verdict, reason := compare.Decide(d.Rule, loss.ServiceDB, loss.UDB, limit, loss.ServiceExpectedDB)
 	if verdict == compare.Unproven {
 		reason += compare.Settles(loss.Budget)
 	}

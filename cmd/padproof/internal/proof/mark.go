@@ -128,7 +128,7 @@ func (c *check) eitherCheck(reading compare.LossReading) (result.Check, []result
 	first.Measured = (first.Measured + second.Measured) / 2
 	first.Uncertainty = result.Number(math.Max(float64(first.Uncertainty), float64(second.Uncertainty)) + apart)
 	if limit, set := c.lossLimit(c.mark.LossDB); set && first.Verdict == string(compare.Pass) {
-		verdict, reason := compare.Decide(c.rule, float64(first.Measured), float64(first.Uncertainty), limit, c.mark.LossDB)
+		verdict, reason := compare.Decide(c.Rule, float64(first.Measured), float64(first.Uncertainty), limit, c.mark.LossDB)
 		decide(&first, verdict, reason, limit, c.mark.LossDB)
 	}
 	return first, terms, nil
@@ -150,7 +150,7 @@ func (c *check) benchCheck(reading compare.LossReading) (result.Check, []result.
 	}
 	one.Expected = result.Number(c.mark.LossDB)
 	if limit, set := c.lossLimit(c.mark.LossDB); set {
-		verdict, reason := compare.Decide(c.rule, reading.LossDB, u, limit, c.mark.LossDB)
+		verdict, reason := compare.Decide(c.Rule, reading.LossDB, u, limit, c.mark.LossDB)
 		decide(&one, verdict, reason, limit, c.mark.LossDB)
 	}
 	return one, termsOf("loss", budget), nil

@@ -11,8 +11,6 @@ import (
 	"padproof/compare"
 )
 
-const dBPerNeperPower = 10 / math.Ln10 // decibels of a small relative change of power
-
 const picoamp = 1e-12
 
 // plugTolFrac is the tolerance taken for a plug: that of a common metal-film
@@ -44,11 +42,11 @@ func (c *check) noise() error {
 		pad.problems = append(pad.problems, n.Problem)
 	}
 	if over.IsSet() || !level.IsSet() {
-		verdict, reason := n.JudgeOver(c.rule, over)
+		verdict, reason := n.JudgeOver(c.Rule, over)
 		c.addNoise("noise", "dB", n, n.Over, verdict, reason, over, 0)
 	}
 	if level.IsSet() {
-		verdict, reason := n.JudgeLevel(c.rule, level)
+		verdict, reason := n.JudgeLevel(c.Rule, level)
 		c.addNoise("noise-level", "dBu", n, n.Level, verdict, reason, level, n.ExpectedDBu)
 	}
 	return nil
@@ -85,7 +83,7 @@ func (c *check) addNoise(name, unitName string, n compare.UnitNoise, f compare.N
 		}
 	}
 	straight, through := c.takes.pair() // automatic gain there was at work here too
-	c.add(one, scaledTerms(name, f.Budget, dBPerNeperPower), pad, c.takes.by[unit.RigNoise], riding(straight), riding(through))
+	c.add(one, scaledTerms(name, f.Budget, compare.DBPerPower), pad, c.takes.by[unit.RigNoise], riding(straight), riding(through))
 }
 
 // riding is the take if it shows that the rig as a whole lies: automatic gain at
@@ -142,7 +140,7 @@ func (c *check) hum() error {
 	if err != nil {
 		return err
 	}
-	verdict, reason := f.Judge(c.rule, limit)
+	verdict, reason := f.Judge(c.Rule, limit)
 	one := emptyCheck("hum", "dBu")
 	one.Measured, one.Uncertainty = result.Number(f.Measured), result.Number(f.UDB)
 	decide(&one, verdict, reason, limit, math.NaN())
@@ -151,7 +149,7 @@ func (c *check) hum() error {
 	if f.From == compare.FromPadNoise {
 		on = []*take{c.takes.by[unit.PadNoise], c.takes.by[unit.RigNoise], riding(straight), riding(through)}
 	}
-	c.add(one, scaledTerms("hum", f.Budget, dBPerNeperPower), on...)
+	c.add(one, scaledTerms("hum", f.Budget, compare.DBPerPower), on...)
 	return nil
 }
 

@@ -76,7 +76,7 @@ func (c *check) responseCase(points []analysis.ResponsePoint) compare.ResponseCa
 		DesignedDB: c.designedDB,
 		ServiceDB:  func(f float64) float64 { return c.Circuit.LossDB(c.Service, f) },
 		ToneHz:     toneHz, FromHz: c.Limits.ResponseFromHz, ToHz: c.Limits.ResponseToHz,
-		Rule: c.rule, LinearityDB: c.Gains.LinearityDB,
+		Rule: c.Rule, LinearityDB: c.Gains.LinearityDB,
 		RigTerms: c.Rig.CurveTerms(c.Circuit),
 	}
 }

@@ -110,17 +110,23 @@ func (ts *takes) measure(channel int, matchDB, mainsHz float64, anything bool) e
 	}
 	atHz := frequencies(first.found)
 	jobs := []func() error{first.measure}
+	lookHz := map[string][]float64{}
+	if len(atHz) > 0 {
+		for _, role := range legTakes {
+			lookHz[role] = ts.legTonesHz(role, atHz)
+		}
+	}
 	for _, t := range ts.toneTakes(first) {
 		if t.channel == 0 {
 			if err := t.followChannel(ts.leader(t.role, first), channel, atHz, matchDB); err != nil {
 				return err
 			}
 		}
-		lookHz := atHz
-		if len(atHz) > 0 && (t.role == unit.Legs || t.role == unit.LegsBefore) {
-			lookHz = ts.legTonesHz(t.role, atHz)
+		hz, ofLegs := lookHz[t.role]
+		if !ofLegs {
+			hz = atHz
 		}
-		jobs = append(jobs, func() error { return t.findAndMeasure(lookHz) })
+		jobs = append(jobs, func() error { return t.findAndMeasure(hz) })
 	}
 	if t := ts.by[unit.Calibration]; t != nil {
 		t.use(min(first.channel, t.facts.Channels))

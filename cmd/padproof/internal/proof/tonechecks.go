@@ -53,7 +53,7 @@ func (c *check) distortion() error {
 		c.lacksTone("distortion", limit)
 		return nil
 	}
-	f, err := compare.JudgeDistortion(*straight.judged, *through.judged, c.Gains.LinearityDB, limit, c.rule)
+	f, err := compare.JudgeDistortion(*straight.judged, *through.judged, c.Gains.LinearityDB, limit, c.Rule)
 	if err != nil {
 		return err
 	}
@@ -85,7 +85,7 @@ func (c *check) steadiness() error {
 		return nil
 	}
 	straight, through := c.takes.pair()
-	k := compare.SteadyCase{Before: &straight.steady, After: &through.steady, Limit: limit, Rule: c.rule}
+	k := compare.SteadyCase{Before: &straight.steady, After: &through.steady, Limit: limit, Rule: c.Rule}
 	flex := c.takes.by[unit.Flex]
 	if flex != nil {
 		k.Flex = &flex.steady
@@ -120,7 +120,7 @@ func (c *check) bypass() error {
 			g.AfterDoubtDB += 2 * c.Sheet.Calibration.ChannelMatchDB
 		}
 		var err error
-		if f, err = compare.JudgeBypass(c.before(), tone, g, limit, c.rule); err != nil {
+		if f, err = compare.JudgeBypass(c.before(), tone, g, limit, c.Rule); err != nil {
 			return err
 		}
 	case take != nil && limit.IsSet():
@@ -150,7 +150,7 @@ func (c *check) legs() error {
 		Circuit: c.Circuit, Rig: c.Rig, LegsLoadOhms: c.Sheet.LegsLoadOhms(c.Circuit.Unbalanced()),
 		Hot: hotTone, Cold: coldTone,
 		StraightHot: c.takes.again(unit.LegsBefore), StraightCold: c.takes.again(second(unit.LegsBefore)),
-		ChannelMatchDB: c.Sheet.Calibration.ChannelMatchDB, LinearityDB: c.Gains.LinearityDB, Limit: limit, Rule: c.rule,
+		ChannelMatchDB: c.Sheet.Calibration.ChannelMatchDB, LinearityDB: c.Gains.LinearityDB, Limit: limit, Rule: c.Rule,
 	}
 	f, err := compare.JudgeLegs(k)
 	if err != nil {
