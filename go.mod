@@ -3,11 +3,15 @@ module padproof
 go 1.26
 
 require (
+	github.com/creack/pty v1.1.24
 	github.com/go-audio/riff v1.0.0
 	github.com/go-audio/wav v1.1.0
+	github.com/mattn/go-isatty v0.0.24
 	github.com/pelletier/go-toml/v2 v2.4.3
 	github.com/rogpeppe/go-internal v1.16.0
 	github.com/spf13/cobra v1.10.2
+	golang.org/x/net v0.43.0
+	golang.org/x/sys v0.35.0
 	gonum.org/v1/gonum v0.17.0
 )
 
@@ -15,6 +19,5 @@ require (
 	github.com/go-audio/audio v1.0.0 // indirect
 	github.com/inconshreveable/mousetrap v1.1.0 // indirect
 	github.com/spf13/pflag v1.0.9 // indirect
-	golang.org/x/sys v0.30.0 // indirect
 	golang.org/x/tools v0.30.0 // indirect
 )

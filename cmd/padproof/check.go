@@ -1,6 +1,9 @@
 package main
 
 import (
+	"cmp"
+	"time"
+
 	"github.com/spf13/cobra"
 
 	"padproof/cmd/padproof/internal/proof"
@@ -18,10 +21,12 @@ type checkFlags struct {
 	markedOhms  float64
 	onThisBench bool
 	played      string
+	report      string
+	now         func() time.Time
 }
 
 func newCheck() *cobra.Command {
-	var f checkFlags
+	f := checkFlags{now: time.Now}
 	cmd := &cobra.Command{
 		Use:   "check [FOLDER]",
 		Short: "Check one unit from its recordings",
@@ -34,6 +39,7 @@ Or name the files by role. With no drawing, say what is marked on the pad: the m
 judged as a symmetrical matched pad of --marked-ohms, or with --on-this-bench as what
 this bench should read.`,
 		Example: `  padproof check testdata/saltmarsh/0417
+  padproof check testdata/saltmarsh/0418 --report 0418.html
   padproof check --pad pad.toml --rig rig.toml --before in.wav --after out.wav
   padproof check --before in.wav --after out.wav --marked-loss-db 10 --within-db 0.5 --marked-ohms 600`,
 		RunE: func(cmd *cobra.Command, args []string) error { return runCheck(cmd, args, f) },
@@ -71,6 +77,8 @@ this bench should read.`,
 	flags.Float64Var(&f.within, "within-db", 0, "no drawing: how far off the mark is still good")
 	flags.Float64Var(&f.markedOhms, "marked-ohms", 0, "no drawing: the impedance marked on the pad")
 	flags.BoolVar(&f.onThisBench, "on-this-bench", false, "no drawing: the mark is what this bench should read")
+	flags.StringVar(&f.report, "report", "", "write the answer as a page to keep and to send, FILE.html")
+	_ = cmd.MarkFlagFilename("report", "html", "htm")
 	flags.BoolVarP(&f.verbose, "verbose", "v", false, "add the takes and the uncertainty budget")
 	return cmd
 }
@@ -84,14 +92,28 @@ func runCheck(cmd *cobra.Command, args []string, f checkFlags) error {
 	if err != nil {
 		return inUnit(u.Serial, err)
 	}
+	if cmd.Flags().Changed("report") {
+		if err := checkReportPath(cmd, f.report); err != nil {
+			return inUnit(u.Serial, err)
+		}
+	}
+	ctx, stop := untilInterrupted(cmd)
+	defer stop()
+	shown := progressOn(cmd.ErrOrStderr(), "reading takes")
+	options.Progress, options.Err = shown.tell, ctx.Err
 	answer, err := proof.Check(u, options)
+	shown.clear()
+	err = cmp.Or(err, ctx.Err())
+	if err == nil && f.report != "" {
+		err = writeReport(ctx, f.report, answer, f.now())
+	}
 	if err != nil {
-		return inUnit(u.Serial, err)
+		return inUnit(u.Serial, afterInterrupt(err))
 	}
 	if wantsJSON(cmd) {
 		err = writeJSON(cmd.OutOrStdout(), answer)
 	} else {
-		err = report.AnswerText(cmd.OutOrStdout(), answer, f.verbose)
+		err = report.AnswerText(coloured(cmd.OutOrStdout()), answer, f.verbose)
 	}
 	if err != nil {
 		return err

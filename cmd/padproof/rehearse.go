@@ -127,13 +127,19 @@ func runRehearse(cmd *cobra.Command, f rehearseFlags) error {
 	}
 	ctx, stop := untilInterrupted(cmd)
 	defer stop()
+	shown := progressOn(cmd.ErrOrStderr(), "writing takes")
+	plan.Progress = shown.tell
 	takes, err := plan.Record(ctx, f.out, rehearsal.Sheets{Pad: f.pad, Rig: f.rig})
+	shown.clear()
 	if err != nil {
 		return afterInterrupt(err)
 	}
 	r := f.rehearsed(drawing, faults, plan, takes)
 	r.Warnings = append(r.Warnings, leftOut...)
-	if r.Proven, err = provenBy(f.out); err != nil {
+	shown = progressOn(cmd.ErrOrStderr(), "reading them again")
+	r.Proven, err = provenBy(f.out, proof.Options{Progress: shown.tell})
+	shown.clear()
+	if err != nil {
 		r.Warnings = append(r.Warnings, "padproof check cannot judge these takes: "+describe(err).Error())
 	}
 	if wantsJSON(cmd) {

@@ -67,13 +67,13 @@ func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p re
 
 // provenBy checks the takes that were written: which limits this rig could
 // prove, and which not, and why.
-func provenBy(folder string) ([]result.Proven, error) {
+func provenBy(folder string, o proof.Options) ([]result.Proven, error) {
 	proven := []result.Proven{}
 	u, err := unit.Open(folder)
 	if err != nil {
 		return proven, err
 	}
-	answer, err := proof.Check(u, proof.Options{})
+	answer, err := proof.Check(u, o)
 	if err != nil {
 		return proven, err
 	}

@@ -13,6 +13,12 @@ type Options struct {
 	Channel int    // the channel that holds the tone, from 1; 0: find it
 	Mark    *Mark  // no drawing: what is marked on the pad
 	Played  string // a WAV that was played instead of the test signal; "" where none
+
+	// Progress is told how many bytes of the takes are read, of all: seldom, and
+	// one call at a time. Err is asked meanwhile; its error ends the check. Both
+	// may be nil.
+	Progress func(done, total int64)
+	Err      func() error
 }
 
 // Check judges one unit. A take that shows nothing is a problem in the answer;
@@ -28,6 +34,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 		return nil, err
 	}
 	defer ts.close()
+	ts.watch(o)
 	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
@@ -57,7 +64,7 @@ func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
-		Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
+		Sheets: sheetsOf(u.Folder, d), Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
 	}
 	if d.Service != d.Rig.Ends {

@@ -25,6 +25,7 @@ type Drawing struct {
 	Limits      sheet.Limits
 	Rule        compare.Rule // how a figure is held against its limit
 	Sheet       *sheet.Rig
+	Pad         *sheet.Pad // nil without a drawing
 }
 
 // Load reads a pad's and a rig's sheet. With no rig's sheet (an empty path) the
@@ -53,7 +54,7 @@ func draw(pad *sheet.Pad, rig *sheet.Rig) (*Drawing, error) {
 	if err != nil {
 		return nil, err
 	}
-	d := &Drawing{Name: pad.Name, Circuit: circuit, Limits: pad.Limits}
+	d := &Drawing{Name: pad.Name, Pad: pad, Circuit: circuit, Limits: pad.Limits}
 	if d.Rule, err = compare.ParseRule(pad.Limits.Decision); err != nil {
 		return nil, err
 	}

@@ -34,7 +34,7 @@ func termsOf(check string, b uncertainty.Budget) []result.Term {
 	for _, t := range b.Terms {
 		terms = append(terms, result.Term{
 			Check: check, Source: t.Source, StandardU: result.Number(t.StandardU),
-			Sensitivity: result.Number(t.Sensitivity), DOF: result.Number(t.Dof),
+			Sensitivity: result.Number(t.Sensitivity), Contributes: result.Number(t.StandardU * t.Sensitivity), DOF: result.Number(t.Dof),
 		})
 	}
 	return terms
@@ -45,6 +45,7 @@ func scaledTerms(check string, b uncertainty.Budget, perUnit float64) []result.T
 	terms := termsOf(check, b)
 	for i := range terms {
 		terms[i].Sensitivity *= result.Number(perUnit)
+		terms[i].Contributes *= result.Number(perUnit)
 	}
 	return terms
 }

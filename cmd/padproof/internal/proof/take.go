@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"io/fs"
 	"math"
-	"path/filepath"
 
 	"padproof/analysis"
 	"padproof/capture"
@@ -22,6 +21,7 @@ type take struct {
 	facts    capture.Facts
 	channel  int
 	samples  *capture.Channel
+	reading  *reading // nil: nobody asks how far it is
 	found    []analysis.Stretch
 	measured *analysis.Measurement
 	judged   *analysis.Tone      // the stretch that the loss is judged at
@@ -115,13 +115,13 @@ func (t *take) measure() error {
 			return err
 		}
 	}
-	m, err := analysis.MeasureTones(t.samples, t.found)
+	m, err := analysis.MeasureTones(t.watched(), t.found)
 	if err != nil {
 		t.found = nil
 		if err := t.explain(err); err != nil {
 			return err
 		}
-		if m, err = analysis.MeasureTones(t.samples, nil); err != nil {
+		if m, err = analysis.MeasureTones(t.watched(), nil); err != nil {
 			return fmt.Errorf("%s: %w", t.path, err)
 		}
 	}
@@ -224,20 +224,10 @@ func (t *take) noteGaps() error {
 	return nil
 }
 
-// fileIn is the take's path as seen from the unit's folder.
-func (t *take) fileIn(folder string) string {
-	if folder != "" {
-		if path, err := filepath.Rel(folder, t.path); err == nil {
-			return filepath.ToSlash(path)
-		}
-	}
-	return t.path
-}
-
 // capture is the take in the form of the result.
 func (t *take) capture(folder string) result.Capture {
 	c := result.Capture{
-		Role: t.role, File: t.fileIn(folder), SHA256: t.sha256, RateHz: t.facts.RateHz,
+		Role: t.role, File: fileIn(folder, t.path), SHA256: t.sha256, RateHz: t.facts.RateHz,
 		Channels: t.facts.Channels, Channel: t.channel, Bits: t.facts.Bits, Encoding: t.facts.Encoding,
 		Seconds: result.Number(t.facts.Seconds), ToneHz: result.Missing, LevelDBFS: result.Missing,
 		ScatterDB: result.Missing, NoiseDBFS: result.Missing, SNRDB: result.Missing, RMSDBFS: result.Missing,

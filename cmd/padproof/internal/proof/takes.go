@@ -221,7 +221,7 @@ const noiseClipsDBFS = -0.01
 
 // measureNoise reads a take that holds no tone.
 func (t *take) measureNoise(mainsHz float64) error {
-	n, err := analysis.MeasureNoise(t.samples, 0, math.Inf(1), mainsHz)
+	n, err := analysis.MeasureNoise(t.watched(), 0, math.Inf(1), mainsHz)
 	switch {
 	case errors.Is(err, analysis.ErrSilent):
 		t.problem(compare.ChannelSilent, math.NaN(), "channel %d holds digital silence, not even the recorder's own noise; look at the routing and record again", t.channel)

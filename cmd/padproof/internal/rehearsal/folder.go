@@ -94,6 +94,7 @@ func (p Plan) take(ctx context.Context, f *unitFolder, role string) (Take, error
 			t.Clipped = t.Clipped || math.Abs(x) > 1 && !math.IsInf(x, 0)
 		}
 		t.Frames += int64(len(frames) / t.Channels)
+		f.wrote(int64(len(frames)/t.Channels), p)
 		return errors.Join(ctx.Err(), w.Write(frames))
 	})
 	if err != nil {
@@ -114,6 +115,16 @@ type unitFolder struct {
 	path string
 	kept map[string]bool // sheets that lie there already, by name
 	made []string        // files and folders, in the order in which they came to be
+	done int64           // frames written
+}
+
+// wrote counts frames and tells of them.
+func (f *unitFolder) wrote(frames int64, p Plan) {
+	f.done += frames
+	if p.Progress != nil {
+		total := p.frames()
+		p.Progress(min(f.done, total), total)
+	}
 }
 
 // vacant makes sure that none of the names is taken.

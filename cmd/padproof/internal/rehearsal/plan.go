@@ -53,6 +53,8 @@ type Plan struct {
 	Bits      int      // 16, 24 or 32
 	Float     bool     // samples as floats, of 32 bits
 	Note      string   // added to the mark in every take; may be empty
+
+	Progress func(done, total int64) // told how many frames of all takes are written; may be nil
 }
 
 // mostSec is an hour: what goes on longer shows nothing more.
@@ -80,6 +82,15 @@ func (p Plan) format(r recipe) capture.Format {
 		RateHz: p.RateHz, Channels: len(r.paths), Bits: p.Bits, Float: p.Float, Comment: comment,
 		Frames: int64(math.Ceil(p.sec(r.role) * p.heardHz())),
 	}
+}
+
+// frames is how many frames all takes have, near enough to tell how far they are.
+func (p Plan) frames() int64 {
+	var sum float64
+	for _, role := range p.Takes {
+		sum += p.sec(role) * p.heardHz()
+	}
+	return int64(sum)
 }
 
 // sec is how long a take is, by the player's clock.

@@ -29,13 +29,13 @@ func AnswerText(w io.Writer, a *result.Answer, verbose bool) error {
 }
 
 func verdict(p *page, a *result.Answer) {
-	names := []string{a.Verdict}
+	var names []string
 	for _, n := range []string{a.Unit, a.Pad} {
 		if n != "" {
-			names = append(names, n)
+			names = append(names, clean(n))
 		}
 	}
-	p.line("%s", clean(strings.Join(names, "   ")))
+	p.line("%s", strings.Join(append([]string{p.hue(a.Verdict)}, names...), "   "))
 	if a.Simulated {
 		p.item("  ", "SIMULATED: made from rehearsed takes; it says nothing about a real unit.")
 	}
@@ -245,5 +245,5 @@ func plain(n result.Number) string {
 	if !n.OK() {
 		return dash
 	}
-	return fmt.Sprintf("%.3g", float64(n))
+	return fmt.Sprintf("%.3g", float64(n)+0) // + 0: no "-0"
 }

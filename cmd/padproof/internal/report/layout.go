@@ -56,7 +56,7 @@ func (p *page) table(indent string, rows [][]string) {
 		var b strings.Builder
 		for i, cell := range row {
 			cell = clean(cell)
-			b.WriteString(cell)
+			b.WriteString(p.hue(cell))
 			b.WriteString(strings.Repeat(" ", widths[i]-utf8.RuneCountInString(cell)+2))
 		}
 		p.line("%s", strings.TrimRight(indent+b.String(), " "))

@@ -12,14 +12,16 @@ type Answer struct {
 	Verdict string `json:"verdict"` // PASS, FAIL or UNPROVEN
 	Reason  string `json:"reason"`
 
-	Checks    []Check   `json:"checks"`
-	Suspects  []Suspect `json:"suspects"`
-	Unseen    []Unseen  `json:"unseen"`
-	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
-	Simulated bool      `json:"simulated"`
-	Found     *Found    `json:"found,omitempty"`
-	Budget    []Term    `json:"budget"`
-	Captures  []Capture `json:"captures"`
+	Checks      []Check   `json:"checks"`
+	Suspects    []Suspect `json:"suspects"`
+	Unexplained *Number   `json:"unexplained,omitempty"` // where suspects were sought: the weight of "none of these explains it"
+	Unseen      []Unseen  `json:"unseen"`
+	Tones       []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
+	Simulated   bool      `json:"simulated"`
+	Found       *Found    `json:"found,omitempty"`
+	Budget      []Term    `json:"budget"`
+	Captures    []Capture `json:"captures"`
+	Sheets      []Sheet   `json:"sheets"` // as used
 
 	Assumed  []string `json:"assumed"`  // cautious figures taken because the rig sheet leaves them out
 	Notes    []string `json:"notes"`    // what the answer does not cover
@@ -27,6 +29,9 @@ type Answer struct {
 
 	BenchEnds   *Ends `json:"bench_ends,omitempty"`
 	ServiceEnds *Ends `json:"service_ends,omitempty"`
+
+	Drawing *Drawing `json:"drawing,omitempty"` // nil where there is none
+	Curves  *Curves  `json:"curves,omitempty"`  // only where they were asked for
 }
 
 // Ends are the impedances and the wiring a pad stands between.
@@ -113,18 +118,22 @@ type Tone struct {
 
 // A Suspect is a fault that would explain what was measured.
 type Suspect struct {
-	Fault     string            `json:"fault"`
-	Parts     []string          `json:"parts"`
-	Weight    Number            `json:"weight"`
-	Predicted map[string]Number `json:"predicted"`
-	Confirm   Confirm           `json:"confirm"`
+	Fault      string            `json:"fault"`
+	Parts      []string          `json:"parts"`
+	Weight     Number            `json:"weight"`
+	Predicted  map[string]Number `json:"predicted"`              // loss_db on the bench, service_loss_db, legs_db; null where nothing comes through
+	ByPercent  *Number           `json:"by_percent,omitempty"`   // of a drift, or of an end of the bench not as stated: by how much
+	ByPercentU *Number           `json:"by_percent_u,omitempty"` // expanded
+	Confirm    Confirm           `json:"confirm"`
 }
 
 // Confirm is the ohmmeter reading that tells a suspect from a sound unit.
 type Confirm struct {
 	Pins      []string `json:"pins"`
-	GoodOhms  Number   `json:"good_ohms"`
+	Joined    []string `json:"joined"`    // pins to join meanwhile
+	GoodOhms  Number   `json:"good_ohms"` // null for an open circuit
 	FaultOhms Number   `json:"fault_ohms"`
+	NextOhms  *Number  `json:"next_ohms,omitempty"` // with the next suspect
 	How       string   `json:"how"`
 }
 
@@ -142,12 +151,21 @@ type Found struct {
 	FullScaleDBuU Number `json:"full_scale_dbu_u"`
 }
 
-// A Term is one line of an uncertainty budget. DOF is null where infinite.
+// A Sheet is a sheet as it was read.
+type Sheet struct {
+	File   string `json:"file"`
+	SHA256 string `json:"sha256"`
+	Text   string `json:"text"`
+}
+
+// A Term is one line of an uncertainty budget. It contributes its standard
+// uncertainty times its sensitivity. DOF is null where infinite.
 type Term struct {
 	Check       string `json:"check"`
 	Source      string `json:"source"`
 	StandardU   Number `json:"standard_uncertainty"`
 	Sensitivity Number `json:"sensitivity"`
+	Contributes Number `json:"contributes"`
 	DOF         Number `json:"dof"`
 }
 

@@ -4,6 +4,7 @@ package sheet
 // what the sheet leaves out holds its cautious default, and Assumed says so.
 type Rig struct {
 	File             string // as it was given to [ReadRig]; "" for [DefaultRig]
+	Source           []byte // as it was read; nil for [DefaultRig]
 	Name             string // "" if left out
 	TemperatureC     float64
 	TemperatureHalfC float64 // half-width; 0 for a written temperature
@@ -108,7 +109,7 @@ func ParseRig(file string, data []byte) (*Rig, error) {
 		return nil, err
 	}
 	d.foreign = map[string]string{"network": "pad.toml", "parts": "pad.toml", "service": "pad.toml", "limits": "pad.toml"}
-	r := &Rig{File: file, lines: d.lines}
+	r := &Rig{File: file, Source: data, lines: d.lines}
 	r.fill(d.table("", d.root), 0.10)
 	d.unknown()
 	if err := d.first(); err != nil {

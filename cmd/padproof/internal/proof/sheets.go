@@ -1,0 +1,40 @@
+package proof
+
+import (
+	"bytes"
+	"crypto/sha256"
+	"encoding/hex"
+	"path/filepath"
+
+	"padproof/cmd/padproof/internal/result"
+)
+
+// sheetsOf are the sheets as they were read. What stands for a missing one is in
+// the assumptions.
+func sheetsOf(folder string, d *Drawing) []result.Sheet {
+	sheets := []result.Sheet{}
+	add := func(path string, source []byte) {
+		sum := sha256.Sum256(source)
+		sheets = append(sheets, result.Sheet{
+			File: fileIn(folder, path), SHA256: hex.EncodeToString(sum[:]),
+			Text: string(bytes.TrimPrefix(source, []byte("\xef\xbb\xbf"))),
+		})
+	}
+	if d.Pad != nil {
+		add(d.Pad.File, d.Pad.Source)
+	}
+	if d.Sheet.File != "" {
+		add(d.Sheet.File, d.Sheet.Source)
+	}
+	return sheets
+}
+
+// fileIn is a path as seen from the unit's folder.
+func fileIn(folder, path string) string {
+	if folder != "" {
+		if relative, err := filepath.Rel(folder, path); err == nil {
+			return filepath.ToSlash(relative)
+		}
+	}
+	return path
+}
