@@ -69,7 +69,7 @@ func between(low, high float64, caption string) axis {
 		high = low + 1
 	}
 	a := axis{min: low, max: high, caption: caption}
-	step := niceStep((high - low) / 7)
+	step := niceStep((high - low) / 9)
 	a.ticks = steps(math.Ceil(low/step-1e-9)*step, high, step)
 	return a
 }

@@ -8,6 +8,7 @@ import (
 	"regexp"
 	"strconv"
 
+	xfont "golang.org/x/image/font"
 	"gonum.org/v1/plot/font"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
@@ -27,11 +28,16 @@ func (p *Picture) png(w io.Writer) error {
 	return err
 }
 
-func (p *Picture) pdf(w io.Writer) error {
+func (p *Picture) pdf(w io.Writer) (err error) {
+	defer func() { // vgpdf makes its fonts in a folder for passing files, and panics where there is none
+		if r := recover(); r != nil {
+			err = fmt.Errorf("no PDF could be made: %v", r)
+		}
+	}()
 	width, height := p.sizeWithHeader()
 	c := pdfCanvas{vgpdf.New(width, height)}
 	p.draw(c, width, height, true)
-	_, err := c.WriteTo(w)
+	_, err = c.WriteTo(w)
 	return err
 }
 
@@ -42,6 +48,9 @@ type pdfCanvas struct {
 }
 
 func (c pdfCanvas) FillString(f font.Face, at vg.Point, text string) {
+	if f.Font.Weight == xfont.WeightBold { // vgpdf asks for a bold font by a name that it has not given it
+		f.Font.Typeface, f.Font.Weight = "LiberationBold", xfont.WeightNormal
+	}
 	c.Canvas.FillString(f, at, windows1252(text))
 }
 

@@ -42,9 +42,10 @@ type stem struct {
 
 // A note is a point that is pointed out.
 type note struct {
-	x, y float64
-	text string
-	mark bool // with a ring about the point
+	x, y  float64
+	text  string
+	mark  bool // with a ring about the point
+	below bool // the words go below it rather than above
 }
 
 const labelRoom = 92 // to the right of a frame, with the gap
@@ -88,7 +89,7 @@ func setAxis(a *plot.Axis, from axis) {
 		a.Scale = plot.LogScale{}
 	}
 	a.Padding = 0
-	a.LineStyle = asEdge.style()
+	a.LineStyle.Width = 0 // the frame is drawn once, about the data
 	a.Tick.LineStyle = asEdge.style()
 	a.Tick.Length = 4
 	a.Tick.Label = style(small, a.Tick.Label.XAlign, a.Tick.Label.YAlign)

@@ -2,6 +2,7 @@ package draw
 
 import (
 	"math"
+	"strings"
 
 	"gonum.org/v1/plot/vg"
 
@@ -17,7 +18,7 @@ func Legs(a *result.Answer) *Picture {
 		return nothing("legs", title, "there is no take of the legs")
 	}
 	rows := legRows(a.Curves.Legs, c)
-	p := &Picture{Name: "legs", Title: title, Says: legsSays(a.Curves.Legs, c), Simulated: a.Simulated, Width: usualWidth, Height: 170}
+	p := &Picture{Name: "legs", Title: title, Says: legsSays(a.Curves.Legs, c), Simulated: a.Simulated, Width: usualWidth, Height: captionLine + 3*legHeight + 32}
 	p.paint = func(s *sheet) { drawLegs(s, rows) }
 	return p
 }
@@ -31,10 +32,10 @@ type legRow struct {
 
 func legRows(l *result.LegLevels, c *result.Check) []legRow {
 	none := math.NaN()
-	row := func(name string, db, drawn, u result.Number) legRow {
-		r := legRow{name: name, off: float64(db - drawn), u: float64(u), low: none, high: none}
+	row := func(name string, db, drawn result.Number) legRow {
+		r := legRow{name: name, off: float64(db - drawn), u: none, low: none, high: none}
 		if db.OK() && drawn.OK() {
-			r.reads = figure(db, u) + " dB, drawing " + figure(drawn, u)
+			r.reads = fixed(db, 2) + " dB, drawing " + fixed(drawn, 2)
 		} else {
 			r.reads = "no tone"
 		}
@@ -44,7 +45,7 @@ func legRows(l *result.LegLevels, c *result.Check) []legRow {
 	if difference.reads = "no figure"; c.Measured.OK() {
 		difference.reads = signed(c.Measured, c.Uncertainty) + " dB ±" + figure(c.Uncertainty, c.Uncertainty)
 	}
-	return []legRow{row("hot leg", l.HotDB, l.DrawnHot, l.HotU), row("cold leg", l.ColdDB, l.DrawnCold, l.ColdU), difference}
+	return []legRow{row("hot leg", l.HotDB, l.DrawnHot), row("cold leg", l.ColdDB, l.DrawnCold), difference}
 }
 
 const (
@@ -124,5 +125,9 @@ func legsSays(l *result.LegLevels, c *result.Check) string {
 	if !l.ColdDB.OK() {
 		says += "; no tone on the cold leg"
 	}
-	return says + "; " + verdictWords(c)
+	says += "; " + verdictWords(c)
+	if c.Reason != "" {
+		says += " " + strings.ToUpper(c.Reason[:1]) + c.Reason[1:] + "."
+	}
+	return says
 }

@@ -68,7 +68,7 @@ func levelFrame(a *result.Answer) *frame {
 		}
 		f.curves = append(f.curves, curve{numbers(c.AtSec), numbers(c.DB), l, c.Role})
 		for _, e := range strongest(c.Events, mostEvents) {
-			f.notes = append(f.notes, note{float64(e.AtSec), within(float64(e.DB), widest), e.What + " " + fixed(e.DB, 1), true})
+			f.notes = append(f.notes, note{x: float64(e.AtSec), y: within(float64(e.DB), widest), text: e.What + " " + fixed(e.DB, 1) + " dB", mark: true})
 		}
 	}
 	return f
@@ -106,7 +106,7 @@ func levelSays(a *result.Answer) string {
 	if c == nil || !c.Measured.OK() {
 		return "The level of the tone against time, held against the two seconds before."
 	}
-	says := "The level of the tone departs by " + figure(c.Measured, c.Uncertainty) + " dB at the most from that of the two seconds before"
+	says := "The level of the tone departs by " + atMost(c.Measured, c.Uncertainty) + " dB at the most from that of the two seconds before"
 	if c.From != "" && c.AtSec != nil && c.AtSec.OK() {
 		says += " (" + c.From + ", at " + fixed(*c.AtSec, 1) + " s)"
 	}

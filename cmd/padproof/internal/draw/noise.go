@@ -35,15 +35,15 @@ func noiseFrame(n *result.NoiseCurves, hz []float64) *frame {
 	}
 	// A line far below the noise, or none, must not stretch the axis.
 	reach.low = math.Max(floor-5, reach.low)
-	f := &frame{x: frequencies(), y: evenly(reach.low-3, math.Max(reach.high, reach.low+20)+3, n.Unit+" in each 1 Hz of band; lines at their own level")}
+	f := &frame{x: frequencies(), y: evenly(reach.low-3, math.Max(reach.high, reach.low+12)+4, n.Unit+" in each 1 Hz of band; lines at their own level")}
 	var mains, other note
 	for _, l := range n.Lines {
 		at := note{x: float64(l.FreqHz), y: float64(l.Pad)}
 		f.stems = append(f.stems, stem{at.x * 0.995, float64(l.Rig), asOther}, stem{at.x, at.y, asMeasured})
 		if best := &mains; l.OfMains && (best.text == "" || at.y > best.y) {
-			*best = note{at.x, at.y, "mains " + hertz(l.FreqHz), false}
+			*best = note{x: at.x, y: at.y, text: "mains " + hertz(l.FreqHz)}
 		} else if best := &other; !l.OfMains && (best.text == "" || at.y > best.y) {
-			*best = note{at.x, at.y, hertz(l.FreqHz), false}
+			*best = note{x: at.x, y: at.y, text: hertz(l.FreqHz)}
 		}
 	}
 	f.notes = []note{mains, other}
@@ -51,7 +51,7 @@ func noiseFrame(n *result.NoiseCurves, hz []float64) *frame {
 		ys    []result.Number
 		look  look
 		label string
-	}{{n.Rig, asOther, "rig alone"}, {n.Pad, asMeasured, "with the pad"}, {n.Net, asThird, "the pad alone, rig taken off"}, {n.Thermal, asDrawn, "thermal, by the drawing"}} {
+	}{{n.Rig, asOther, "rig alone"}, {n.Pad, asMeasured, "with the pad"}, {n.Net, asThird, "pad alone"}, {n.Thermal, asDrawn, "thermal"}} {
 		if ys := numbers(c.ys); anyDrawable(hz, ys) {
 			f.curves = append(f.curves, curve{hz, ys, c.look, c.label})
 		}
@@ -61,12 +61,12 @@ func noiseFrame(n *result.NoiseCurves, hz []float64) *frame {
 
 func noiseSays(a *result.Answer) string {
 	over, level := checkOf(a, "noise"), checkOf(a, "noise-level")
-	says := "Noise against frequency, of the rig alone and with the pad"
+	says := "Noise of the rig alone, with the pad, and of the pad alone (the rig taken off), beside the thermal noise of the drawing"
 	switch {
 	case over != nil && over.Measured.OK():
-		says += "; the pad makes " + figure(over.Measured, over.Uncertainty) + " dB more than thermal noise, 20 Hz to 20 kHz (±" + figure(over.Uncertainty, over.Uncertainty) + " dB); " + verdictWords(over)
+		says += "; from 20 Hz to 20 kHz the pad lies " + aboveOrBelow(over) + " thermal (±" + figure(over.Uncertainty, over.Uncertainty) + " dB); " + verdictWords(over)
 	case over != nil && over.Bound != nil && over.Bound.OK():
-		says += "; the pad makes at most " + fixed(*over.Bound, 1) + " dB more than thermal noise, 20 Hz to 20 kHz; " + verdictWords(over)
+		says += "; from 20 Hz to 20 kHz the pad lies at most " + fixed(*over.Bound, 1) + " dB above thermal; " + verdictWords(over)
 	case level != nil && level.Measured.OK():
 		says += "; the pad makes " + figure(level.Measured, level.Uncertainty) + " dBu, 20 Hz to 20 kHz; " + verdictWords(level)
 	case level != nil && level.Bound != nil && level.Bound.OK():
@@ -75,4 +75,13 @@ func noiseSays(a *result.Answer) string {
 		says += "."
 	}
 	return says
+}
+
+// aboveOrBelow is how far noise lies from thermal, in words.
+func aboveOrBelow(c *result.Check) string {
+	way := " dB above"
+	if c.Measured < 0 {
+		way = " dB below"
+	}
+	return atMost(c.Measured, c.Uncertainty) + way
 }

@@ -72,7 +72,7 @@ func predictedFrame(p *result.Prediction, bench, service lossCurve) *frame {
 				f.curves = append(f.curves, curve{[]float64{float64(p.ToneHz) / 1.4, float64(p.ToneHz) * 1.4}, []float64{-float64(limit), -float64(limit)}, asLimit, ""})
 			}
 		}
-		f.notes = append(f.notes, note{float64(p.ToneHz), -float64(p.Limit.Low), "limits in service", false})
+		f.notes = append(f.notes, note{x: float64(p.ToneHz), y: -float64(p.Limit.High), text: "limits in service, at the tone", below: true})
 	}
 	return f
 }

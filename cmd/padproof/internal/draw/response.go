@@ -81,7 +81,7 @@ func (r responsePlot) worst() (note, bool) {
 	}
 	for i, hz := range r.hz {
 		if math.Abs(hz/float64(*c.AtHz)-1) < 1e-6 {
-			return note{hz, r.measured[i], signed(-c.Measured, c.Uncertainty) + " dB at " + hertz(*c.AtHz), true}, true
+			return note{x: hz, y: r.measured[i], text: signed(-c.Measured, c.Uncertainty) + " dB at " + hertz(*c.AtHz), mark: true}, true
 		}
 	}
 	return note{}, false
@@ -104,14 +104,14 @@ func (r responsePlot) says(name string) string {
 	if name == "flatness" {
 		against = "a level line"
 	}
+	doubt := atMost(c.Uncertainty, c.Uncertainty) + " dB"
+	if math.Abs(float64(c.Measured)) <= float64(c.Uncertainty) {
+		return "The " + name + " keeps to " + against + " within what can be measured, " + doubt + "; " + verdictWords(c)
+	}
 	way := "louder"
 	if c.Measured > 0 {
 		way = "quieter"
 	}
-	off := c.Measured
-	if off < 0 {
-		off = -off
-	}
-	return "The " + name + " departs from " + against + " by " + figure(off, c.Uncertainty) + " dB at the most (" + way + ", at " +
-		hertz(*c.AtHz) + ", ±" + figure(c.Uncertainty, c.Uncertainty) + " dB); " + verdictWords(c)
+	return "The " + name + " departs from " + against + " by " + atMost(c.Measured, c.Uncertainty) + " dB at the most (" + way + ", at " +
+		hertz(*c.AtHz) + ", ±" + doubt + "); " + verdictWords(c)
 }

@@ -2,6 +2,7 @@ package draw
 
 import (
 	"image/color"
+	"math"
 	"strings"
 
 	xfont "golang.org/x/image/font"
@@ -152,4 +153,16 @@ func (h hand) clip(text string, width vg.Length) string {
 		runes = runes[:len(runes)-1]
 	}
 	return strings.TrimRight(string(runes), " ") + "…"
+}
+
+// disc draws a filled circle with an edge.
+func (s *sheet) disc(at vg.Point, radius vg.Length, inside, edge color.NRGBA) {
+	var p vg.Path
+	p.Move(at.Add(vg.Point{X: radius}))
+	p.Arc(at, radius, 0, 2*math.Pi)
+	p.Close()
+	s.SetColor(inside)
+	s.Fill(p)
+	s.SetLineStyle(draw.LineStyle{Color: edge, Width: 1})
+	s.Stroke(p)
 }

@@ -35,7 +35,7 @@ func spectrumFrame(a *result.Answer) *frame {
 	}
 	low = math.Max(low, lowestSpectrumDB)
 	caption := "dB, 0 is the tone; noise as in a band of " + strconv.FormatFloat(float64(after.BandHz), 'g', 2, 64) + " Hz"
-	f := &frame{x: frequencies(numbers(after.FreqHz)), y: evenly(low-10, 10, caption)}
+	f := &frame{x: frequencies(numbers(after.FreqHz)), y: between(10*math.Floor(low/10)-10, 20, caption)}
 	if c := checkOf(a, "distortion"); c != nil && c.High.OK() {
 		f.flat(float64(c.High), asLimit, "limit of all harmonics, "+give(c.High))
 	}
@@ -47,7 +47,10 @@ func spectrumFrame(a *result.Answer) *frame {
 		}
 		f.curves = append(f.curves, curve{numbers(c.FreqHz), numbers(c.DB), l, c.Role})
 	}
-	f.notes = append(f.notes, note{float64(after.ToneHz), 0, "tone " + hertz(after.ToneHz), false})
+	f.notes = append(f.notes, note{x: float64(after.ToneHz), text: "tone " + hertz(after.ToneHz)})
+	if n, ok := mainsNote(a, after); ok {
+		f.notes = append(f.notes, n)
+	}
 	for _, h := range after.Harmonics {
 		n := note{x: float64(h.FreqHz), y: float64(h.DB), mark: true}
 		if h.Stands {
@@ -96,4 +99,23 @@ func spectrumSays(a *result.Answer, after result.SpectrumCurve) string {
 		says += "; together below " + fixed(*c.Bound, 1) + " dB"
 	}
 	return says + "; " + verdictWords(c)
+}
+
+// mainsStandsDB is how far above the quietest a mains line stands that is named.
+const mainsStandsDB = 12.0
+
+// mainsNote names the mains line where it stands out, lest it be taken for a
+// harmonic of the tone.
+func mainsNote(a *result.Answer, s result.SpectrumCurve) (note, bool) {
+	mains, quiet := 50.0, quietest(numbers(s.DB))
+	if c := checkOf(a, "hum"); c != nil && c.MainsHz != nil && c.MainsHz.OK() {
+		mains = float64(*c.MainsHz)
+	}
+	best := note{y: quiet + mainsStandsDB}
+	for i, hz := range numbers(s.FreqHz) {
+		if db := float64(s.DB[i]); math.Abs(hz/mains-1) < 0.06 && db > best.y {
+			best = note{x: hz, y: db, text: "mains hum"}
+		}
+	}
+	return best, best.text != ""
 }

@@ -33,12 +33,24 @@ func titleOf(a *result.Answer, what string) string {
 	if name == "" {
 		return what
 	}
-	return what + " of " + name
+	return what + ": " + name
 }
 
 // figure writes a number to the digits that its uncertainty leaves: two of the
 // uncertainty's own, three places at the most.
 func figure(n, u result.Number) string { return fixed(n, places(u)) }
+
+// atMost writes a size that may round to nothing: 0.43, or less than 0.001.
+func atMost(n, u result.Number) string {
+	if n < 0 {
+		n = -n
+	}
+	text := figure(n, u)
+	if n.OK() && strings.Trim(text, "0.") == "" {
+		return "less than " + strconv.FormatFloat(math.Pow(10, -float64(places(u))), 'f', places(u), 64)
+	}
+	return text
+}
 
 func places(u result.Number) int {
 	if !u.OK() || u <= 0 {
@@ -101,7 +113,7 @@ func numbers(from []result.Number) []float64 {
 	return out
 }
 
-// moved adds two lists.
+// added adds one list to another, or takes it off with a sign of -1.
 func added(a, b []float64, sign float64) []float64 {
 	out := make([]float64, min(len(a), len(b)))
 	for i := range out {

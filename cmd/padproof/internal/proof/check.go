@@ -13,6 +13,7 @@ type Options struct {
 	Channel int    // the channel that holds the tone, from 1; 0: find it
 	Mark    *Mark  // no drawing: what is marked on the pad
 	Played  string // a WAV that was played instead of the test signal; "" where none
+	Curves  bool   // fill Answer.Curves, which pictures are drawn from
 }
 
 // Check judges one unit. A take that shows nothing is a problem in the answer;
@@ -28,7 +29,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 		return nil, err
 	}
 	defer ts.close()
-	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
+	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d, o.Mark)}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
@@ -39,7 +40,11 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err := c.judge(); err != nil {
 		return nil, err
 	}
-	return c.finish(u), nil
+	answer := c.finish(u)
+	if o.Curves {
+		answer.Curves = c.curves()
+	}
+	return answer, nil
 }
 
 // A check is one unit being judged.
@@ -52,13 +57,16 @@ type check struct {
 	answer *result.Answer
 }
 
-func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
+func newAnswer(u *unit.Unit, d *Drawing, mark *Mark) *result.Answer {
 	a := &result.Answer{
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
 		Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
+	}
+	if mark == nil {
+		a.Drawing = drawnOf(d.Circuit)
 	}
 	if d.Service != d.Rig.Ends {
 		a.ServiceEnds = endsOf(d.Service)
