@@ -6,6 +6,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/unit"
@@ -23,6 +24,7 @@ type checkFlags struct {
 	played      string
 	report      string
 	now         func() time.Time
+	plots       string
 }
 
 func newCheck() *cobra.Command {
@@ -80,6 +82,7 @@ this bench should read.`,
 	flags.StringVar(&f.report, "report", "", "write the answer as a page to keep and to send, FILE.html")
 	_ = cmd.MarkFlagFilename("report", "html", "htm")
 	flags.BoolVarP(&f.verbose, "verbose", "v", false, "add the takes and the uncertainty budget")
+	addPlots(cmd, &f.plots)
 	return cmd
 }
 
@@ -109,6 +112,9 @@ func runCheck(cmd *cobra.Command, args []string, f checkFlags) error {
 	}
 	if err != nil {
 		return inUnit(u.Serial, afterInterrupt(err))
+	}
+	if err := writePlots(cmd, f.plots, func() []*draw.Picture { return draw.OfAnswer(answer) }); err != nil {
+		return inUnit(u.Serial, err)
 	}
 	if wantsJSON(cmd) {
 		err = writeJSON(cmd.OutOrStdout(), answer)
@@ -169,7 +175,7 @@ func (f checkFlags) unit(cmd *cobra.Command, args []string) (*unit.Unit, error) 
 }
 
 func (f checkFlags) options(cmd *cobra.Command) (proof.Options, error) {
-	o := proof.Options{Channel: f.channel, Played: f.played}
+	o := proof.Options{Channel: f.channel, Played: f.played, Curves: f.plots != "" || f.report != ""}
 	given := cmd.Flags().Changed
 	if given("channel") && f.channel < 1 {
 		return o, usageError(cmd, "--channel counts from 1, not %d", f.channel)

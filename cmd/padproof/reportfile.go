@@ -14,6 +14,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/whole"
@@ -62,6 +63,28 @@ func isReport(path string) bool {
 
 // writeReport writes the page of an answer, all of it or nothing.
 func writeReport(ctx context.Context, path string, a *result.Answer, made time.Time) error {
+	return whole.Write(ctx, path, func(w io.Writer) error { return report.Page(w, a, pageInfo(a, made)) })
+}
+
+// pageInfo is what a page shows beside the answer: its pictures above all.
+func pageInfo(a *result.Answer, made time.Time) report.PageInfo {
 	info := report.PageInfo{Made: made, Version: version()}
-	return whole.Write(ctx, path, func(w io.Writer) error { return report.Page(w, a, info) })
+	schematic := func(marked []string) *report.Picture {
+		return onPage(draw.Schematic(a.Drawing, draw.SchematicOptions{Title: "Drawing", Marked: marked, Bench: a.BenchEnds, Simulated: a.Simulated}))
+	}
+	info.Drawing, info.Marked = schematic(nil), schematic
+	for _, p := range draw.OfAnswer(a) {
+		if p.Name != "schematic" {
+			info.Pictures = append(info.Pictures, *onPage(p))
+		}
+	}
+	return info
+}
+
+// onPage is a picture as it stands in a page; nil where there is nothing to show.
+func onPage(p *draw.Picture) *report.Picture {
+	if p.Nothing() {
+		return nil
+	}
+	return &report.Picture{Title: p.Title, Says: p.Says, SVG: p.WriteInline}
 }

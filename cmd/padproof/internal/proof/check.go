@@ -19,6 +19,8 @@ type Options struct {
 	// may be nil.
 	Progress func(done, total int64)
 	Err      func() error
+
+	Curves bool // fill Answer.Curves, which pictures are drawn from
 }
 
 // Check judges one unit. A take that shows nothing is a problem in the answer;
@@ -35,7 +37,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	}
 	defer ts.close()
 	ts.watch(o)
-	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
+	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d, o.Mark)}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
@@ -46,7 +48,11 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err := c.judge(); err != nil {
 		return nil, err
 	}
-	return c.finish(u), nil
+	answer := c.finish(u)
+	if o.Curves {
+		answer.Curves = c.curves()
+	}
+	return answer, nil
 }
 
 // A check is one unit being judged.
@@ -59,13 +65,16 @@ type check struct {
 	answer *result.Answer
 }
 
-func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
+func newAnswer(u *unit.Unit, d *Drawing, mark *Mark) *result.Answer {
 	a := &result.Answer{
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
 		Sheets: sheetsOf(u.Folder, d), Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
+	}
+	if mark == nil {
+		a.Drawing = drawnOf(d.Circuit)
 	}
 	if d.Service != d.Rig.Ends {
 		a.ServiceEnds = endsOf(d.Service)

@@ -74,8 +74,6 @@ type LegLevels struct {
 	ColdDB    Number `json:"cold_db"`
 	DrawnHot  Number `json:"drawn_hot_db"`
 	DrawnCold Number `json:"drawn_cold_db"`
-	HotU      Number `json:"hot_u_db"` // expanded; null where only the difference has one
-	ColdU     Number `json:"cold_u_db"`
 }
 
 // A SpreadPoint is the loss at one frequency and what sound units may show there.
