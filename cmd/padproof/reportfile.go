@@ -86,5 +86,6 @@ func onPage(p *draw.Picture) *report.Picture {
 	if p.Nothing() {
 		return nil
 	}
-	return &report.Picture{Title: p.Title, Says: p.Says, SVG: p.WriteInline}
+	title, _, _ := strings.Cut(p.Title, ": ") // the page itself names unit and pad
+	return &report.Picture{Title: title, Says: p.Says, SVG: p.WriteInline}
 }

@@ -18,9 +18,6 @@ import (
 	"time"
 
 	"github.com/creack/pty"
-
-	"padproof/cmd/padproof/internal/proof"
-	"padproof/cmd/padproof/internal/unit"
 )
 
 // A session is a padproof that a person runs at a terminal.
@@ -148,34 +145,6 @@ func TestProgressShowsOnATerminal(t *testing.T) {
 	none := (*progress)(nil)
 	none.tell(1, 2)
 	none.clear()
-}
-
-// Reading counts each file once, from nothing to all, and seldom.
-func TestCheckTellsHowFarItIs(t *testing.T) {
-	u, err := unit.Open("../../testdata/saltmarsh/0417")
-	if err != nil {
-		t.Fatal(err)
-	}
-	var total, last int64
-	calls := 0
-	_, err = proof.Check(u, proof.Options{Progress: func(done, all int64) {
-		calls++
-		if done <= last || done > all {
-			t.Errorf("told %d of %d after %d", done, all, last)
-		}
-		last, total = done, all
-	}})
-	var bytes int64
-	for _, path := range u.Files {
-		info, err := os.Stat(path)
-		if err != nil {
-			t.Fatal(err)
-		}
-		bytes += info.Size()
-	}
-	if err != nil || total != bytes || float64(last) < 0.99*float64(total) || calls < 10 || calls > 201 {
-		t.Errorf("told %d times, %d of %d (%v); want 10 to 201 times, to the end of %d", calls, last, total, err, bytes)
-	}
 }
 
 // Ctrl-C while takes are written leaves nothing of them, and a clean screen.

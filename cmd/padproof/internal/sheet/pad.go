@@ -9,7 +9,7 @@ import (
 // what is asked of it.
 type Pad struct {
 	File    string // as it was given to [ReadPad]
-	Source  []byte // as it was read
+	Source  []byte // the file as [ReadPad] read it
 	Name    string // "" if left out
 	Network string // one of [Networks]
 	Parts   []Part // in the order of the sheet
@@ -84,7 +84,12 @@ func ReadPad(path string) (*Pad, error) {
 	if err != nil {
 		return nil, err
 	}
-	return ParsePad(path, data)
+	sheet, err := ParsePad(path, data)
+	if err != nil {
+		return nil, err
+	}
+	sheet.Source = data
+	return sheet, nil
 }
 
 // ParsePad reads the text of a pad.toml; file is its name for errors and for
@@ -97,7 +102,7 @@ func ParsePad(file string, data []byte) (*Pad, error) {
 	d.foreign = map[string]string{"output": "rig.toml", "input": "rig.toml", "calibration": "rig.toml",
 		"temperature_c": "rig.toml", "mains_hz": "rig.toml"}
 	top := d.table("", d.root)
-	p := &Pad{File: file, Source: data, Name: top.text("name"), lines: d.lines}
+	p := &Pad{File: file, Name: top.text("name"), lines: d.lines}
 	p.Network = top.network()
 	p.Parts = top.parts()
 	p.Service = top.service()

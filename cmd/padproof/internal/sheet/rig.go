@@ -4,7 +4,7 @@ package sheet
 // what the sheet leaves out holds its cautious default, and Assumed says so.
 type Rig struct {
 	File             string // as it was given to [ReadRig]; "" for [DefaultRig]
-	Source           []byte // as it was read; nil for [DefaultRig]
+	Source           []byte // the file as it was read; nil for [DefaultRig]
 	Name             string // "" if left out
 	TemperatureC     float64
 	TemperatureHalfC float64 // half-width; 0 for a written temperature
@@ -98,7 +98,12 @@ func ReadRig(path string) (*Rig, error) {
 	if err != nil {
 		return nil, err
 	}
-	return ParseRig(path, data)
+	sheet, err := ParseRig(path, data)
+	if err != nil {
+		return nil, err
+	}
+	sheet.Source = data
+	return sheet, nil
 }
 
 // ParseRig reads the text of a rig.toml; file is its name for errors and for
@@ -109,7 +114,7 @@ func ParseRig(file string, data []byte) (*Rig, error) {
 		return nil, err
 	}
 	d.foreign = map[string]string{"network": "pad.toml", "parts": "pad.toml", "service": "pad.toml", "limits": "pad.toml"}
-	r := &Rig{File: file, Source: data, lines: d.lines}
+	r := &Rig{File: file, lines: d.lines}
 	r.fill(d.table("", d.root), 0.10)
 	d.unknown()
 	if err := d.first(); err != nil {

@@ -47,9 +47,6 @@ func complete(ctx context.Context, part *os.File, fill func(w io.Writer) error) 
 	if closed := part.Close(); err == nil {
 		err = closed
 	}
-	if err == nil {
-		err = ctx.Err()
-	}
 	return err
 }
 
