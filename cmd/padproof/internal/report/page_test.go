@@ -418,7 +418,7 @@ func TestPageGivesTimeAndVersion(t *testing.T) {
 			t.Errorf("the page lacks %q", want)
 		}
 	}
-	if pageOf(t, sound()) != pageOf(t, sound()) {
+	if first, second := pageOf(t, sound()), pageOf(t, sound()); first != second {
 		t.Error("the same answer gives another page")
 	}
 }
