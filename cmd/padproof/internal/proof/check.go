@@ -1,6 +1,7 @@
 package proof
 
 import (
+	"cmp"
 	"strings"
 
 	"padproof/cmd/padproof/internal/result"
@@ -13,6 +14,9 @@ type Options struct {
 	Channel int    // the channel that holds the tone, from 1; 0: find it
 	Mark    *Mark  // no drawing: what is marked on the pad
 	Played  string // a WAV that was played instead of the test signal; "" where none
+
+	Shared  *Shared // keeps what takes that serve several units have shown; nil: nothing is kept
+	Workers int     // takes read at once; 0: two
 }
 
 // Check judges one unit. A take that shows nothing is a problem in the answer;
@@ -23,7 +27,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err != nil {
 		return nil, err
 	}
-	ts, err := openTakes(u)
+	ts, err := openTakes(u, o.Shared)
 	if err != nil {
 		return nil, err
 	}
@@ -32,14 +36,19 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
-	cal := d.Sheet.Calibration
-	if err := ts.measure(o.Channel, cal.ChannelMatchDB, d.Sheet.MainsHz, o.Played != ""); err != nil {
+	if err := ts.measure(cmp.Or(o.Channel, u.Channel), d.reads(o.Workers), o.Played != ""); err != nil {
 		return nil, err
 	}
 	if err := c.judge(); err != nil {
 		return nil, err
 	}
 	return c.finish(u), nil
+}
+
+// reads is what of the rig tells on how takes are read.
+func (d *Drawing) reads(workers int) rigReads {
+	const usual = 2
+	return rigReads{d.Sheet.Calibration.ChannelMatchDB, d.Sheet.MainsHz, d.Gains.LinearityDB, cmp.Or(workers, usual)}
 }
 
 // A check is one unit being judged.
@@ -73,9 +82,6 @@ func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
 // tell of the rig comes first, since the loss stands on it.
 func (c *check) judge() error {
 	c.takes.noteCopies()
-	if err := c.takes.noteSteps(c.Gains.LinearityDB); err != nil {
-		return err
-	}
 	c.pairUp()
 	if err := c.findRig(); err != nil {
 		return err

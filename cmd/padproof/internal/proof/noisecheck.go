@@ -162,7 +162,9 @@ func (c *check) humSources(tone *take, noiseRole string, gainDB float64) (compar
 		s.Noise = compare.HumReading{Hum: t.noise.Hum, FullScaleDBu: c.found.noiseDBu}
 	}
 	if s.Noise.Hum == nil && tone.placed != nil {
-		hum, err := silenceHum(tone, c.Sheet.MainsHz)
+		hum, err := recall(c.takes.shared, tone.key(fmt.Sprint("silence", c.Sheet.MainsHz)), func() (*analysis.Hum, error) {
+			return silenceHum(tone, c.Sheet.MainsHz)
+		})
 		if err != nil {
 			return s, err
 		}

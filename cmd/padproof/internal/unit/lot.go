@@ -16,6 +16,10 @@ const (
 	OneUnit   Layout = "unit"    // takes named ROLE.wav
 	FlatLot   Layout = "flat"    // takes named SERIAL.ROLE.wav
 	FolderLot Layout = "folders" // folders, one a unit
+
+	// ChannelLot is a lot whose takes hold a unit in each channel: what OneUnit
+	// looks like where lot.toml names the channels.
+	ChannelLot Layout = "channels"
 )
 
 // LayoutOf tells how a folder holds its units, by names alone. Takes that cannot

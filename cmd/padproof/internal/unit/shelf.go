@@ -14,10 +14,11 @@ import (
 const (
 	padSheet = "pad.toml"
 	rigSheet = "rig.toml"
+	lotSheet = "lot.toml"
 )
 
 // otherSheets are sheets that a folder may hold and this package does not use.
-var otherSheets = []string{"ohms.toml", "lot.toml"}
+var otherSheets = []string{"ohms.toml"}
 
 // otherAudio are endings of recordings that are no WAV.
 var otherAudio = []string{".flac", ".aif", ".aiff", ".caf", ".mp3", ".m4a", ".ogg", ".opus", ".wma", ".w64", ".wave", ".bwf"}
@@ -31,13 +32,15 @@ type take struct {
 
 // shelf is what a folder holds, by names.
 type shelf struct {
-	folder  string
-	takes   []take
-	byRole  map[string][]string // names of takes by serial and role, see takeKey
-	sheets  map[string][]string // names of sheets by pad.toml and rig.toml
-	odd     []string            // .toml files that are no sheet
-	foreign map[string]string   // by role: a recording that is no WAV
-	folders []string
+	folder string
+	takes  []take
+	byRole map[string][]string // names of takes by serial and role, see takeKey
+	sheets map[string][]string // names of sheets by pad.toml and rig.toml
+	odd    []string            // .toml files that are no sheet
+
+	lotSheet string            // lot.toml as it is named; "" if there is none
+	foreign  map[string]string // by role: a recording that is no WAV
+	folders  []string
 }
 
 // look sorts what a folder holds.
@@ -72,6 +75,8 @@ func (s *shelf) put(e fs.DirEntry) {
 	case strings.EqualFold(name, padSheet), strings.EqualFold(name, rigSheet):
 		key := strings.ToLower(name)
 		s.sheets[key] = append(s.sheets[key], name)
+	case strings.EqualFold(name, lotSheet):
+		s.lotSheet = name
 	case ending == ".toml" && !slices.Contains(otherSheets, strings.ToLower(name)):
 		s.odd = append(s.odd, name)
 	case isRole && slices.Contains(otherAudio, ending):

@@ -15,6 +15,7 @@ type Unit struct {
 	Files     map[string]string // the path of each take by its role
 	Inherited map[string]bool   // the paths, of PadFile, RigFile and Files, that serve other units too
 	Warnings  []string          // one sentence each, for the reader of the answer
+	Channel   int               // the channel of every take that is this unit's, from 1; 0 where a take is one unit's
 
 	prefix  string            // before the role in the unit's names: "0417." in a flat lot
 	fault   *Error            // two files for one role
