@@ -37,6 +37,10 @@ func bestReading(sound, wrong *network.Circuit) OhmReading {
 	return best
 }
 
+// OhmsText is a resistance with three digits and its unit; "open" where it has no
+// end.
+func OhmsText(ohms float64) string { return partValue(network.Resistor, ohms) }
+
 // readingChange is how far two readings lie apart on a meter: the logarithm of
 // their ratio, an open counting as 10 megohms and a short as 0.1 ohm.
 func readingChange(a, b float64) float64 {

@@ -7,6 +7,7 @@ import (
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
+	"padproof/compare/suspect"
 )
 
 // Options are what the caller settles beside the unit's files.
@@ -32,7 +33,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 		return nil, err
 	}
 	defer ts.close()
-	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
+	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d), voids: map[string]bool{}}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
@@ -54,11 +55,14 @@ func (d *Drawing) reads(workers int) rigReads {
 // A check is one unit being judged.
 type check struct {
 	*Drawing
-	takes  *takes
-	mark   *Mark
-	played string
-	found  scale // what dBFS stand for
-	answer *result.Answer
+	takes    *takes
+	mark     *Mark
+	played   string
+	found    scale            // what dBFS stand for
+	findings findings         // kept for the search of what is wrong
+	voids    map[string]bool  // checks that a problem of their takes voids
+	ranking  *suspect.Ranking // nil where nothing was sought
+	answer   *result.Answer
 }
 
 func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
@@ -104,13 +108,16 @@ func (c *check) add(one result.Check, terms []result.Term, on ...*take) {
 			on = append(on, c.takes.by[second(t.role)])
 		}
 	}
-	void(&one, on...)
+	if void(&one, on...) {
+		c.voids[one.Name] = true
+	}
 	c.answer.Checks = append(c.answer.Checks, one)
 	c.answer.Budget = append(c.answer.Budget, terms...)
 }
 
-// void takes the ground from a check that a problem of a take touches.
-func void(one *result.Check, takes ...*take) {
+// void takes the ground from a check that a problem of a take touches, and
+// reports whether there is one.
+func void(one *result.Check, takes ...*take) bool {
 	var names []string
 	for _, t := range takes {
 		if t == nil {
@@ -123,10 +130,11 @@ func void(one *result.Check, takes ...*take) {
 		}
 	}
 	if len(names) == 0 || one.Verdict == string(compare.None) {
-		return
+		return len(names) > 0
 	}
 	one.Verdict = string(compare.Unproven)
 	one.Reason = strings.Join(unrepeated(names), ", ") + ": see Problems for what to do"
+	return true
 }
 
 // unrepeated leaves each text once.
@@ -172,6 +180,7 @@ func (c *check) finish(u *unit.Unit) *result.Answer {
 	}
 	verdict, reason := compare.Combine(verdicts...)
 	a.Verdict = string(verdict)
+	c.seek(verdict)
 	switch {
 	case reason == "":
 	case c.mark == nil && c.Circuit == nil:

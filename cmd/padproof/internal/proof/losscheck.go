@@ -76,6 +76,7 @@ func (c *check) loss() error {
 		judge = c.eitherCheck
 	}
 	reading := c.reading()
+	c.findings.loss = &reading
 	one, terms, err := judge(reading)
 	if err != nil {
 		return err

@@ -38,6 +38,7 @@ func (c *check) noise() error {
 	if err != nil {
 		return err
 	}
+	c.findings.noise = &k
 	if n.Problem.Name != "" {
 		pad.problems = append(pad.problems, n.Problem)
 	}
@@ -140,6 +141,7 @@ func (c *check) hum() error {
 	if err != nil {
 		return err
 	}
+	c.findings.hum = &f
 	verdict, reason := f.Judge(c.Rule, limit)
 	one := emptyCheck("hum", "dBu")
 	one.Measured, one.Uncertainty = result.Number(f.Measured), result.Number(f.UDB)

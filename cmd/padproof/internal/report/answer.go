@@ -177,16 +177,6 @@ func problems(p *page, a *result.Answer) {
 	}
 }
 
-func suspects(p *page, a *result.Answer) {
-	if len(a.Suspects) == 0 {
-		return
-	}
-	p.heading("Most likely wrong")
-	for _, s := range a.Suspects {
-		p.item("  - ", fmt.Sprintf("%s (weight %s): %s", s.Fault, fixed(s.Weight, 2), s.Confirm.How))
-	}
-}
-
 func unseenTexts(all []result.Unseen) []string {
 	var texts []string
 	for _, u := range all {

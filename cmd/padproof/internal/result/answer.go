@@ -12,14 +12,15 @@ type Answer struct {
 	Verdict string `json:"verdict"` // PASS, FAIL or UNPROVEN
 	Reason  string `json:"reason"`
 
-	Checks    []Check   `json:"checks"`
-	Suspects  []Suspect `json:"suspects"`
-	Unseen    []Unseen  `json:"unseen"`
-	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
-	Simulated bool      `json:"simulated"`
-	Found     *Found    `json:"found,omitempty"`
-	Budget    []Term    `json:"budget"`
-	Captures  []Capture `json:"captures"`
+	Checks      []Check   `json:"checks"`
+	Suspects    []Suspect `json:"suspects"`
+	Unexplained *Number   `json:"unexplained,omitempty"` // where suspects were sought: the weight of "none of these explains it"
+	Unseen      []Unseen  `json:"unseen"`
+	Tones       []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
+	Simulated   bool      `json:"simulated"`
+	Found       *Found    `json:"found,omitempty"`
+	Budget      []Term    `json:"budget"`
+	Captures    []Capture `json:"captures"`
 
 	Assumed  []string `json:"assumed"`  // cautious figures taken because the rig sheet leaves them out
 	Notes    []string `json:"notes"`    // what the answer does not cover
@@ -113,18 +114,22 @@ type Tone struct {
 
 // A Suspect is a fault that would explain what was measured.
 type Suspect struct {
-	Fault     string            `json:"fault"`
-	Parts     []string          `json:"parts"`
-	Weight    Number            `json:"weight"`
-	Predicted map[string]Number `json:"predicted"`
-	Confirm   Confirm           `json:"confirm"`
+	Fault      string            `json:"fault"`
+	Parts      []string          `json:"parts"`
+	Weight     Number            `json:"weight"`
+	Predicted  map[string]Number `json:"predicted"`              // loss_db on the bench, service_loss_db, legs_db; null where nothing comes through
+	ByPercent  *Number           `json:"by_percent,omitempty"`   // of a drift, or of an end of the bench not as stated: by how much
+	ByPercentU *Number           `json:"by_percent_u,omitempty"` // expanded
+	Confirm    Confirm           `json:"confirm"`
 }
 
 // Confirm is the ohmmeter reading that tells a suspect from a sound unit.
 type Confirm struct {
 	Pins      []string `json:"pins"`
-	GoodOhms  Number   `json:"good_ohms"`
+	Joined    []string `json:"joined"`    // pins to join meanwhile
+	GoodOhms  Number   `json:"good_ohms"` // null for an open circuit
 	FaultOhms Number   `json:"fault_ohms"`
+	NextOhms  *Number  `json:"next_ohms,omitempty"` // with the next suspect
 	How       string   `json:"how"`
 }
 

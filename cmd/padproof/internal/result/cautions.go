@@ -7,3 +7,6 @@ var Cautions = []string{
 	"A loudspeaker line or an amplifier's output is not a signal for a pad or an interface.",
 	"Never lift a protective earth to cure hum; mains work is for licensed people under local codes.",
 }
+
+// OhmsCaution is for everyone who is about to put an ohmmeter on a unit.
+const OhmsCaution = "unplug the unit at both ends, with power, phantom and signal off."
