@@ -41,7 +41,14 @@ type Trim struct {
 	// The bench figure is what the next check should read, so it holds the doubt of two readings.
 	BenchLossDB, BenchUDB     float64
 	ServiceLossDB, ServiceUDB float64
-	Watts                     float64 // in the resistor, or in the hotter of two; NaN without InputVoltsRMS
+
+	// What a check by the drawing should then make of the loss in service. It differs from
+	// ServiceLossDB where the trim is not at the part that is off: that part is still as it was, and the
+	// drawing does not know.
+	CheckLossDB, CheckUDB float64
+
+	Watts         float64 // in the resistor, or in the hotter of two; NaN without InputVoltsRMS
+	InputVoltsRMS float64 // at which it takes them
 }
 
 // A Mend is a part that is too far off to trim: it wants replacing by the one on the drawing.
@@ -72,8 +79,9 @@ const commonTolFrac = 0.01 // of a metal-film resistor
 // same resistor each, unless the one part that is off sits in one leg.
 //
 // Trims are ranked by how near the middle they land, in steps of a quarter of the limit's half-width;
-// then by fewest resistors, parallel before series (nothing to cut: common practice, no source), and
-// the least change of the impedances at both ends.
+// then by being at the part that is off, where that is known, and leaving the impedances at both ends
+// as drawn within a fifth; by fewest resistors, by parallel
+// before series (nothing to cut: common practice, no source), and by the least change of the impedances.
 func FindRework(k ReworkCase) Rework {
 	if k.TrimTolFrac <= 0 {
 		k.TrimTolFrac = commonTolFrac
@@ -117,6 +125,7 @@ func (k ReworkCase) off(t Trim) float64 {
 type ranked struct {
 	Trim
 	quarters float64 // of the half-width, off the middle
+	strained float64 // 1 where an end's impedance is far from the drawing's, or the part that is off left as it is
 	parts    int
 	strain   float64 // of the impedances at both ends, as logarithms
 }
@@ -131,8 +140,10 @@ func byRank(a, b ranked) int {
 		}
 		return 0
 	}
-	if d := less(a.quarters, b.quarters); d != 0 {
-		return d
+	for _, d := range []int{less(a.quarters, b.quarters), less(a.strained, b.strained)} {
+		if d != 0 {
+			return d
+		}
 	}
 	if d := a.parts - b.parts; d != 0 {
 		return d
@@ -154,13 +165,34 @@ func (k ReworkCase) bestAt(s site, series network.Series, seen []explanation) (r
 	t.Series = series
 	verdict, _ := Decide(k.Rule, t.ServiceLossDB, t.ServiceUDB, k.Limit, k.Loss.ServiceExpectedDB)
 	half := (k.Limit.High - k.Limit.Low) / 2
-	trimmed := s.on(seen[0].unit, ohms)
-	return ranked{
+	r := ranked{
 		Trim: t, parts: max(1, len(s.refs)),
 		quarters: math.Round(4 * k.off(t) / half),
-		strain:   k.strain(trimmed),
-	}, verdict == Pass
+		strain:   k.strain(s.on(seen[0].unit, ohms)),
+	}
+	known := k.Unit != nil && len(seen) == 1
+	if r.strain > farStrain || known && !slices.Equal(s.refs, seen[0].off) {
+		r.strained = 1
+	}
+	return r, verdict == Pass && k.check(&r.Trim) != Fail
 }
+
+// check foretells what the next check makes of the loss, and its verdict.
+func (k ReworkCase) check(t *Trim) Verdict {
+	next := k.LossCase
+	next.Reading.LossDB = t.BenchLossDB
+	loss, err := JudgeLoss(next)
+	if err != nil {
+		return Unproven
+	}
+	t.CheckLossDB, t.CheckUDB = loss.ServiceDB, loss.UDB
+	verdict, _ := Decide(k.Rule, loss.ServiceDB, loss.UDB, k.Limit, k.Loss.ServiceExpectedDB)
+	return verdict
+}
+
+// farStrain is how far the impedances at both ends may be moved before a trim comes after all others
+// that land as well: a fifth. Common practice, no source.
+const farStrain = 0.2
 
 // The values that are tried: below, a trim in series with any pad is no more than its tolerance, and
 // above one in parallel.

@@ -30,7 +30,7 @@ func reworkCase(t *testing.T, sound, unit *network.Circuit, bench, service netwo
 // From a source of nothing into no load an L pad loses 20 lg((R1+R2)/R2): the voltage divider of
 // elementary circuit laws.
 func TestTrimOfADivider(t *testing.T) {
-	divider := func(r1, r2 float64) float64 { return 20 * math.Log10((r1 + r2) / r2) }
+	divider := func(r1, r2 float64) float64 { return 20 * math.Log10((r1+r2)/r2) }
 	parallel := func(a, b float64) float64 { return a * b / (a + b) }
 	ends := network.Ends{SourceOhms: 0.001, LoadOhms: math.Inf(1), Drive: network.DriveUnbalanced, Sense: network.SenseUnbalanced}
 	tests := []struct {

@@ -14,7 +14,7 @@ import (
 func (k ReworkCase) foretell(s site, ohms float64, seen []explanation) Trim {
 	t := Trim{
 		Refs: s.refs, Across: s.across, Parallel: s.parallel, Ohms: ohms, BothLegs: len(s.refs) == 2,
-		Watts: k.watts(s, seen[0].unit, ohms),
+		Watts: k.watts(s, seen[0].unit, ohms), InputVoltsRMS: k.InputVoltsRMS,
 	}
 	var bench, service span
 	for _, x := range seen {

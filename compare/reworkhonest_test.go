@@ -59,6 +59,7 @@ func TestTrimsKeepABalancedPadBalanced(t *testing.T) {
 		always string
 	}{
 		{"one leg high", sound.With("R1", 680), true, []string{"parallel R1 R2", "series R1 R2", "parallel R2"}, "parallel R1"},
+		{"the other leg high", sound.With("R2", 680), true, []string{"parallel R1 R2", "series R1 R2", "parallel R1"}, "parallel R2"},
 		{"both legs low", sound.With("R1", 470).With("R2", 470), true, []string{"series R1", "series R2"}, "series R1 R2"},
 		{"shunt high", sound.With("R3", 390), true, []string{"series R1", "series R2", "parallel R1"}, "parallel R3"},
 		{"not known", sound.With("R3", 390), false, []string{"series R1", "series R2", "parallel R1"}, "parallel R3"},
@@ -190,21 +191,31 @@ func TestE96WhereE24WillNotDo(t *testing.T) {
 	}
 }
 
-// In series with a divider's upper part the trim carries the same current: P = I²R.
+// In series with a divider's upper part the trim carries the same current, P = I²R; beside its lower
+// part it stands at the same voltage, P = V²/R.
 func TestHeatOfATrim(t *testing.T) {
 	ends := network.Ends{SourceOhms: 0.001, LoadOhms: math.Inf(1), Drive: network.DriveUnbalanced, Sense: network.SenseUnbalanced}
 	sound := circuit(t, "L", 0.001, 900, 100)
-	k := reworkCase(t, sound, sound.With("R1", 800), ends, ends, 0.2)
-	k.InputVoltsRMS = 10
-	for _, trim := range FindRework(k).Trims {
-		if !trim.Parallel && trim.Refs[0] == "R1" {
-			if want := 0.01 * 0.01 * 100.0; math.Abs(trim.Watts-want) > 1e-6 {
-				t.Errorf("%s: %g W, want %g", trim.Words(), trim.Watts, want)
-			}
-			return
+	for _, tt := range []struct {
+		unit     *network.Circuit
+		ref      string
+		parallel bool
+		want     float64
+	}{
+		{sound.With("R1", 800), "R1", false, 0.01 * 0.01 * 100},
+		{sound.With("R2", 110), "R2", true, 1.0 * 1.0 / 1100},
+	} {
+		k := reworkCase(t, sound, tt.unit, ends, ends, 0.2)
+		k.InputVoltsRMS = 10
+		i := slices.IndexFunc(FindRework(k).Trims, func(trim Trim) bool { return trim.Parallel == tt.parallel && slices.Equal(trim.Refs, []string{tt.ref}) })
+		if i < 0 {
+			t.Errorf("no trim at %s, parallel %v", tt.ref, tt.parallel)
+			continue
+		}
+		if trim := FindRework(k).Trims[i]; math.Abs(trim.Watts-tt.want) > 1e-6 {
+			t.Errorf("%s: %g W, want %g", trim.Words(), trim.Watts, tt.want)
 		}
 	}
-	t.Error("no trim in series with R1")
 }
 
 func BenchmarkFindRework(b *testing.B) {

@@ -29,8 +29,11 @@ func (t Trim) Words() string {
 func (t Trim) Text() string {
 	text := fmt.Sprintf("%s (%s, ±1 %%): the bench should then read %.2f ± %.2f dB, which is %.2f ± %.2f dB in service",
 		t.Words(), t.Series, t.BenchLossDB, t.BenchUDB, t.ServiceLossDB, t.ServiceUDB)
+	if math.Abs(t.CheckLossDB-t.ServiceLossDB) > t.CheckUDB+t.ServiceUDB {
+		text += fmt.Sprintf("; a check by this drawing would make that %.2f ± %.2f dB, since it does not know of the part that is still off", t.CheckLossDB, t.CheckUDB)
+	}
 	if !math.IsNaN(t.Watts) {
-		text += "; it takes " + wattText(t.Watts)
+		text += fmt.Sprintf("; it takes %s with %.2g V at the input", wattText(t.Watts), t.InputVoltsRMS)
 	}
 	return text
 }

@@ -49,6 +49,7 @@ type check struct {
 	mark   *Mark
 	played string
 	found  scale // what dBFS stand for
+	judged *judgedLoss
 	answer *result.Answer
 }
 
@@ -56,6 +57,7 @@ func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
 	a := &result.Answer{
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
+		Rework: []result.Rework{}, WithoutDrawing: []result.Likelihood{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
 		Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
@@ -160,6 +162,7 @@ func (c *check) finish(u *unit.Unit) *result.Answer {
 	if !straight.stepped || !through.stepped {
 		a.Notes = append(a.Notes, "automatic gain not excluded: a plain tone cannot show it; switch it off in the recorder")
 	}
+	c.whatToDo()
 	var verdicts []compare.Verdict
 	for _, one := range a.Checks {
 		verdicts = append(verdicts, compare.Verdict(one.Verdict))

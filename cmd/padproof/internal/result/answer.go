@@ -12,9 +12,12 @@ type Answer struct {
 	Verdict string `json:"verdict"` // PASS, FAIL or UNPROVEN
 	Reason  string `json:"reason"`
 
-	Checks    []Check   `json:"checks"`
-	Suspects  []Suspect `json:"suspects"`
-	Unseen    []Unseen  `json:"unseen"`
+	Checks         []Check      `json:"checks"`
+	Suspects       []Suspect    `json:"suspects"`
+	Unseen         []Unseen     `json:"unseen"`
+	Rework         []Rework     `json:"rework"`
+	WithoutDrawing []Likelihood `json:"without_drawing"`
+
 	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
 	Simulated bool      `json:"simulated"`
 	Found     *Found    `json:"found,omitempty"`
