@@ -115,10 +115,11 @@ const straightDB = 0.05
 // anythingDB is the width over which "none of these" reads anything alike.
 const anythingDB = 60
 
-// noneDensity is that of none of these.
+// noneDensity is that of none of these. A tone that does not come through at all is as likely as not
+// something else, a plug or a channel.
 func (c Case) noneDensity() float64 {
 	if c.AtLeast {
-		return math.Max(0, 1-c.LossDB/anythingDB)
+		return math.Max(0.5, 1-c.LossDB/anythingDB)
 	}
 	return 1.0 / anythingDB
 }

@@ -165,7 +165,7 @@ func TestLegOpenAtTheOutput(t *testing.T) {
 func TestTrueFaultIsAmongTheLikelihoods(t *testing.T) {
 	faults, among := 0, 0
 	for i, r := range rows(t) {
-		if i%3 != 0 { // a third of them says enough
+		if i%7 != 0 { // a seventh of them says enough
 			continue
 		}
 		c := Case{
@@ -193,7 +193,7 @@ func TestTrueFaultIsAmongTheLikelihoods(t *testing.T) {
 	}
 	// The pads are just as the textbook has them, so the six likeliest of some thirty faults in three
 	// networks must nearly always hold the true one.
-	if faults < 100 || among < faults*9/10 {
+	if faults < 40 || among < faults*9/10 {
 		t.Errorf("the true fault is among the lines in %d of %d, want nine tenths", among, faults)
 	}
 }
@@ -233,6 +233,22 @@ func TestMeasureOfAnOpenLeg(t *testing.T) {
 	if got := l.measure(); got != want {
 		t.Errorf("measure = %q, want %q", got, want)
 	}
+}
+
+// Legs open at either end, between floating ends: nothing comes through. The one reading named must show
+// both: in.hot to in.cold would not show a break at the output.
+func TestMeasureOfFaultsThatReadAlike(t *testing.T) {
+	c := Case{MarkDB: 14, Ohms: 600, LossDB: 80, AtLeast: true, FreqHz: 997,
+		Rig: compare.Rig{Ends: network.Ends{SourceOhms: 100, Drive: network.DriveFloating, LoadOhms: 10000}}}
+	for _, l := range Likelihoods(c) {
+		if l.Fault == "a leg open at the input or a leg open at the output" {
+			if want := "in.hot to out.hot:"; !strings.Contains(l.Measure, want) {
+				t.Errorf("measure %q, want %s", l.Measure, want)
+			}
+			return
+		}
+	}
+	t.Errorf("%+v: no leg open among them", Likelihoods(c))
 }
 
 func TestNothingToSay(t *testing.T) {

@@ -12,9 +12,22 @@ type line struct {
 	texts    []string
 	weight   float64
 	networks map[string]hypothesis // the likeliest of each kind of pad
+	joined   []*line               // that no loss tells apart from this one
 }
 
-func (l line) best() hypothesis {
+// faults are the likeliest of each kind of pad, those of joined lines too.
+func (l *line) faults() []hypothesis {
+	var all []hypothesis
+	for _, name := range l.names() {
+		all = append(all, l.networks[name])
+	}
+	for _, other := range l.joined {
+		all = append(all, other.faults()...)
+	}
+	return all
+}
+
+func (l *line) best() hypothesis {
 	var best hypothesis
 	for _, name := range l.names() {
 		if h := l.networks[name]; h.weight >= best.weight {
@@ -24,7 +37,7 @@ func (l line) best() hypothesis {
 	return best
 }
 
-func (l line) names() []string {
+func (l *line) names() []string {
 	var names []string
 	for name := range l.networks {
 		names = append(names, name)
@@ -98,6 +111,7 @@ func joined(all []*line) []*line {
 		}
 		kept[i].texts = append(kept[i].texts, l.texts...)
 		kept[i].weight += l.weight
+		kept[i].joined = append(kept[i].joined, l)
 	}
 	return kept
 }

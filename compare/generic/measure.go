@@ -34,31 +34,48 @@ func (l *line) measure() string {
 }
 
 // plainFactor is a change of a reading that no meter and no tolerance can hide: beyond it the simpler
-// reading is the better.
+// of two readings serves better.
 const plainFactor = 10
 
-// ohms is the ohmmeter reading that shows the fault best in all the kinds of pad where it
-// might be: the one whose change is largest where it is smallest, the first of [compare.Readings] that is plain.
+// ohms names the ohmmeter reading that shows the fault best. Where none shows all of those that no loss
+// tells apart, each gets its own.
 func (l *line) ohms() string {
-	var best compare.OhmReading
-	most := -1.0
-	for _, r := range compare.Readings(l.best().sound) {
-		least := math.Inf(1)
-		for _, h := range l.networks {
+	reading, change := bestReading(l.faults())
+	if change >= math.Log(2) || len(l.joined) == 0 {
+		return readingText(reading, l.faults())
+	}
+	alone := line{networks: l.networks}
+	texts := []string{alone.ohms()}
+	for _, other := range l.joined {
+		texts = append(texts, other.ohms())
+	}
+	return strings.Join(texts, "; and ")
+}
+
+// bestReading is the one whose change, as a logarithm, is largest where it is smallest; of those that are plain
+// the first of [compare.Readings].
+func bestReading(faults []hypothesis) (best compare.OhmReading, most float64) {
+	most = -1
+	for _, r := range compare.Readings(faults[0].sound) {
+		least := math.Log(plainFactor)
+		for _, h := range faults {
 			least = math.Min(least, apart(r.On(h.sound), r.On(h.faulty)))
 		}
-		least = math.Min(least, math.Log(plainFactor))
 		if least > most {
 			best, most = r, least
 		}
 	}
+	return best, most
+}
+
+// readingText says what a reading gives sound and with each of the faults.
+func readingText(r compare.OhmReading, faults []hypothesis) string {
 	var sound, faulty []float64
-	for _, name := range l.names() {
-		h := l.networks[name]
-		sound, faulty = append(sound, best.On(h.sound)), append(faulty, best.On(h.faulty))
+	for _, h := range faults {
+		sound, faulty = append(sound, r.On(h.sound)), append(faulty, r.On(h.faulty))
 	}
-	text := fmt.Sprintf("with an ohmmeter %s: %s sound, %s with the fault", best.How(), ohmsRange(sound), ohmsRange(faulty))
-	if other := otherLeg(best, l.best().sound.Balanced()); other != "" {
+	text := fmt.Sprintf("with an ohmmeter %s: %s sound, %s with the fault", r.How(), ohmsRange(sound), ohmsRange(faulty))
+	if other := otherLeg(r, faults[0].sound.Balanced()); other != "" {
 		text += "; then " + other
 	}
 	return text

@@ -130,7 +130,7 @@ func (c Case) readingHere() []Pad {
 // lose, the more it loses anywhere.
 func (c Case) tuned(design func(lossDB float64) Pad) Pad {
 	low, high := 1e-3, 200.0
-	const halvings = 60
+	const halvings = 40
 	for range halvings {
 		middle := (low + high) / 2
 		if design(middle).Circuit.LossDB(c.Rig.Ends, c.FreqHz) < c.MarkDB {
