@@ -32,7 +32,11 @@ and rig.toml; sheets, and takes of the rig alone, may lie one folder up and then
 unit there.
 Or name the files by role. With no drawing, say what is marked on the pad: the mark is
 judged as a symmetrical matched pad of --marked-ohms, or with --on-this-bench as what
-this bench should read.`,
+this bench should read. Where the reading does not agree with it, the answer says what pads of
+that mark would read with something wrong: likelihoods with what to measure, no findings.
+
+Where the loss is out of its limits and a resistor would bring it in, the answer says which
+(IEC 60063), where, and what should then be measured.`,
 		Example: `  padproof check testdata/saltmarsh/0417
   padproof check --pad pad.toml --rig rig.toml --before in.wav --after out.wav
   padproof check --before in.wav --after out.wav --marked-loss-db 10 --within-db 0.5 --marked-ohms 600`,

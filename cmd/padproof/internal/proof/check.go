@@ -62,6 +62,7 @@ type check struct {
 	findings findings         // kept for the search of what is wrong
 	voids    map[string]bool  // checks that a problem of their takes voids
 	ranking  *suspect.Ranking // nil where nothing was sought
+	judged   *judgedLoss      // nil where the loss was not held against the drawing
 	answer   *result.Answer
 }
 
@@ -69,6 +70,7 @@ func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
 	a := &result.Answer{
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
+		Rework: []result.Rework{}, WithoutDrawing: []result.Likelihood{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
 		Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
@@ -181,6 +183,7 @@ func (c *check) finish(u *unit.Unit) *result.Answer {
 	verdict, reason := compare.Combine(verdicts...)
 	a.Verdict = string(verdict)
 	c.seek(verdict)
+	c.whatToDo()
 	switch {
 	case reason == "":
 	case c.mark == nil && c.Circuit == nil:

@@ -132,14 +132,15 @@ func (c *check) legsEvidence() *suspect.Legs {
 	return l
 }
 
-// likeliest is the circuit of the most likely fault, nil where none was sought or
-// none stands out.
+// likeliest is the circuit that most likely explains what was read: that of the
+// first suspect, where it is more likely than all else together; the drawing itself
+// where it is the bench that is not as stated. Nil where nothing stands out.
 func (c *check) likeliest() *network.Circuit {
 	if c.ranking == nil || len(c.ranking.Suspects) == 0 {
 		return nil
 	}
 	first := c.ranking.Suspects[0]
-	if first.Weight < c.ranking.NoneWeight || len(first.Faults) == 0 || first.Faults[0].End != suspect.NoEnd {
+	if first.Weight < 0.5 || first.Distinct > 1 || len(first.Faults) == 0 {
 		return nil
 	}
 	circuit, _ := first.Faults[0].Apply(c.Circuit, c.Rig.Ends)

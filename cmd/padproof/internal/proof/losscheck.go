@@ -115,6 +115,7 @@ func (c *check) drawnCheck(reading compare.LossReading) (result.Check, []result.
 		}
 		return one, terms, nil
 	}
+	c.judged = &judgedLoss{k, loss, limit}
 	verdict, reason, unseen := c.judgeLoss(k, loss, limit)
 	c.answer.Unseen = append(c.answer.Unseen, unseenOf(unseen)...)
 	decide(&one, verdict, reason, limit, loss.ServiceExpectedDB)

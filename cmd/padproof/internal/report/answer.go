@@ -18,6 +18,8 @@ func AnswerText(w io.Writer, a *result.Answer, verbose bool) error {
 	tones(p, a)
 	problems(p, a)
 	suspects(p, a)
+	rework(p, a)
+	withoutDrawing(p, a)
 	bullets(p, "What this bench cannot see", unseenTexts(a.Unseen))
 	bullets(p, "Taken for granted, since rig.toml leaves it out", a.Assumed)
 	bullets(p, "Notes", append(append([]string(nil), a.Notes...), a.Warnings...))

@@ -12,15 +12,18 @@ type Answer struct {
 	Verdict string `json:"verdict"` // PASS, FAIL or UNPROVEN
 	Reason  string `json:"reason"`
 
-	Checks      []Check   `json:"checks"`
-	Suspects    []Suspect `json:"suspects"`
-	Unexplained *Number   `json:"unexplained,omitempty"` // where suspects were sought: the weight of "none of these explains it"
-	Unseen      []Unseen  `json:"unseen"`
-	Tones       []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
-	Simulated   bool      `json:"simulated"`
-	Found       *Found    `json:"found,omitempty"`
-	Budget      []Term    `json:"budget"`
-	Captures    []Capture `json:"captures"`
+	Checks         []Check      `json:"checks"`
+	Suspects       []Suspect    `json:"suspects"`
+	Unexplained    *Number      `json:"unexplained,omitempty"` // where suspects were sought: the weight of "none of these explains it"
+	Unseen         []Unseen     `json:"unseen"`
+	Rework         []Rework     `json:"rework"`
+	WithoutDrawing []Likelihood `json:"without_drawing"`
+
+	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
+	Simulated bool      `json:"simulated"`
+	Found     *Found    `json:"found,omitempty"`
+	Budget    []Term    `json:"budget"`
+	Captures  []Capture `json:"captures"`
 
 	Assumed  []string `json:"assumed"`  // cautious figures taken because the rig sheet leaves them out
 	Notes    []string `json:"notes"`    // what the answer does not cover
