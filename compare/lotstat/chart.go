@@ -51,7 +51,11 @@ func KnownChartLimits(centre, stdDev float64) (ChartLimits, error) {
 	if !finite(centre) || !finite(stdDev) || stdDev < 0 {
 		return ChartLimits{}, fmt.Errorf("a chart about %g with a standard deviation of %g: both must be numbers, the second 0 or more", centre, stdDev)
 	}
-	return limitsAbout(centre, stdDev), nil
+	l := limitsAbout(centre, stdDev)
+	if !finite(l.Low) || !finite(l.High) || !finite(l.RangeHigh) {
+		return ChartLimits{}, errors.New("the figures are too large for a chart")
+	}
+	return l, nil
 }
 
 func limitsAbout(centre, stdDev float64) ChartLimits {

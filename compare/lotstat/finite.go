@@ -23,6 +23,16 @@ func checkFinite(what string, values []float64) error {
 	return nil
 }
 
+// checkUncertainties refuses the first that is none.
+func checkUncertainties(stdU []float64) error {
+	for i, u := range stdU {
+		if !finite(u) || u < 0 {
+			return fmt.Errorf("uncertainty %d is %g: it must be a number, 0 or more", i+1, u)
+		}
+	}
+	return nil
+}
+
 func checkCoverage(coverage float64) error {
 	if !(coverage > 0 && coverage < 1) {
 		return fmt.Errorf("a coverage of %g: it lies between 0 and 1", coverage)

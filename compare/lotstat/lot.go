@@ -37,7 +37,7 @@ func (l Lot) check() error {
 	if !finite(l.CommonStdUDB) || l.CommonStdUDB < 0 {
 		return fmt.Errorf("a common uncertainty of %g dB: it must be a number, 0 or more", l.CommonStdUDB)
 	}
-	return errors.Join(checkFinite("deviation", l.DeviationsDB), checkFinite("uncertainty", l.StdUDB), l.Model.check())
+	return errors.Join(checkFinite("deviation", l.DeviationsDB), checkUncertainties(l.StdUDB), l.Model.check())
 }
 
 // mostDB is the largest deviation that a loss can have at all.

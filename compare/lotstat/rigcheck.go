@@ -150,7 +150,7 @@ func (r RigRule) judge(reading RigReading, history []float64) RigPoint {
 	case !finite(d):
 		p.Text = "the reference pad could not be read: look at its plugs and cables"
 	case math.Abs(d) > half:
-		p.Text = fmt.Sprintf("the reference pad reads %s off its known loss, %.2f dB are allowed: look for a changed cable, setting or load", signedDB(d), half)
+		p.Text = fmt.Sprintf("the reference pad reads %s off its known loss, %s are allowed: look for a changed cable, setting or load", signedDB(d), sizeDB(half))
 	case d < low || d > high:
 		p.Text = fmt.Sprintf("the reference pad reads %s, between %s and %s so far: the bench has changed; find what, or begin a new chart", signedDB(d), signedDB(low), signedDB(high))
 	}

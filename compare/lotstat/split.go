@@ -39,7 +39,7 @@ func SplitSpread(values, stdU []float64, coverage float64) (Split, error) {
 		return Split{}, fmt.Errorf("%d readings with %d uncertainties", len(values), len(stdU))
 	}
 	s, err := Summarise(values, coverage)
-	if err := errors.Join(err, checkFinite("uncertainty", stdU)); err != nil {
+	if err := errors.Join(err, checkUncertainties(stdU)); err != nil {
 		return Split{}, err
 	}
 	p := Split{
@@ -71,7 +71,7 @@ func (p Split) text() string {
 	case p.UnitsInterval.Low == 0:
 		return "measurement alone explains the spread: the units may be all alike"
 	}
-	return fmt.Sprintf("measurement makes %.2g %% of the variance, the units the rest", 100*p.MeasurementFrac)
+	return fmt.Sprintf("measurement makes %s of the variance, the units the rest", percent(p.MeasurementFrac))
 }
 
 func rootMeanSquare(values []float64) float64 {

@@ -73,7 +73,9 @@ func TestSplitWords(t *testing.T) {
 	if alike.Units != 0 || !math.IsNaN(alike.MeasurementFrac) || alike.Text != "all readings are alike" {
 		t.Errorf("two alike = %+v", alike)
 	}
-	_, err := SplitSpread([]float64{1, 2}, []float64{0.1}, 0.95)
+	_, err := SplitSpread([]float64{1, 2}, []float64{0.1, -0.1}, 0.95)
+	refused(t, "a negative uncertainty", err, "uncertainty 2 is -0.1")
+	_, err = SplitSpread([]float64{1, 2}, []float64{0.1}, 0.95)
 	refused(t, "one uncertainty for two", err, "2 readings with 1")
 	_, err = SplitSpread([]float64{1, 2}, []float64{0.1, math.NaN()}, 0.95)
 	refused(t, "a NaN uncertainty", err, "uncertainty 2")

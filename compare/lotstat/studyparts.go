@@ -77,7 +77,7 @@ func (s *Study) judge() {
 }
 
 func (s *Study) text(frac float64, of string) string {
-	text := fmt.Sprintf("the bench takes %.2g %% of the %s: %s", 100*frac, of, s.Grade)
+	text := fmt.Sprintf("the bench takes %s of the %s: %s", percent(frac), of, s.Grade)
 	if s.Categories < enoughCategories {
 		text += fmt.Sprintf("; it tells %d kinds of unit apart, %d are asked for", int(s.Categories), enoughCategories)
 	}

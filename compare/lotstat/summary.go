@@ -21,9 +21,9 @@ type Summary struct {
 	StdDevInterval uncertainty.Interval // of the true standard deviation; unknown of one reading
 }
 
-// Summarise returns mean and standard deviation of readings, both by two passes
-// (Chan, Golub and LeVeque, Am. Statistician 37, 1983, 242-247), so that a large
-// mean costs no digits, with the intervals of normal readings:
+// Summarise returns mean and standard deviation of readings, the latter by two
+// passes (Chan, Golub and LeVeque, Am. Statistician 37, 1983, 242-247), so that a
+// large mean costs no digits, with the intervals of normal readings:
 //
 //	mean ± t(n-1) s / √n
 //	s √((n-1)/χ²)      at the upper and the lower quantile of n-1 degrees
@@ -57,22 +57,15 @@ func Summarise(values []float64, coverage float64) (Summary, error) {
 	return s, nil
 }
 
-// meanStdDev is the mean taken again about itself, and the standard deviation,
-// NaN of one value.
+// meanStdDev is the mean and the standard deviation, NaN of one value.
 func meanStdDev(values []float64) (mean, sd float64) {
-	mean = stat.Mean(values, nil)
-	rest := 0.0
-	for _, v := range values {
-		rest += v - mean
-	}
-	mean += rest / float64(len(values))
 	if len(values) < 2 {
-		return mean, math.NaN()
+		return stat.Mean(values, nil), math.NaN()
 	}
 	if floats.Min(values) == floats.Max(values) {
-		return values[0], 0
+		return values[0], 0 // no rounding of the mean shows
 	}
-	return mean, stat.StdDev(values, nil)
+	return stat.MeanStdDev(values, nil)
 }
 
 // meanHalfWidth is t(n-1) s / √n.
