@@ -16,7 +16,7 @@ const (
 	Nelson Book = "Nelson"
 	// WesternElectric holds the four zone tests of the Western Electric
 	// Statistical Quality Control Handbook, 1956, by its numbers. They find less
-	// than Nelson's and cry wolf less often: the better book for a long lot.
+	// than Nelson's and raise fewer false alarms: the better book for a long lot.
 	WesternElectric Book = "Western Electric"
 )
 

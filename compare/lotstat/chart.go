@@ -88,6 +88,9 @@ func ReadChart(values []float64, limits ChartLimits, book Book) (Chart, error) {
 	if err != nil {
 		return Chart{}, err
 	}
+	if limits.StdDev == 0 {
+		rules = rules[:1] // nothing lies within a deviation that is none
+	}
 	c := Chart{
 		Limits: limits, Values: values, MovingRanges: movingRanges(values),
 		FalseBreaks: float64(len(values))/book.RunLength() + float64(len(values))*falseRange,

@@ -1,8 +1,10 @@
 package lotstat
 
 import (
+	"cmp"
 	"math"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"testing"
 
@@ -88,6 +90,9 @@ func TestDiagnoseReel(t *testing.T) {
 			t.Fatalf("%v %+g: shift %+v", c.refs, c.frac, d.Shift)
 		}
 		says(t, d, c.said, "on all units: suspect ")
+		if !slices.IsSortedFunc(d.Explanations, func(a, b Explanation) int { return cmp.Compare(a.OfTolerance, b.OfTolerance) }) {
+			t.Errorf("not by the share of their tolerance: %+v", d.Explanations)
+		}
 		found := false
 		for _, e := range d.Explanations {
 			if strings.Join(e.Refs, " ") == strings.Join(c.refs, " ") {
@@ -122,6 +127,26 @@ func TestDiagnoseSource(t *testing.T) {
 		}
 	}
 	t.Errorf("no source among %v", d.Explanations)
+}
+
+// A shift that reels within their tolerance make: said so, and nothing is called
+// suspect. Not all units lie on one side: it is so on average.
+func TestDiagnoseWithin(t *testing.T) {
+	b := batch{units: 200, scatter: 0.008, noiseDB: 0.002, reelFrac: map[string]float64{"R3": -0.007},
+		ends: func(e *network.Ends) {}}
+	l := b.lot(t, 6)
+	l.Model.Ends = []LotEnd{{"source", 0.001, l.Model.Ends[0].BenchDB}} // as before-loaded may find it
+	l.CommonStdUDB = 0.002
+	d := must[Diagnosis](t)(Diagnose(l))
+	if !d.Shift.BeyondBench || !d.Explanations[0].Within || !d.Explanations[1].Within {
+		t.Errorf("%+v, %+v", d.Shift, d.Explanations)
+	}
+	says(t, d, "high on average: this would explain it: the reel of R3, 0.", "low (within its 1.0 %), or the reel of R1 and R2, 0.")
+	for _, s := range d.Sentences {
+		if strings.Contains(s, "suspect") {
+			t.Errorf("%q", s)
+		}
+	}
 }
 
 // Parts of one kind, value and tolerance share a reel; their sensitivities add up.

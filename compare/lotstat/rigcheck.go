@@ -19,7 +19,7 @@ type RigReading struct {
 
 // A RigRule is what a rig check is held to.
 type RigRule struct {
-	KnownStdUDB float64       // standard uncertainty of the known loss, on this bench
+	KnownStdUDB float64       // standard uncertainty of the known loss between the ends of this bench
 	WithinDB    float64       // largest deviation allowed besides; 0 for none
 	MaxAge      time.Duration // how old the last reading may be; 0 for any age
 }
@@ -31,7 +31,7 @@ type RigState string
 const (
 	RigOK      RigState = "ok"
 	RigOut     RigState = "out"
-	RigTooOld  RigState = "too old"
+	RigTooOld  RigState = "too-old"
 	RigMissing RigState = "missing"
 )
 
