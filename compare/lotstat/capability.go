@@ -38,7 +38,7 @@ const differsAt = 0.01
 // CapabilityOf holds readings, in order of making, against a limit. The indices
 // and their intervals stand with [Indices]. Within has the degrees of freedom
 //
-//	ν = (n-1)² / (2 (0.8265 n - 1.082))
+//	ν = (n-1)² / (2 (0.8264 n - 1.0821))
 //
 // that give a chi the relative variance of a mean moving range (Cryer and Ryan,
 // J. Quality Technology 22, 1990, 187-192, from memory; it follows from the
@@ -81,10 +81,12 @@ func noIndex(s Summary, limit compare.Limit) string {
 	return ""
 }
 
-// rangeDof is the degrees of freedom behind a mean moving range of n readings.
+// rangeDof is the degrees of freedom behind a mean moving range of n readings. The
+// two factors are V + 2C and V + 4C over 4/π, with V = 2 - 4/π the variance of one
+// range of unit readings and C = 4/π (√3/2 + π/12 - 1) the covariance of neighbours.
 func rangeDof(n int) float64 {
 	m := float64(n)
-	return (m - 1) * (m - 1) / (2 * (0.8265*m - 1.082))
+	return (m - 1) * (m - 1) / (2 * (0.8264459100*m - 1.0820954931))
 }
 
 // successiveP is the one-sided probability of a von Neumann ratio as small as

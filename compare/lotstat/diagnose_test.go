@@ -185,12 +185,14 @@ func TestDiagnoseSound(t *testing.T) {
 	near(t, "share of sound lots with a shift", float64(shown)/lots, 0.05, 0.04)
 	near(t, "share of sound lots with anything else", float64(other)/lots, 0, 0.04)
 
-	inBench := must[Diagnosis](t)(Diagnose(batch{units: 50, scatter: 0.001, noiseDB: 0.001,
-		ends: func(e *network.Ends) { e.SourceOhms *= 1.015 }}.lot(t, 3)))
+	lot := batch{units: 50, scatter: 0.001, noiseDB: 0.001,
+		ends: func(e *network.Ends) { e.SourceOhms *= 1.015 }}.lot(t, 3)
+	lot.CommonStdUDB = 0.0005
+	inBench := must[Diagnosis](t)(Diagnose(lot))
 	if !inBench.Shift.Shown || inBench.Shift.BeyondBench || len(inBench.Explanations) > 0 {
 		t.Errorf("a source within its tolerance: %+v", inBench.Shift)
 	}
-	says(t, inBench, "no more than the bench itself may add", "foremost its ")
+	says(t, inBench, "no more than the bench itself may add", "foremost its source")
 }
 
 func TestDiagnoseOneThing(t *testing.T) {
@@ -243,12 +245,13 @@ func TestDiagnoseOneThing(t *testing.T) {
 	if len(d.Outliers) != 1 || d.Outliers[0] != 7 || d.Width.Shown {
 		t.Errorf("one odd unit: %v, %+v", d.Outliers, d.Width)
 	}
+	near(t, "mean without it", d.Shift.MeanDB, meanOf(steady().without([]int{7}).db), 1e-12)
 	says(t, d, "unit 8 (+0.4", "does not belong")
 
-	wide := batch{units: 80, scatter: 0.03, noiseDB: 0.004}.lot(t, 5)
+	wide := batch{units: 80, scatter: 0.015, noiseDB: 0.004}.lot(t, 5)
 	d = must[Diagnosis](t)(Diagnose(wide))
 	if !d.Width.Shown || d.Clusters.Shown {
-		t.Errorf("parts of 3 %%: %+v, %+v", d.Width, d.Clusters)
+		t.Errorf("parts of 1.5 %%: %+v, %+v", d.Width, d.Clusters)
 	}
 	says(t, d, "parts of a wider tolerance")
 }

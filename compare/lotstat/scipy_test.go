@@ -20,7 +20,8 @@ type question struct {
 // noScipy is how the script ends without scipy.
 const noScipy = 4
 
-// Yields, means, standard deviations, Cp, slopes and t tests against scipy.stats
+// Yields, means, standard deviations, Cp, slopes, t tests, a test of a spread
+// and the prediction of a next reading against scipy.stats
 // on the same figures.
 func TestAgainstScipy(t *testing.T) {
 	python := "/usr/bin/python3"
@@ -86,7 +87,12 @@ func readingQuestions(t *testing.T) []question {
 			question{fmt.Sprintf("cp 1.3 %d 0.95", n-1), ends(cpInterval(1.3, float64(n-1), 0.95)), 1e-9},
 			question{"ttest " + text, []float64{shift.P}, 1e-7},
 		)
-		if n >= leastForOrder {
+		low, high := nextLimits(values, 0.001)
+		all = append(all, question{"next " + text, []float64{low, high}, 1e-7})
+		if n < leastForOrder {
+			lot := Lot{DeviationsDB: values, StdUDB: constant(0.07, n)}
+			all = append(all, question{"width 0.07 " + text, []float64{must[Diagnosis](t)(Diagnose(lot)).Width.P}, 1e-9})
+		} else {
 			trend := orderOf(view{countFrom(0, n), values}).trend
 			all = append(all, question{"slope " + text, append(ends(trend.Interval), trend.P), 1e-6})
 		}

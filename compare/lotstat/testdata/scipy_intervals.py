@@ -34,3 +34,14 @@ for line in sys.stdin:
     elif kind == "ttest":
         r = stats.ttest_1samp(np.array(x), 0)
         print(repr(float(r.pvalue)))
+    elif kind == "width":
+        sound, v = x[0], np.array(x[1:])
+        print(repr(float(stats.chi2.sf(((v - v.mean()) ** 2).sum() / sound**2, len(v) - 1))))
+    elif kind == "next":
+        # Degrees of freedom from the moments of two correlated normal differences, in full digits.
+        v, n = np.array(x), len(x)
+        s = np.abs(np.diff(v)).mean() / 1.128
+        var = (2 - 4 / np.pi) * (n - 1) + 2 * (n - 2) * (4 / np.pi * (np.sqrt(3) / 2 + np.pi / 12) - 4 / np.pi)
+        dof = (n - 1) ** 2 * (4 / np.pi) / (2 * var)
+        half = stats.t.ppf(0.99865, dof) * s * np.sqrt(1 + 1 / n)
+        print(repr(float(v.mean() - half)), repr(float(v.mean() + half)))
