@@ -89,7 +89,7 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	if err != nil {
 		return afterInterrupt(err)
 	}
-	whole, err := tally.Lot(nil)
+	whole, err := tally.Lot()
 	if err != nil {
 		return err
 	}

@@ -12,9 +12,8 @@ import (
 // rules is the book of run rules that a lot's chart is read by.
 const rules = lotstat.WesternElectric
 
-// Lot works out what the units show together. The diagnosis of a group is asked of
-// says, which may be nil.
-func (t *Tally) Lot(says func(Group) []string) (*result.Lot, error) {
+// Lot works out what the units show together.
+func (t *Tally) Lot() (*result.Lot, error) {
 	lot := t.lot
 	yield, err := lotstat.YieldOf(lot.Passed, lot.Units, compare.Coverage)
 	if err != nil {
@@ -31,8 +30,8 @@ func (t *Tally) Lot(says func(Group) []string) (*result.Lot, error) {
 			}
 			d.Figures = append(d.Figures, one)
 		}
-		if says != nil {
-			d.Says = append(d.Says, says(g.shown())...)
+		if d.Says, err = g.says(); err != nil {
+			return nil, err
 		}
 		lot.Drawings = append(lot.Drawings, d)
 	}
@@ -124,29 +123,4 @@ func (f *figure) chart() (*result.Chart, error) {
 		chart.Breaks = append(chart.Breaks, one)
 	}
 	return chart, nil
-}
-
-// A Group is the units of one drawing, for a diagnosis.
-type Group struct {
-	Rows   []int // of the lot's rows
-	Losses Losses
-}
-
-// Losses are the losses of a group's units, in their order.
-type Losses struct {
-	Units                                  []string
-	FreqHz                                 float64
-	ServiceDB, BenchDB, BenchDrawnDB, StdU []float64
-	ServiceDrawnDB                         float64
-	Limit                                  compare.Limit
-}
-
-func (g *group) shown() Group {
-	one := Group{Rows: g.rows}
-	for _, f := range g.figures {
-		if f.name == "loss" {
-			one.Losses = Losses{f.units, f.freqHz, f.values, f.bench, f.benchDrawn, f.stdU, f.expected, f.limit}
-		}
-	}
-	return one
 }

@@ -39,7 +39,7 @@ func (g *group) add(c result.Check, a *result.Answer, o Outcome) {
 	f.units, f.values = append(f.units, a.Unit), append(f.values, float64(c.Measured))
 	f.stdU = append(f.stdU, ownStdU(c.Name, a.Budget, o.Unit))
 	if c.Bench != nil && c.Bench.Measured.OK() && c.Bench.Expected.OK() {
-		f.bench, f.benchDrawn = append(f.bench, float64(c.Bench.Measured)), append(f.benchDrawn, float64(c.Bench.Expected))
+		f.deviations = append(f.deviations, deviationOf(c, a, o.Unit))
 	}
 	if c.AtHz != nil {
 		f.freqHz = float64(*c.AtHz)

@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
 )
 
@@ -21,17 +22,18 @@ type group struct {
 	limits   string // all limits, as text: what tells groups of one pad apart
 	rows     []int  // of the lot
 	figures  []*figure
+	first    *unit.Unit // the sheets are its
 }
 
 // A figure is one check of a group: what each unit that has it read.
 type figure struct {
-	name, unit        string
-	limit             compare.Limit
-	expected          float64
-	units             []string
-	values, stdU      []float64
-	bench, benchDrawn []float64
-	freqHz            float64
+	name, unit   string
+	limit        compare.Limit
+	expected     float64
+	units        []string
+	values, stdU []float64
+	deviations   []benchDeviation // of the loss
+	freqHz       float64
 }
 
 // NewTally begins the tally of a lot by its name.
@@ -86,7 +88,7 @@ func (t *Tally) fill(row *result.LotRow, o Outcome) {
 			row.Problems = append(row.Problems, take.Role+": "+p.Problem)
 		}
 	}
-	n, g := t.groupOf(a)
+	n, g := t.groupOf(a, o.Unit)
 	row.Drawing = n
 	g.rows = append(g.rows, len(t.lot.Rows))
 	for _, c := range a.Checks {
@@ -116,12 +118,12 @@ func reasonOf(a *result.Answer) string {
 }
 
 // groupOf finds the group of an answer, or begins it.
-func (t *Tally) groupOf(a *result.Answer) (int, *group) {
+func (t *Tally) groupOf(a *result.Answer, u *unit.Unit) (int, *group) {
 	limits := limitsOf(a)
 	i := slices.IndexFunc(t.groups, func(g *group) bool { return g.pad == a.Pad && g.rig == a.Rig && g.limits == limits })
 	if i < 0 {
 		i = len(t.groups)
-		t.groups = append(t.groups, &group{pad: a.Pad, rig: a.Rig, limits: limits})
+		t.groups = append(t.groups, &group{pad: a.Pad, rig: a.Rig, limits: limits, first: u})
 	}
 	return i, t.groups[i]
 }
