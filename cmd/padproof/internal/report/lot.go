@@ -156,7 +156,7 @@ func lotChart(p *page, f result.LotFigure) {
 		p.item("  ", text+": steady.")
 		return
 	}
-	p.item("  ", text+":")
+	p.item("  ", fmt.Sprintf("%s: broken %d times; a steady line of as many units does so about %s times by chance.", text, len(c.Breaks), fixed(c.FalseBreaks, 1)))
 	for _, b := range c.Breaks {
 		p.item("  - ", fmt.Sprintf("%s at %s: %s", b.Rule, strings.Join(b.Units, ", "), b.Text))
 	}
