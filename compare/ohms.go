@@ -34,6 +34,11 @@ func (r OhmReading) same(c *network.Circuit, s OhmReading) bool {
 	return samePair(c, [2]string{r.PinA, r.PinB}, [2]string{s.PinA, s.PinB}) && samePair(c, r.Joined, s.Joined)
 }
 
+// Shorted reports whether the joined pins are those that the meter is on.
+func (r OhmReading) Shorted(c *network.Circuit) bool {
+	return r.Joined != [2]string{} && !c.OneNode(r.Joined[0], r.Joined[1]) && samePair(c, [2]string{r.PinA, r.PinB}, r.Joined)
+}
+
 // samePair reports whether two pairs of names mean the same two nodes, in either
 // order. Two of one node join nothing, as if they were not there.
 func samePair(c *network.Circuit, p, q [2]string) bool {
@@ -124,12 +129,11 @@ func joinedReadings(c *network.Circuit) []OhmReading {
 // one another, links included: readings that agree on both agree by the wiring.
 func scattered(c *network.Circuit) [2]*network.Circuit {
 	var apart [2]*network.Circuit
-	const golden = 0.6180339887498949 // its multiples never fall together
-	for i := range apart {
+	for i, step := range []float64{math.Phi, math.Sqrt2} { // the fractions of their multiples never fall together
 		d := c
 		for n, p := range c.Parts() {
 			if p.Kind == network.Resistor {
-				_, frac := math.Modf(golden * float64(n+1+100*i))
+				_, frac := math.Modf(step * float64(n+1))
 				d = d.With(p.Ref, 100*(1+frac))
 			}
 		}
@@ -148,5 +152,6 @@ func readsLikeOne(apart [2]*network.Circuit, r OhmReading, others []OhmReading) 
 }
 
 func equalOhms(a, b float64) bool {
-	return a == b || math.Abs(a-b) <= 1e-9*math.Max(a, b) // rounding
+	const rounding = 1e-9
+	return a == b || !math.IsInf(a, 1) && !math.IsInf(b, 1) && math.Abs(a-b) <= rounding*math.Max(a, b)
 }

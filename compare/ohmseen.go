@@ -73,11 +73,14 @@ func allFit(c *network.Circuit, seen []OhmSeen) bool {
 	return !slices.ContainsFunc(seen, func(s OhmSeen) bool { return !s.Fits(c) })
 }
 
+// Shown is what the meter showed: "33 Ω", "1.12 kΩ", "open".
+func (s OhmSeen) Shown() string { return valueTo(network.Resistor, s.Ohms, 4) }
+
 // Text says which pins, what was read there, and what a sound unit of the
 // circuit reads on this meter.
 func (s OhmSeen) Text(c *network.Circuit) string {
 	low, high := s.Good(c)
-	return s.Reading().How() + " shows " + valueTo(network.Resistor, s.Ohms, 4) + " on the ohmmeter, where a sound unit shows " + bandText(low, high)
+	return s.Reading().How() + " shows " + s.Shown() + " on the ohmmeter, where a sound unit shows " + bandText(low, high)
 }
 
 // bandText is what a meter may show, least and most.

@@ -4,15 +4,18 @@ import (
 	"strings"
 
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
 )
 
 // Options are what the caller settles beside the unit's files.
 type Options struct {
-	Channel int    // the channel that holds the tone, from 1; 0: find it
-	Mark    *Mark  // no drawing: what is marked on the pad
-	Played  string // a WAV that was played instead of the test signal; "" where none
+	Channel int             // the channel that holds the tone, from 1; 0: find it
+	Mark    *Mark           // no drawing: what is marked on the pad
+	Played  string          // a WAV that was played instead of the test signal; "" where none
+	Ohms    []sheet.Reading // ohmmeter readings beside those of the unit's own sheet
+	Meter   Meter           // that took them
 }
 
 // Check judges one unit. A take that shows nothing is a problem in the answer;
@@ -29,6 +32,9 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	}
 	defer ts.close()
 	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d)}
+	if err := c.readOhms(u, o); err != nil {
+		return nil, err
+	}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
@@ -48,7 +54,8 @@ type check struct {
 	takes  *takes
 	mark   *Mark
 	played string
-	found  scale // what dBFS stand for
+	ohms   []compare.OhmSeen // readings of an ohmmeter
+	found  scale             // what dBFS stand for
 	answer *result.Answer
 }
 

@@ -1,5 +1,8 @@
 package result
 
+// OhmCaution is for everyone who is about to put an ohmmeter on a unit.
+const OhmCaution = "Power, phantom and signal off, the unit unplugged at both ends"
+
 // Cautions are for everyone who is about to connect or play something.
 var Cautions = []string{
 	"Loudspeakers and headphones down or off before a signal plays.",
