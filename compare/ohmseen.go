@@ -112,7 +112,18 @@ func (k LossCase) OhmDoubt(l Loss) string {
 	case len(texts) > 0:
 		return strings.Join(texts, "; ") + "; zero the meter and read it again, or mend the unit"
 	case l.ReadOtherwise:
-		return "no part of the drawing alone explains both the loss on the bench and the ohmmeter readings; look at gain, source and load, and read again"
+		return readOtherwise
+	}
+	return ""
+}
+
+const readOtherwise = "no part of the drawing alone explains both the loss on the bench and the ohmmeter readings; look at gain, source and load, and read again"
+
+// OhmRemark says with a loss that breaks its limits that the ohmmeter readings
+// speak against a wrong part, and so for a wrong bench; "" where they do not.
+func (l Loss) OhmRemark() string {
+	if l.ReadOtherwise {
+		return readOtherwise
 	}
 	return ""
 }

@@ -23,6 +23,9 @@ func (d *Drawing) judgeLoss(k compare.LossCase, loss compare.Loss, limit compare
 		reason += compare.Settles(loss.Budget)
 	}
 	if verdict == compare.Fail {
+		if reason == "" {
+			reason = loss.OhmRemark()
+		}
 		return verdict, reason, nil
 	}
 	unseen := compare.FindUnseen(k, loss.BenchDB, loss.BenchUDB, limit)

@@ -2,6 +2,7 @@ package report
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"padproof/cmd/padproof/internal/result"
@@ -46,18 +47,20 @@ func ohmsSeen(p *page, a *result.Answer) {
 	if len(a.Ohms) == 0 {
 		return
 	}
-	p.heading("Ohmmeter")
-	rows := [][]string{{"pins", "joined", "read", "a sound unit", "", "meter"}}
+	var meters []string
+	rows := [][]string{{"pins", "joined", "read", "a sound unit", ""}}
 	for _, o := range a.Ohms {
 		agrees := "agrees"
 		if !o.Agrees {
 			agrees = "WRONG"
 		}
-		rows = append(rows, []string{
-			strings.Join(o.Pins, " to "), joinedPins(o.Joined), metered(o.Ohms), goodBand(o), agrees,
-			fmt.Sprintf("±(%s %% + %s)", significant(float64(o.MeterTol)*100), ohms(o.MeterPlus)),
-		})
+		rows = append(rows, []string{strings.Join(o.Pins, " to "), joinedPins(o.Joined), metered(o.Ohms), goodBand(o), agrees})
+		meter := fmt.Sprintf("±(%s %% + %s)", significant(float64(o.MeterTol)*100), ohms(o.MeterPlus))
+		if !slices.Contains(meters, meter) {
+			meters = append(meters, meter)
+		}
 	}
+	p.heading("Ohmmeter, good for " + strings.Join(meters, " or "))
 	p.table("  ", rows)
 }
 
