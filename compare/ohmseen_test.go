@@ -224,3 +224,27 @@ func TestReadingNarrowsWhatExplains(t *testing.T) {
 }
 
 func lossText(l Loss) string { return fmt.Sprintf("%.3f ± %.3f dB", l.ServiceDB, l.UDB) }
+
+// Two arms swapped read alike on the bench, within a coarse repeatability; the
+// meter on one of them tells.
+func TestReadingRulesOutSwap(t *testing.T) {
+	sound := circuit(t, "T", 0.001, 150, 330, 100)
+	k := LossCase{Circuit: sound, Rig: Rig{Ends: unbalanced(0, 400)}, Service: unbalanced(600, 50), Reading: read(sound, unbalanced(0, 400), 0.5)}
+	limit := PlusMinus(sound.LossDB(k.Service, toneHz), 0.3)
+	swapUnseen := func() bool {
+		for _, u := range FindUnseen(k, sound.LossDB(k.Rig.Ends, toneHz), 3, limit) {
+			if u.Name() == "R1 and R2" {
+				return true
+			}
+		}
+		return false
+	}
+	k.Ohms = []OhmSeen{seen(sound, "in.hot", "out.hot")} // 480 Ω either way
+	if !swapUnseen() {
+		t.Error("a reading that is the same with R1 and R2 swapped rules the swap out")
+	}
+	k.Ohms = append(k.Ohms, seen(sound, "in.hot", "screen")) // 250 Ω, swapped 430
+	if swapUnseen() {
+		t.Error("R1 and R2 swapped is unseen with 250 Ω read from in.hot to screen")
+	}
+}

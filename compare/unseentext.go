@@ -26,7 +26,7 @@ func (u Unseen) Text() string {
 			partValue(u.Kind, u.LowValue), partValue(u.Kind, u.HighValue), u.WithinDB, u.alsoRead(), loss)
 	}
 	if r := u.Reading; r.PinA != "" {
-		fmt.Fprintf(&b, " To settle it, unplug the unit (signal and phantom off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
+		fmt.Fprintf(&b, " To settle it, unplug the unit (power, phantom and signal off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
 			r.How(), partValue(network.Resistor, r.GoodOhms), partValue(network.Resistor, r.WrongOhms))
 	}
 	if ends := u.ends(); ends != "" {

@@ -60,7 +60,28 @@ func ParseOhmsSheet(file string, data []byte) (*Ohms, error) {
 	if err := d.first(); err != nil {
 		return nil, err
 	}
+	d.wholeReadings(o)
+	if err := d.first(); err != nil {
+		return nil, err
+	}
 	return o, nil
+}
+
+// wholeReadings notes each reading that lacks something, once every key is good
+// by itself.
+func (d *document) wholeReadings(o *Ohms) {
+	if d.lines["readings"] == 0 {
+		d.fail("readings", "readings is missing", "write readings = [ "+readingExample+", ... ]")
+	}
+	for i, r := range o.Readings {
+		path, label := item("readings", i), fmt.Sprintf("reading %d", i+1)
+		switch {
+		case r.Pins == [2]string{}:
+			d.fail(path, label+": pins is missing", "write "+readingExample)
+		case math.IsNaN(r.Ohms):
+			d.fail(path, label+": ohms is missing", `write what the meter read, ohms = 330, or ohms = "open"`)
+		}
+	}
 }
 
 // plusOhmsSpan is what a meter may be off by beside its tolerance.
@@ -76,10 +97,7 @@ func (t *table) readings() []Reading {
 	v, there := t.ask("readings")
 	items, fits := v.([]any)
 	switch {
-	case !there:
-		t.fail("readings", "is missing", "write readings = [ "+readingExample+", ... ]")
-		return nil
-	case !fits:
+	case there && !fits:
 		t.fail("readings", "is "+kindOf(v)+", not a list", "write readings = [ "+readingExample+", ... ]")
 		return nil
 	case len(items) > mostReadings:
@@ -103,12 +121,7 @@ func (t *table) readings() []Reading {
 
 // reading reads one reading.
 func (t *table) reading() Reading {
-	r := Reading{Line: t.doc.lines[t.path]}
-	if _, there := t.values["pins"]; !there {
-		t.ask("pins")
-		t.doc.fail(t.path, t.label+": pins is missing", "write "+readingExample)
-	}
-	r.Pins, r.Joined = t.pair("pins"), t.pair("joined")
+	r := Reading{Line: t.doc.lines[t.path], Pins: t.pair("pins"), Joined: t.pair("joined")}
 	if r.Pins != [2]string{} && samePins(r.Pins, r.Joined) {
 		t.fail("joined", "are the pins that the meter is on", "it can read nothing there but the join; name the pins of the other end")
 	}
@@ -142,12 +155,11 @@ func (t *table) pair(key string) [2]string {
 	return nodes
 }
 
-// readOhms reads what the meter showed.
+// readOhms reads what the meter showed, NaN if it is left out.
 func (t *table) readOhms() float64 {
 	v, there := t.ask("ohms")
 	if !there {
-		t.doc.fail(t.path, t.label+": ohms is missing", `write what the meter read, ohms = 330, or ohms = "open"`)
-		return 0
+		return math.NaN()
 	}
 	text, isText := v.(string)
 	if x, isNumber := asFloat(v); isNumber {
