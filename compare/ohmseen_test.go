@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"testing"
 
@@ -164,7 +165,7 @@ func faultyPads(t *testing.T) map[*network.Circuit][]network.Fault {
 	return all
 }
 
-// A unit with a fault, read with the meter at some pairs of pins, does not pass
+// A unit with a fault, read with the meter where it does not show, does not pass
 // where it breaks the limit.
 func TestReadingsNeverPassAFault(t *testing.T) {
 	const units = 4 // of each fault
@@ -174,7 +175,8 @@ func TestReadingsNeverPassAFault(t *testing.T) {
 		for _, f := range faults {
 			for range units {
 				unit := f.Apply(sound.Sample(rng))
-				k, limit := readCase(sound, unit, rng, 0.5)
+				k, limit := readCase(sound, unit, rng, 0.7)
+				k.Ohms = slices.DeleteFunc(k.Ohms, func(s OhmSeen) bool { return !s.Fits(sound) })
 				judgedUnits++
 				if passes(t, k, limit) && !limit.Holds(unit.LossDB(k.Service, toneHz)) {
 					broke++
