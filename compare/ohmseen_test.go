@@ -175,7 +175,7 @@ func TestReadingsNeverPassAFault(t *testing.T) {
 		for _, f := range faults {
 			for range units {
 				unit := f.Apply(sound.Sample(rng))
-				k, limit := readCase(sound, unit, rng, 0.7)
+				k, limit := readCase(sound, unit, rng, 0.7, 0.3)
 				k.Ohms = slices.DeleteFunc(k.Ohms, func(s OhmSeen) bool { return !s.Fits(sound) })
 				judgedUnits++
 				if passes(t, k, limit) && !limit.Holds(unit.LossDB(k.Service, toneHz)) {
@@ -198,7 +198,7 @@ func TestSoundUnitsPassWithReadings(t *testing.T) {
 	for sound := range faultyPads(t) {
 		passed, without := 0, 0
 		for range units {
-			k, limit := readCase(sound, sound.Sample(rng), rng, 1)
+			k, limit := readCase(sound, sound.Sample(rng), rng, 1, 0.5)
 			if passes(t, k, limit) {
 				passed++
 			}
@@ -215,7 +215,7 @@ func TestSoundUnitsPassWithReadings(t *testing.T) {
 
 // readCase is a unit between the ends of a bench and, each with that chance, at
 // every pair of pins.
-func readCase(sound, unit *network.Circuit, rng *rand.Rand, chance float64) (LossCase, Limit) {
+func readCase(sound, unit *network.Circuit, rng *rand.Rand, chance, halfDB float64) (LossCase, Limit) {
 	bench, service := network.Ends{SourceOhms: 100, LoadOhms: 10000}, network.Ends{SourceOhms: 600, LoadOhms: 600}
 	if sound.Unbalanced() {
 		bench, service = unbalanced(100, 10000), unbalanced(600, 600)
@@ -226,7 +226,7 @@ func readCase(sound, unit *network.Circuit, rng *rand.Rand, chance float64) (Los
 			k.Ohms = append(k.Ohms, misread(unit, r, rng))
 		}
 	}
-	return k, PlusMinus(sound.LossDB(service, toneHz), 0.5)
+	return k, PlusMinus(sound.LossDB(service, toneHz), halfDB)
 }
 
 // passes is the verdict with all that speaks against a PASS.
