@@ -109,10 +109,7 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 		files = append(files, t.File)
 	}
 	names := joinedWords(files)
-	unit := "a sound unit"
-	if len(r.Faults) > 0 {
-		unit = "a unit with " + strings.Join(r.Faults, " and ")
-	}
+	unit := faultsText(r.Faults)
 	if r.Varied {
 		unit += ", drawn from its tolerances"
 	}
@@ -141,6 +138,26 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 	lines = append(lines, "Next: padproof check "+quoteForShell(r.Folder))
 	_, err := fmt.Fprintln(w, strings.Join(lines, "\n"))
 	return err
+}
+
+// faultsText is the unit in words, and the bench where that is not as stated.
+func faultsText(faults []string) string {
+	var ofUnit, ofBench []string
+	for _, text := range faults {
+		if _, isEnd, _ := network.ParseEndFault(text); isEnd {
+			ofBench = append(ofBench, text)
+		} else {
+			ofUnit = append(ofUnit, text)
+		}
+	}
+	unit := "a sound unit"
+	if len(ofUnit) > 0 {
+		unit = "a unit with " + strings.Join(ofUnit, " and ")
+	}
+	if len(ofBench) > 0 {
+		unit += ", on a bench with " + strings.Join(ofBench, " and ")
+	}
+	return unit
 }
 
 // joinedWords are words for a sentence: "a, b and c".
