@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
 	"padproof/compare/suspect"
@@ -12,9 +13,11 @@ import (
 
 // Options are what the caller settles beside the unit's files.
 type Options struct {
-	Channel int    // the channel that holds the tone, from 1; 0: find it
-	Mark    *Mark  // no drawing: what is marked on the pad
-	Played  string // a WAV that was played instead of the test signal; "" where none
+	Channel int             // the channel that holds the tone, from 1; 0: find it
+	Mark    *Mark           // no drawing: what is marked on the pad
+	Played  string          // a WAV that was played instead of the test signal; "" where none
+	Ohms    []sheet.Reading // ohmmeter readings beside those of the unit's own sheet
+	Meter   Meter           // that took them
 
 	Shared  *Shared // keeps what takes that serve several units have shown; nil: nothing is kept
 	Workers int     // takes read at once; 0: two
@@ -34,6 +37,9 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	}
 	defer ts.close()
 	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d), voids: map[string]bool{}}
+	if err := c.readOhms(u, o); err != nil {
+		return nil, err
+	}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
@@ -58,11 +64,12 @@ type check struct {
 	takes    *takes
 	mark     *Mark
 	played   string
-	found    scale            // what dBFS stand for
-	findings findings         // kept for the search of what is wrong
-	voids    map[string]bool  // checks that a problem of their takes voids
-	ranking  *suspect.Ranking // nil where nothing was sought
-	judged   *judgedLoss      // nil where the loss was not held against the drawing
+	ohms     []compare.OhmSeen // readings of an ohmmeter
+	found    scale             // what dBFS stand for
+	findings findings          // kept for the search of what is wrong
+	voids    map[string]bool   // checks that a problem of their takes voids
+	ranking  *suspect.Ranking  // nil where nothing was sought
+	judged   *judgedLoss       // nil where the loss was not held against the drawing
 	answer   *result.Answer
 }
 

@@ -51,6 +51,9 @@ func (c *check) evidence() suspect.Evidence {
 	if f.hum != nil && c.stands("hum") {
 		e.Hum = &suspect.Hum{UnitDBu: f.hum.Measured, RigDBu: f.hum.RigDBu, UDB: f.hum.UDB}
 	}
+	for _, o := range c.ohms {
+		e.Ohms = append(e.Ohms, suspect.Ohms{PinA: o.PinA, PinB: o.PinB, Joined: o.Joined, Ohms: o.Ohms, TolFrac: o.TolFrac, PlusOhms: o.PlusOhms})
+	}
 	return e
 }
 

@@ -100,7 +100,7 @@ func (d *Drawing) designedDB(freqHz float64) float64 {
 
 // drawnCheck holds the reading against the drawing.
 func (c *check) drawnCheck(reading compare.LossReading) (result.Check, []result.Term, error) {
-	k := compare.LossCase{Circuit: c.Circuit, Rig: c.Rig, Service: c.Service, Reading: reading}
+	k := compare.LossCase{Circuit: c.Circuit, Rig: c.Rig, Service: c.Service, Reading: reading, Ohms: c.ohms}
 	loss, err := compare.JudgeLoss(k)
 	if err != nil {
 		return result.Check{}, nil, err

@@ -16,6 +16,7 @@ func AnswerText(w io.Writer, a *result.Answer, verbose bool) error {
 	verdict(p, a)
 	checks(p, a)
 	tones(p, a)
+	ohmsSeen(p, a)
 	problems(p, a)
 	suspects(p, a)
 	rework(p, a)

@@ -27,7 +27,7 @@ func suspects(p *page, a *result.Answer) {
 	}
 	if len(a.Suspects) > 0 {
 		p.item("  -  ", fmt.Sprintf("None of these, weight %s.", fixed(*a.Unexplained, 2)))
-		p.item("  ", "Weights add up to 1 over all faults looked at; small ones are left out. Before an ohmmeter goes on: "+result.OhmsCaution+" Then run the check again with --ohms.")
+		p.item("  ", "Weights add up to 1 over all faults looked at; small ones are left out. To take a reading: "+lower(result.OhmCaution)+"; then check again with --ohms.")
 	}
 }
 
@@ -60,6 +60,14 @@ func predicted(s result.Suspect) string {
 		text += ", " + fixed(service, 2) + " dB in service"
 	}
 	return text
+}
+
+// lower takes a text into a sentence.
+func lower(text string) string {
+	if text == "" {
+		return text
+	}
+	return strings.ToLower(text[:1]) + text[1:]
 }
 
 // capital begins a sentence.

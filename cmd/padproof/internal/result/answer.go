@@ -20,6 +20,7 @@ type Answer struct {
 	WithoutDrawing []Likelihood `json:"without_drawing"`
 
 	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
+	Ohms      []OhmSeen `json:"ohms,omitempty"`  // ohmmeter readings taken
 	Simulated bool      `json:"simulated"`
 	Found     *Found    `json:"found,omitempty"`
 	Budget    []Term    `json:"budget"`
@@ -140,6 +141,20 @@ type Confirm struct {
 type Unseen struct {
 	Part string `json:"part"`
 	Text string `json:"text"`
+}
+
+// An OhmSeen is an ohmmeter reading that was taken, beside what the same meter may
+// show on a sound unit. Ohms and GoodHigh are null for an open circuit.
+type OhmSeen struct {
+	Pins      []string `json:"pins"`
+	Joined    []string `json:"joined"` // pins that were joined meanwhile
+	Ohms      Number   `json:"ohms"`
+	GoodLow   Number   `json:"good_low"`
+	GoodHigh  Number   `json:"good_high"`
+	MeterTol  Number   `json:"meter_tolerance"` // fraction of the reading
+	MeterPlus Number   `json:"meter_plus_ohms"`
+	Agrees    bool     `json:"agrees"` // a sound unit can show it
+	Text      string   `json:"text"`
 }
 
 // Found is what the takes told of the rig itself, with expanded uncertainty.
