@@ -65,9 +65,9 @@ func bestReading(sound, wrong *network.Circuit, taken []OhmSeen) OhmReading {
 	return best
 }
 
-// OhmsText is a resistance with three digits and its unit; "open" where it has no
+// OhmsText is a resistance with four digits, as a meter has them, and its unit; "open" where it has no
 // end.
-func OhmsText(ohms float64) string { return partValue(network.Resistor, ohms) }
+func OhmsText(ohms float64) string { return valueTo(network.Resistor, ohms, 4) }
 
 // readingChange is how far two readings lie apart on a meter: the logarithm of
 // their ratio, an open counting as 10 megohms and a short as 0.1 ohm.

@@ -58,12 +58,20 @@ func suspectOf(s suspect.Suspect, carried bool) result.Suspect {
 	if !math.IsNaN(s.DriftFrac) {
 		one.ByPercent, one.ByPercentU = result.NumberOf(100*s.DriftFrac), result.NumberOf(200*s.DriftStdU)
 	}
-	one.Confirm = confirmOf(s.Confirm)
+	one.Confirm = confirmOf(s.Confirm, firstName(names))
 	return one
 }
 
+// firstName is the fault that a reading is for, in a sentence.
+func firstName(names []string) string {
+	if len(names) > 1 {
+		return "one with " + names[0]
+	}
+	return "this fault"
+}
+
 // confirmOf is the reading that tells a suspect, in the form of the result.
-func confirmOf(c suspect.Confirm) result.Confirm {
+func confirmOf(c suspect.Confirm, name string) result.Confirm {
 	r := c.Reading
 	if r.PinA == "" {
 		return result.Confirm{Pins: []string{}, GoodOhms: result.Missing, FaultOhms: result.Missing,
@@ -79,7 +87,7 @@ func confirmOf(c suspect.Confirm) result.Confirm {
 	if !math.IsNaN(c.NextOhms) {
 		one.NextOhms = result.NumberOf(c.NextOhms)
 	}
-	one.How = fmt.Sprintf("read %s: a sound unit reads %s, this fault %s", r.How(), compare.OhmsText(r.GoodOhms), compare.OhmsText(r.WrongOhms))
+	one.How = fmt.Sprintf("read %s: a sound unit reads %s, %s %s", r.How(), compare.OhmsText(r.GoodOhms), name, compare.OhmsText(r.WrongOhms))
 	if one.NextOhms != nil {
 		one.How += ", the next suspect " + compare.OhmsText(c.NextOhms)
 	}

@@ -31,12 +31,13 @@ func suspects(p *page, a *result.Answer) {
 	}
 }
 
-// suspectName is the fault, and how far it is off where that is an estimate.
+// suspectName is the fault, and how far it is off where that is an estimate of one
+// fault alone.
 func suspectName(s result.Suspect) string {
-	if s.ByPercent == nil || s.ByPercentU == nil || !s.ByPercent.OK() || !s.ByPercentU.OK() {
+	if strings.Contains(s.Fault, " or ") || s.ByPercent == nil || s.ByPercentU == nil || !s.ByPercent.OK() || !s.ByPercentU.OK() {
 		return s.Fault
 	}
-	return fmt.Sprintf("%s (by %s %% ± %s %%)", s.Fault, withSign(*s.ByPercent), toDigits(float64(*s.ByPercentU), 2))
+	return fmt.Sprintf("%s (%s %% ± %s %%)", s.Fault, withSign(*s.ByPercent), toDigits(float64(*s.ByPercentU), 2))
 }
 
 func withSign(n result.Number) string {
@@ -52,9 +53,13 @@ func predicted(s result.Suspect) string {
 	if !known {
 		return ""
 	}
-	text := ": it would let nothing through"
+	it := "it"
+	if strings.Contains(s.Fault, " or ") {
+		it = "the first"
+	}
+	text := ": " + it + " would let nothing through"
 	if loss.OK() {
-		text = ": it would read " + fixed(loss, 2) + " dB here"
+		text = ": " + it + " would read " + fixed(loss, 2) + " dB here"
 	}
 	if service, carried := s.Predicted["service_loss_db"]; carried && service.OK() {
 		text += ", " + fixed(service, 2) + " dB in service"
