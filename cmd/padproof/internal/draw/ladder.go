@@ -118,6 +118,7 @@ func (l *ladder) enter(p result.DrawnPart) bool {
 	if l.row[a] > l.row[b] || l.row[a] == l.row[b] && l.col[a] > l.col[b] {
 		a, b = b, a
 	}
+	p.A, p.B = a, b // as it is drawn: from left to right, from the top down
 	switch {
 	case l.row[a] == l.row[b]:
 		return l.enterRun(p, a, b)
@@ -167,7 +168,7 @@ func (l *ladder) stand() {
 		for len(c.widths) <= u.slot {
 			c.widths = append(c.widths, 0)
 		}
-		width := bodyWidth/2 + 19 + textWidth(u.part, l.marked[u.part.Ref])
+		width := bodyWidth/2 + 22 + textWidth(u.part, l.marked[u.part.Ref])
 		if l.marked[u.part.Ref] {
 			width += 6
 		}

@@ -45,7 +45,7 @@ func levelFrame(a *result.Answer) *frame {
 	widest := math.Max(mostLevelDB, reach.high)
 	for _, c := range a.Curves.Level {
 		for _, at := range numbers(c.AtSec) {
-			if !math.IsNaN(at) && !math.IsInf(at, 0) {
+			if math.Abs(at) <= furthestX {
 				time.low, time.high = math.Min(time.low, at), math.Max(time.high, at)
 			}
 		}
