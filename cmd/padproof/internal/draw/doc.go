@@ -23,7 +23,8 @@
 //
 // # Limits
 //
-// Text in an SVG is text, in whatever sans serif font the reader has, metric
-// like Liberation Sans, by which it was set out; PNG and PDF hold that font. A
-// PDF shows a question mark for a character outside Windows-1252.
+// Text in an SVG is text, in Liberation Sans, Arial, Helvetica or whatever sans
+// serif font the reader has, each text as wide as in the first, by which pictures
+// are set out. PNG and PDF hold that font; a character that it lacks, a picture
+// sign in a name say, is shown there as an empty box or a question mark.
 package draw

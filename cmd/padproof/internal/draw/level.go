@@ -106,7 +106,7 @@ func levelSays(a *result.Answer) string {
 	if c == nil || !c.Measured.OK() {
 		return "The level of the tone against time, held against the two seconds before."
 	}
-	says := "The level of the tone departs by " + atMost(c.Measured, c.Uncertainty) + " dB at the most from that of the two seconds before"
+	says := "The level of the tone departs by " + largest(c.Measured, c.Uncertainty) + " from that of the two seconds before"
 	if c.From != "" && c.AtSec != nil && c.AtSec.OK() {
 		says += " (" + c.From + ", at " + fixed(*c.AtSec, 1) + " s)"
 	}

@@ -155,15 +155,3 @@ func TestSizes(t *testing.T) {
 		t.Error("a picture was written as gif")
 	}
 }
-
-// The characters of Windows-1252 that the words of pictures use, by its table
-// (the Unicode Consortium's CP1252.TXT).
-func TestWindows1252(t *testing.T) {
-	for text, want := range map[string]string{
-		"±0.2 dB": "\xb10.2 dB", "180°": "180\xb0", "µ": "\xb5", "a…": "a\x85", "–": "\x96", "10 kΩ": "10 kohm", "R✂": "R?", "é": "\xe9",
-	} {
-		if got := windows1252(text); got != want {
-			t.Errorf("windows1252(%q) = %q, want %q", text, got, want)
-		}
-	}
-}
