@@ -94,7 +94,7 @@ func (y symbol) draw(s *sheet) {
 }
 
 // body draws the symbol itself: a rectangle, two plates or four half turns (IEC
-// 60617: 04-01-01, 04-02-01, 04-03-01).
+// 60617, from memory).
 func (y symbol) body(s *sheet, l look, along, across vg.Point) {
 	at := func(a, c vg.Length) vg.Point { return y.middle.Add(along.Scale(a)).Add(across.Scale(c)) }
 	switch y.part.Kind {
