@@ -44,8 +44,7 @@ const (
 // Blocks that do not lie wholly between them, 0.03 s from either end for the edges, are left out.
 func Steady(t *Track, tone Tone, fromSec, toSec float64) Steadiness {
 	v := newView(t, tone)
-	v.from = max(0, int(math.Ceil((fromSec+insetSec)/t.HopSec)))
-	v.to = min(t.Len(), int(math.Floor((toSec-insetSec)/t.HopSec))-1)
+	v.between(fromSec, toSec)
 	s := Steadiness{FromSec: fromSec, ToSec: toSec}
 	if v.to-v.from < leastBlocks || !v.settled() {
 		return s
@@ -116,6 +115,12 @@ func (v *view) block(b int) complex128 {
 	return complex128(v.t.blocks[b]) * cmplx.Rect(1, 2*math.Pi*offHz*v.t.MiddleSec(b))
 }
 
+// between takes the blocks that lie wholly between two times.
+func (v *view) between(fromSec, toSec float64) {
+	v.from = max(0, int(math.Ceil((fromSec+insetSec)/v.t.HopSec)))
+	v.to = min(v.t.Len(), int(math.Floor((toSec-insetSec)/v.t.HopSec))-1)
+}
+
 // settled sets the running medians up with what the first two seconds hold; false where there is
 // no tone in them.
 func (v *view) settled() bool {
@@ -131,16 +136,23 @@ func (v *view) settled() bool {
 // levels goes through the blocks and notes where their level departs.
 func (v *view) levels(s *Steadiness) {
 	leastDB := math.Max(leastEventDB, eventSigmas*v.sigmaDB())
-	for b := v.from; b < v.to; b++ {
-		a, usual := cmplx.Abs(v.block(b)), v.usual.median()
-		departDB := math.Max(-deepestDB, math.Min(deepestDB, DBFromRatio(a/usual)))
+	v.eachDeparture(func(b int, departDB float64, lost bool) {
 		if size := math.Abs(departDB); size > s.LargestDB {
 			s.LargestDB, s.AtSec = size, v.t.MiddleSec(b)
 		}
-		lost := a < lostFrac*usual
+		a, usual := cmplx.Abs(v.block(b)), v.usual.median()
 		if math.Abs(departDB) > leastDB && math.Abs(a-usual) > eventSigmas*v.usual.scatter() {
 			v.excursions = grown(v.excursions, b, departDB, lost)
 		}
+	})
+}
+
+// eachDeparture gives the departure of each block from the running median, which it moves on.
+func (v *view) eachDeparture(yield func(b int, departDB float64, lost bool)) {
+	for b := v.from; b < v.to; b++ {
+		a, usual := cmplx.Abs(v.block(b)), v.usual.median()
+		lost := a < lostFrac*usual
+		yield(b, math.Max(-deepestDB, math.Min(deepestDB, DBFromRatio(a/usual))), lost)
 		if !lost && b >= v.from+runningBlocks {
 			v.usual.turn(a)
 		}

@@ -3,6 +3,7 @@ package main
 import (
 	"github.com/spf13/cobra"
 
+	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/unit"
@@ -22,6 +23,7 @@ type checkFlags struct {
 	ohms        []string
 	meterTol    string
 	meterPlus   float64
+	plots       string
 }
 
 func newCheck() *cobra.Command {
@@ -90,6 +92,7 @@ no sound unit shows keeps the loss from a PASS.`,
 	flags.Float64Var(&f.markedOhms, "marked-ohms", 0, "no drawing: the impedance marked on the pad")
 	flags.BoolVar(&f.onThisBench, "on-this-bench", false, "no drawing: the mark is what this bench should read")
 	flags.BoolVarP(&f.verbose, "verbose", "v", false, "add the takes and the uncertainty budget")
+	addPlots(cmd, &f.plots)
 	return cmd
 }
 
@@ -104,6 +107,9 @@ func runCheck(cmd *cobra.Command, args []string, f checkFlags) error {
 	}
 	answer, err := proof.Check(u, options)
 	if err != nil {
+		return inUnit(u.Serial, err)
+	}
+	if err := writePlots(cmd, f.plots, func() []*draw.Picture { return draw.OfAnswer(answer) }); err != nil {
 		return inUnit(u.Serial, err)
 	}
 	if wantsJSON(cmd) {
@@ -165,7 +171,7 @@ func (f checkFlags) unit(cmd *cobra.Command, args []string) (*unit.Unit, error) 
 }
 
 func (f checkFlags) options(cmd *cobra.Command) (proof.Options, error) {
-	o := proof.Options{Channel: f.channel, Played: f.played}
+	o := proof.Options{Channel: f.channel, Played: f.played, Curves: f.plots != ""}
 	given := cmd.Flags().Changed
 	if err := f.readings(cmd, &o); err != nil {
 		return o, err

@@ -3,6 +3,7 @@ package main
 import (
 	"github.com/spf13/cobra"
 
+	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 )
@@ -11,6 +12,7 @@ import (
 type predictFlags struct {
 	pad, rig string
 	verbose  bool
+	plots    string
 	options  proof.PredictOptions
 }
 
@@ -40,6 +42,7 @@ recordings to make.`,
 	flags.Float64Var(&f.options.InputDBu, "input-dbu", f.options.InputDBu, "level into the pad, for what the parts dissipate")
 	flags.Float64Var(&f.options.PhantomMA, "phantom-ma", f.options.PhantomMA, "current drawn from phantom power, both legs together")
 	flags.BoolVarP(&f.verbose, "verbose", "v", false, "add the uncertainty budget")
+	addPlots(cmd, &f.plots)
 	_ = cmd.MarkFlagFilename("pad", "toml")
 	_ = cmd.MarkFlagFilename("rig", "toml")
 	return cmd
@@ -60,8 +63,12 @@ func runPredict(cmd *cobra.Command, f predictFlags) error {
 	if err != nil {
 		return err
 	}
+	f.options.Curves = f.plots != ""
 	prediction, err := proof.Predict(drawing, f.options)
 	if err != nil {
+		return err
+	}
+	if err := writePlots(cmd, f.plots, func() []*draw.Picture { return draw.OfPrediction(prediction) }); err != nil {
 		return err
 	}
 	if wantsJSON(cmd) {

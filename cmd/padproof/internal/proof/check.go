@@ -18,6 +18,7 @@ type Options struct {
 	Played  string          // a WAV that was played instead of the test signal; "" where none
 	Ohms    []sheet.Reading // ohmmeter readings beside those of the unit's own sheet
 	Meter   Meter           // that took them
+	Curves  bool            // fill Answer.Curves, which pictures are drawn from
 
 	Shared  *Shared // keeps what takes that serve several units have shown; nil: nothing is kept
 	Workers int     // takes read at once; 0: two
@@ -36,7 +37,7 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 		return nil, err
 	}
 	defer ts.close()
-	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d), voids: map[string]bool{}}
+	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d, o.Mark), voids: map[string]bool{}}
 	if err := c.readOhms(u, o); err != nil {
 		return nil, err
 	}
@@ -49,7 +50,11 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err := c.judge(); err != nil {
 		return nil, err
 	}
-	return c.finish(u), nil
+	answer := c.finish(u)
+	if o.Curves {
+		answer.Curves = c.curves()
+	}
+	return answer, nil
 }
 
 // reads is what of the rig tells on how takes are read.
@@ -73,7 +78,7 @@ type check struct {
 	answer   *result.Answer
 }
 
-func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
+func newAnswer(u *unit.Unit, d *Drawing, mark *Mark) *result.Answer {
 	a := &result.Answer{
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
@@ -81,6 +86,9 @@ func newAnswer(u *unit.Unit, d *Drawing) *result.Answer {
 		Budget: []result.Term{}, Captures: []result.Capture{},
 		Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
+	}
+	if mark == nil {
+		a.Drawing = drawnOf(d.Circuit)
 	}
 	if d.Service != d.Rig.Ends {
 		a.ServiceEnds = endsOf(d.Service)

@@ -29,10 +29,7 @@ func (c *check) noise() error {
 		c.lacksNoise(over, level, pad)
 		return nil
 	}
-	k := compare.NoiseCase{Circuit: c.Circuit, Bench: c.noiseBench(), PadNoise: pad.noise}
-	if rig != nil {
-		k.RigNoise = rig.noise
-	}
+	k := c.noiseCase(pad, rig)
 	c.answer.Assumed = append(c.answer.Assumed, fmt.Sprintf("the plugs of the noise takes within ±%.0f %%", 100*plugTolFrac))
 	n, err := compare.JudgeNoise(k)
 	if err != nil {
@@ -51,6 +48,14 @@ func (c *check) noise() error {
 		c.addNoise("noise-level", "dBu", n, n.Level, verdict, reason, level, n.ExpectedDBu)
 	}
 	return nil
+}
+
+func (c *check) noiseCase(pad, rig *take) compare.NoiseCase {
+	k := compare.NoiseCase{Circuit: c.Circuit, Bench: c.noiseBench(), PadNoise: pad.noise}
+	if rig != nil {
+		k.RigNoise = rig.noise
+	}
+	return k
 }
 
 // lacksNoise is where a limit is set and there is nothing to judge it by.

@@ -24,6 +24,7 @@ type PredictOptions struct {
 	ToneHz    float64 // the tone the loss is for
 	InputDBu  float64 // level at the pad's input, for the dissipation
 	PhantomMA float64 // current drawn through the pad from a phantom supply
+	Curves    bool    // fill Condition.Curve, which the picture is drawn from
 }
 
 // DefaultPredict is the tone of the test signal, a loud line level and the
@@ -47,6 +48,10 @@ func Predict(d *Drawing, o PredictOptions) (*result.Prediction, error) {
 		Assumed:    d.assumed(),
 		Warnings:   warnings(d, o.ToneHz),
 		Cautions:   result.Cautions,
+		Drawing:    drawnOf(c),
+	}
+	if o.Curves {
+		p.Bench.Curve, p.Service.Curve = spreadCurve(c, d.Rig.Ends), spreadCurve(c, d.Service)
 	}
 	return p, d.foretell(p, o.ToneHz)
 }

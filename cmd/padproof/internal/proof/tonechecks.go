@@ -147,13 +147,7 @@ func (c *check) legs() error {
 	}
 	hotTone, coldTone := legsOf(hot, cold)
 	hot.problems = append(hot.problems, compare.LegsProblems(hot.facts.Channels, hotTone.Tone, coldTone.Tone, silent(hot), silent(cold))...)
-	k := compare.LegsCase{
-		Circuit: c.Circuit, Rig: c.Rig, LegsLoadOhms: c.Sheet.LegsLoadOhms(c.Circuit.Unbalanced()),
-		Hot: hotTone, Cold: coldTone,
-		StraightHot: c.takes.again(unit.LegsBefore), StraightCold: c.takes.again(second(unit.LegsBefore)),
-		ChannelMatchDB: c.Sheet.Calibration.ChannelMatchDB, LinearityDB: c.Gains.LinearityDB, Limit: limit, Rule: c.Rule,
-	}
-	f, err := compare.JudgeLegs(k)
+	f, err := compare.JudgeLegs(c.legsCase(hotTone, coldTone, limit))
 	if err != nil {
 		return err
 	}
@@ -174,6 +168,15 @@ func (c *check) legs() error {
 	straight, through := c.takes.pair()
 	c.add(one, terms, hot, before, riding(straight), riding(through))
 	return nil
+}
+
+func (c *check) legsCase(hot, cold compare.Leg, limit compare.Limit) compare.LegsCase {
+	return compare.LegsCase{
+		Circuit: c.Circuit, Rig: c.Rig, LegsLoadOhms: c.Sheet.LegsLoadOhms(c.Circuit.Unbalanced()),
+		Hot: hot, Cold: cold,
+		StraightHot: c.takes.again(unit.LegsBefore), StraightCold: c.takes.again(second(unit.LegsBefore)),
+		ChannelMatchDB: c.Sheet.Calibration.ChannelMatchDB, LinearityDB: c.Gains.LinearityDB, Limit: limit, Rule: c.Rule,
+	}
 }
 
 // legsOf are the two channels of a take of legs, at one tone: the hot leg's, or

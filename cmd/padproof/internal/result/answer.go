@@ -32,6 +32,9 @@ type Answer struct {
 
 	BenchEnds   *Ends `json:"bench_ends,omitempty"`
 	ServiceEnds *Ends `json:"service_ends,omitempty"`
+
+	Drawing *Drawing `json:"drawing,omitempty"` // nil where there is none
+	Curves  *Curves  `json:"curves,omitempty"`  // only where they were asked for
 }
 
 // Ends are the impedances and the wiring a pad stands between.

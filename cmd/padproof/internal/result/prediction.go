@@ -32,6 +32,8 @@ type Prediction struct {
 	Assumed  []string `json:"assumed"`
 	Warnings []string `json:"warnings"`
 	Cautions []string `json:"cautions"`
+
+	Drawing *Drawing `json:"drawing,omitempty"`
 }
 
 // A Condition is the pad between one source and one load.
@@ -42,6 +44,8 @@ type Condition struct {
 	InputOhms  Number  `json:"input_ohms"`  // magnitude, at the tone, load on
 	OutputOhms Number  `json:"output_ohms"` // magnitude, at the tone, source on
 	Response   []Point `json:"response"`
+
+	Curve []SpreadPoint `json:"curve,omitempty"` // third-octave points; only where it was asked for
 }
 
 // A Point is the loss at one frequency.
