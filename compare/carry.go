@@ -89,7 +89,7 @@ type fitting struct {
 
 // valuesThatFit moves one part alone from 0 to infinity and keeps the values
 // that explain the bench loss within the doubt of the reading, of the rig and of
-// the other parts. That doubt is the one of the circuit with the value in it: a
+// the other parts, and that no ohmmeter reading contradicts. That doubt is the one of the circuit with the value in it: a
 // wrong part may make rig and other parts weigh far more than on the drawing.
 // uDB is the expanded uncertainty of the bench loss on the drawing; believedDB is
 // a deviation that counts as within the tolerances for a sound unit, and must
@@ -104,7 +104,11 @@ func (k LossCase) valuesThatFit(index int, benchDB, uDB, believedDB float64) []f
 	w := width{own, factor, believedDB}
 	nominal := uDB + math.Max(believedDB, othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, index))
 	var fits []fitting
-	for _, value := range k.candidates(part, benchDB, nominal) {
+	read := k.readAllows(part)
+	for _, value := range k.candidates(part, benchDB, nominal, read) {
+		if !read.holds(value) || !k.readAllowsAt(part, value) {
+			continue
+		}
 		if f, ok := k.fit(index, value, benchDB, w); ok {
 			fits = append(fits, f)
 		}
@@ -149,8 +153,9 @@ func (k LossCase) fit(index int, value, benchDB float64, w width) (fitting, bool
 }
 
 // candidates are the values that are tried: 0 and infinity, six a decade around
-// the nominal one, and those at which the drawing's own doubt would end.
-func (k LossCase) candidates(part network.Part, benchDB, widthDB float64) []float64 {
+// the nominal one, those at which the drawing's own doubt would end, and those at
+// which the ohmmeter readings' would.
+func (k LossCase) candidates(part network.Part, benchDB, widthDB float64, read values) []float64 {
 	nominal := part.Value
 	if nominal <= 0 || math.IsInf(nominal, 0) {
 		nominal = 1
@@ -161,13 +166,22 @@ func (k LossCase) candidates(part network.Part, benchDB, widthDB float64) []floa
 		values = append(values, nominal*math.Pow(10, float64(i)/perDecade))
 	}
 	for _, span := range k.Circuit.ValuesForLoss(k.Rig.Ends, k.Reading.FreqHz, part.Ref, benchDB-widthDB, benchDB+widthDB) {
-		values = append(values, span.Low, span.High)
-		if span.Low > 0 && !math.IsInf(span.High, 0) {
-			for i := 1; i < 8; i++ {
-				values = append(values, span.Low*math.Pow(span.High/span.Low, float64(i)/8))
-			}
-		}
+		values = append(values, steps(span.Low, span.High)...)
+	}
+	if len(k.Ohms) > 0 && read.low <= read.high {
+		values = append(values, steps(read.low, read.high)...)
 	}
 	slices.Sort(values)
 	return slices.Compact(values)
+}
+
+// steps are both ends of a range of values, and seven between where it has ends.
+func steps(low, high float64) []float64 {
+	all := []float64{low, high}
+	if low > 0 && !math.IsInf(high, 0) {
+		for i := 1; i < 8; i++ {
+			all = append(all, low*math.Pow(high/low, float64(i)/8))
+		}
+	}
+	return all
 }

@@ -25,6 +25,13 @@
 // shows by [AgainProblems] and [BothProblems]. [FindSource] and [FindFullScale]
 // tell the rig's own figures from takes, with the lines for rig.toml.
 //
+// [Readings] lists where to put an ohmmeter, [OhmReading.Band] what a sound unit
+// reads there. Readings that were taken ([OhmSeen]) go into the [LossCase]: what
+// they contradict explains no loss and is no longer unseen, and
+// [LossCase.OhmDoubt] says where they speak against a PASS. A value is
+// contradicted only where neither the meter's doubt nor any values of the other
+// parts within their tolerances could give the reading.
+//
 // # Units and signs
 //
 // A loss is in decibels, positive where the output is lower: 20 lg of the load

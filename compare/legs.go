@@ -40,6 +40,8 @@ type LegsFinding struct {
 	DrawnDB   float64 // hot over cold as the drawing gives it
 	PhaseDeg  float64 // hot against cold beyond what the drawing gives, -180 to 180; NaN where unknown
 	PhaseUDeg float64 // expanded
+
+	ReadingStdUDB float64 // standard uncertainty of Measured without the rig's source and loads
 }
 
 const (
@@ -84,11 +86,24 @@ func JudgeLegs(c LegsCase) (LegsFinding, error) {
 	f.PhaseDeg = math.Remainder(turn, 2*math.Pi) * 180 / math.Pi
 	f.PhaseUDeg = c.phaseUDeg(m.calibrated)
 	f.Budget.Terms = m.terms()
+	f.ReadingStdUDB = readingStdU(f.Budget.Terms)
 	if err := f.Finding.decide(c.Rule); err != nil {
 		return f, err
 	}
 	f.judgePhase()
 	return f, nil
+}
+
+// readingStdU is the standard uncertainty of a reading by itself, without what the
+// rig's impedances bring.
+func readingStdU(terms []uncertainty.Term) float64 {
+	var own uncertainty.Budget
+	for _, t := range terms {
+		if t.Source != sourceSrc && t.Source != legLoadsSrc {
+			own.Terms = append(own.Terms, t)
+		}
+	}
+	return own.CombinedU()
 }
 
 func overDB(l network.Legs) float64 {
@@ -152,6 +167,7 @@ func (f *LegsFinding) deadLeg(m modelLegs) error {
 	f.Measured = sign*(live.Tone.LevelDBFS-dead.MostDBFS) - f.DrawnDB
 	m.calibrated = false
 	f.Budget.Terms = m.terms()
+	f.ReadingStdUDB = readingStdU(f.Budget.Terms)
 	if err := f.Finding.decide(c.Rule); err != nil {
 		return err
 	}

@@ -31,6 +31,7 @@ type LossCase struct {
 	Rig     Rig
 	Service network.Ends
 	Reading LossReading
+	Ohms    []OhmSeen // ohmmeter readings of the unit; they leave out what contradicts them
 }
 
 // A Loss is the bench reading carried over to service.
@@ -47,6 +48,10 @@ type Loss struct {
 	Beta    float64            // share of a bench deviation that carries over
 	Budget  uncertainty.Budget // of ServiceDB
 	Outside bool               // the bench deviation is more than the tolerances and U allow
+
+	// ReadOtherwise: the ohmmeter readings contradict every part and swap that would explain
+	// a bench loss outside the tolerances. ServiceDB is then what it is without the readings.
+	ReadOtherwise bool
 }
 
 // Coverage is the probability that U covers (JCGM 100).
@@ -59,7 +64,7 @@ const Coverage = 0.95
 //
 // and otherwise the middle of the range of service losses that any single part,
 // moved alone until it explains the bench loss within U, would give, or two
-// parts swapped, or no pad at all. Where nothing of the kind explains it, ServiceDB and UDB are NaN: the reading then proves
+// parts swapped, or no pad at all; what the ohmmeter readings contradict is left out. Where nothing of the kind explains it, ServiceDB and UDB are NaN: the reading then proves
 // nothing about service. A reading of NaN gives a ServiceDB of NaN.
 func JudgeLoss(k LossCase) (Loss, error) {
 	c, f := k.Circuit, k.Reading.FreqHz
@@ -103,6 +108,12 @@ const straightDB = 0.1
 // the culprit, so U holds the whole range and not 95 % of it.
 func judgeOutside(k LossCase, l Loss) (Loss, error) {
 	r := k.explain(l)
+	if r.lowDB > r.highDB && len(k.Ohms) > 0 {
+		without := k
+		without.Ohms = nil
+		r = without.explain(l)
+		l.ReadOtherwise = r.lowDB <= r.highDB
+	}
 	l.ServiceDB, l.UDB = math.NaN(), math.NaN()
 	if r.lowDB > r.highDB {
 		return l, nil

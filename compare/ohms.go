@@ -22,13 +22,41 @@ func (r OhmReading) On(c *network.Circuit) float64 {
 	return c.Ohms(r.PinA, r.PinB, r.Joined)
 }
 
+// Band is what units read whose parts keep to their tolerances; see
+// [network.Circuit.OhmExtremes].
+func (r OhmReading) Band(c *network.Circuit) (lowOhms, highOhms float64) {
+	least, most := c.OhmExtremes()
+	return r.On(least), r.On(most)
+}
+
+// same reports whether two readings are one: the same pins, and the same joined.
+func (r OhmReading) same(c *network.Circuit, s OhmReading) bool {
+	return samePair(c, [2]string{r.PinA, r.PinB}, [2]string{s.PinA, s.PinB}) && samePair(c, r.Joined, s.Joined)
+}
+
+// Shorted reports whether the joined pins are those that the meter is on.
+func (r OhmReading) Shorted(c *network.Circuit) bool {
+	return r.Joined != [2]string{} && !c.OneNode(r.Joined[0], r.Joined[1]) && samePair(c, [2]string{r.PinA, r.PinB}, r.Joined)
+}
+
+// samePair reports whether two pairs of names mean the same two nodes, in either
+// order. Two of one node join nothing, as if they were not there.
+func samePair(c *network.Circuit, p, q [2]string) bool {
+	if c.OneNode(p[0], p[1]) || c.OneNode(q[0], q[1]) {
+		return c.OneNode(p[0], p[1]) && c.OneNode(q[0], q[1])
+	}
+	return c.OneNode(p[0], q[0]) && c.OneNode(p[1], q[1]) || c.OneNode(p[0], q[1]) && c.OneNode(p[1], q[0])
+}
+
 // bestReading is the ohmmeter reading that moves most, as a ratio, between the
-// sound and the wrong circuit: between two pins, all others open, or with the
-// far end's pins joined.
-func bestReading(sound, wrong *network.Circuit) OhmReading {
+// sound and the wrong circuit, of those not taken yet.
+func bestReading(sound, wrong *network.Circuit, taken []OhmSeen) OhmReading {
 	var best OhmReading
 	most := 0.0
 	for _, r := range Readings(sound) {
+		if anyReading(sound, taken, r) {
+			continue
+		}
 		r.GoodOhms, r.WrongOhms = r.On(sound), r.On(wrong)
 		if change := readingChange(r.GoodOhms, r.WrongOhms); change > most {
 			best, most = r, change
@@ -36,6 +64,10 @@ func bestReading(sound, wrong *network.Circuit) OhmReading {
 	}
 	return best
 }
+
+// OhmsText is a resistance with four digits, as a meter has them, and its unit; "open" where it has no
+// end.
+func OhmsText(ohms float64) string { return valueTo(network.Resistor, ohms, 4) }
 
 // readingChange is how far two readings lie apart on a meter: the logarithm of
 // their ratio, an open counting as 10 megohms and a short as 0.1 ohm.
@@ -45,28 +77,85 @@ func readingChange(a, b float64) float64 {
 	return math.Abs(math.Log(clamp(a) / clamp(b)))
 }
 
-// Readings are the useful pairs of pins of a circuit, their ohms not filled in.
+// Readings are the useful pairs of pins of a circuit, their ohms not filled in:
+// across each end, along each leg and to screen with all else open, then again
+// with the far end joined. A joined reading that goes by the same parts in the
+// same way as one before it is left out. Inner nodes are not among them: nobody
+// reaches them in a closed box.
 func Readings(c *network.Circuit) []OhmReading {
-	hotIn, coldIn, hotOut, coldOut := "in.hot", "in.cold", "out.hot", "out.cold"
+	all, joined := plainReadings(c), joinedReadings(c)
+	apart := scattered(c)
+	for _, r := range joined {
+		if !readsLikeOne(apart, r, all) {
+			all = append(all, r)
+		}
+	}
+	return all
+}
+
+// Pins, as the lists below name them.
+const (
+	hotIn, coldIn   = "in.hot", "in.cold"
+	hotOut, coldOut = "out.hot", "out.cold"
+	screenPin       = "screen"
+)
+
+func plainReadings(c *network.Circuit) []OhmReading {
+	if !c.Balanced() {
+		return []OhmReading{{PinA: hotIn, PinB: screenPin}, {PinA: hotOut, PinB: screenPin}, {PinA: hotIn, PinB: hotOut}}
+	}
+	return []OhmReading{
+		{PinA: hotIn, PinB: coldIn}, {PinA: hotOut, PinB: coldOut},
+		{PinA: hotIn, PinB: hotOut}, {PinA: coldIn, PinB: coldOut},
+		{PinA: hotIn, PinB: screenPin}, {PinA: coldIn, PinB: screenPin},
+		{PinA: hotOut, PinB: screenPin}, {PinA: coldOut, PinB: screenPin},
+	}
+}
+
+func joinedReadings(c *network.Circuit) []OhmReading {
 	if !c.Balanced() {
 		return []OhmReading{
-			{PinA: hotIn, PinB: "screen"},
-			{PinA: hotOut, PinB: "screen"},
-			{PinA: hotIn, PinB: hotOut},
-			{PinA: hotIn, PinB: "screen", Joined: [2]string{hotOut, "screen"}},
-			{PinA: hotOut, PinB: "screen", Joined: [2]string{hotIn, "screen"}},
+			{PinA: hotIn, PinB: screenPin, Joined: [2]string{hotOut, screenPin}},
+			{PinA: hotOut, PinB: screenPin, Joined: [2]string{hotIn, screenPin}},
 		}
 	}
 	return []OhmReading{
-		{PinA: hotIn, PinB: coldIn},
-		{PinA: hotOut, PinB: coldOut},
-		{PinA: hotIn, PinB: hotOut},
-		{PinA: coldIn, PinB: coldOut},
 		{PinA: hotIn, PinB: coldIn, Joined: [2]string{hotOut, coldOut}},
 		{PinA: hotOut, PinB: coldOut, Joined: [2]string{hotIn, coldIn}},
-		{PinA: hotIn, PinB: "screen"},
-		{PinA: coldIn, PinB: "screen"},
-		{PinA: hotOut, PinB: "screen"},
-		{PinA: coldOut, PinB: "screen"},
+		{PinA: hotIn, PinB: screenPin, Joined: [2]string{hotOut, screenPin}},
+		{PinA: coldIn, PinB: screenPin, Joined: [2]string{coldOut, screenPin}},
+		{PinA: hotOut, PinB: screenPin, Joined: [2]string{hotIn, screenPin}},
+		{PinA: coldOut, PinB: screenPin, Joined: [2]string{coldIn, screenPin}},
 	}
+}
+
+// scattered are circuits of the same wiring whose values have nothing to do with
+// one another, links included: readings that agree on both agree by the wiring.
+func scattered(c *network.Circuit) [2]*network.Circuit {
+	var apart [2]*network.Circuit
+	for i, step := range []float64{math.Phi, math.Sqrt2} { // the fractions of their multiples never fall together
+		d := c
+		for n, p := range c.Parts() {
+			if p.Kind == network.Resistor {
+				_, frac := math.Modf(step * float64(n+1))
+				d = d.With(p.Ref, 100*(1+frac))
+			}
+		}
+		apart[i] = d
+	}
+	return apart
+}
+
+func readsLikeOne(apart [2]*network.Circuit, r OhmReading, others []OhmReading) bool {
+	for _, o := range others {
+		if equalOhms(r.On(apart[0]), o.On(apart[0])) && equalOhms(r.On(apart[1]), o.On(apart[1])) {
+			return true
+		}
+	}
+	return false
+}
+
+func equalOhms(a, b float64) bool {
+	const rounding = 1e-9
+	return a == b || !math.IsInf(a, 1) && !math.IsInf(b, 1) && math.Abs(a-b) <= rounding*math.Max(a, b)
 }

@@ -16,7 +16,8 @@ type swapped struct {
 }
 
 // swapsThatFit are the swaps of two parts that explain a bench loss within uDB
-// and what the tolerances of the parts may bring.
+// and what the tolerances of the parts may bring, and that no ohmmeter reading
+// contradicts.
 func (k LossCase) swapsThatFit(benchDB, uDB, believedDB float64) []swapped {
 	var all []swapped
 	parts := k.Circuit.Parts()
@@ -31,7 +32,7 @@ func (k LossCase) swapsThatFit(benchDB, uDB, believedDB float64) []swapped {
 				benchDB: c.LossDB(k.Rig.Ends, k.Reading.FreqHz), serviceDB: c.LossDB(k.Service, k.Reading.FreqHz),
 				withinDB: uDB + math.Max(believedDB, othersDB(c, k.Rig.Ends, k.Reading.FreqHz, -1)),
 			}
-			if math.Abs(s.benchDB-benchDB) <= s.withinDB {
+			if math.Abs(s.benchDB-benchDB) <= s.withinDB && allFit(c, k.Ohms) {
 				all = append(all, s)
 			}
 		}

@@ -14,13 +14,14 @@ type Unseen struct {
 	LowValue, HighValue         float64 // of one part: what it could be, 0 to +Inf
 	ServiceLowDB, ServiceHighDB float64 // the loss in service that goes with it
 	WithinDB                    float64 // how closely the bench reading would be the same
+	Read                        int     // how many ohmmeter readings it fits as well
 	Reading                     OhmReading
 	SourceOhms, LoadOhms        float64 // a bench with these sees what service sees; NaN where the bench's own serves
 }
 
 // FindUnseen lists the parts that the bench cannot have proven: moved alone
 // from 0 to infinity, or swapped with another, they fit the bench loss within U
-// plus what the other parts may bring and yet, carried over from there with its
+// plus what the other parts may bring, fit the ohmmeter readings too, and yet, carried over from there with its
 // own doubt, may break the limit in service. A loss is PASS only where the list
 // is empty or something else taken rules each entry out. benchDB is the bench
 // loss as recorded, benchUDB its expanded uncertainty on the drawing.
@@ -39,7 +40,7 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 		u := Unseen{
 			Refs: []string{p.Ref}, Kind: p.Kind, LowValue: fits[0].value, HighValue: fits[len(fits)-1].value,
 			ServiceLowDB: math.Inf(1), ServiceHighDB: math.Inf(-1), WithinDB: breaking.withinDB,
-			Reading: bestReading(k.Circuit, k.Circuit.With(p.Ref, breaking.value)),
+			Read: len(k.Ohms), Reading: bestReading(k.Circuit, k.Circuit.With(p.Ref, breaking.value), k.Ohms),
 		}
 		for _, f := range fits {
 			u.ServiceLowDB, u.ServiceHighDB = math.Min(u.ServiceLowDB, f.carriedDB), math.Max(u.ServiceHighDB, f.carriedDB)
@@ -97,7 +98,7 @@ func (k LossCase) unseenSwaps(benchDB, benchUDB, believedDB float64, limit Limit
 		}
 		all = append(all, Unseen{
 			Refs: w.refs, Kind: w.kind, ServiceLowDB: service, ServiceHighDB: service, WithinDB: w.withinDB,
-			Reading: bestReading(k.Circuit, w.circuit), SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
+			Read: len(k.Ohms), Reading: bestReading(k.Circuit, w.circuit, k.Ohms), SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
 		})
 	}
 	return all

@@ -20,19 +20,27 @@ func (u Unseen) Text() string {
 		loss = tenths(u.ServiceLowDB) + " dB"
 	}
 	if len(u.Refs) == 2 {
-		fmt.Fprintf(&b, "swapped, this bench would read the same within %.2g dB, but the loss in service might be %s.", u.WithinDB, loss)
+		fmt.Fprintf(&b, "swapped, this bench would read the same within %.2g dB%s, but the loss in service might be %s.", u.WithinDB, u.alsoRead(), loss)
 	} else {
-		fmt.Fprintf(&b, "anything from %s to %s would read the same here within %.2g dB, but the loss in service might be %s.",
-			partValue(u.Kind, u.LowValue), partValue(u.Kind, u.HighValue), u.WithinDB, loss)
+		fmt.Fprintf(&b, "anything from %s to %s would read the same here within %.2g dB%s, but the loss in service might be %s.",
+			partValue(u.Kind, u.LowValue), partValue(u.Kind, u.HighValue), u.WithinDB, u.alsoRead(), loss)
 	}
 	if r := u.Reading; r.PinA != "" {
-		fmt.Fprintf(&b, " To settle it, unplug the unit (signal and phantom off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
+		fmt.Fprintf(&b, " To settle it, unplug the unit (power, phantom and signal off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
 			r.How(), partValue(network.Resistor, r.GoodOhms), partValue(network.Resistor, r.WrongOhms))
 	}
 	if ends := u.ends(); ends != "" {
 		fmt.Fprintf(&b, " Or record both takes again with %s on the bench, and say so in rig.toml.", ends)
 	}
 	return b.String()
+}
+
+// alsoRead says that ohmmeter readings were taken and did not settle it.
+func (u Unseen) alsoRead() string {
+	if u.Read == 0 {
+		return ""
+	}
+	return " and fit the ohmmeter readings taken"
 }
 
 // ends names the source and the load that would show the part.
@@ -66,7 +74,10 @@ func tenths(db float64) string {
 }
 
 // partValue prints a value with three digits and its unit.
-func partValue(kind network.Kind, v float64) string {
+func partValue(kind network.Kind, v float64) string { return valueTo(kind, v, 3) }
+
+// valueTo prints a value with so many digits and its unit.
+func valueTo(kind network.Kind, v float64, digits int) string {
 	unit := map[network.Kind]string{network.Capacitor: "F", network.Inductor: "H"}[kind]
 	if unit == "" {
 		unit = "Ω"
@@ -81,8 +92,8 @@ func partValue(kind network.Kind, v float64) string {
 		scale float64
 		name  string
 	}{{1e6, "M"}, {1e3, "k"}, {1, ""}, {1e-3, "m"}, {1e-6, "µ"}, {1e-9, "n"}, {1e-12, "p"}} {
-		if v >= p.scale*0.9995 || p.name == "p" {
-			return strconv.FormatFloat(v/p.scale, 'g', 3, 64) + " " + p.name + unit
+		if v >= p.scale*(1-0.5*math.Pow10(-digits)) || p.name == "p" {
+			return strconv.FormatFloat(v/p.scale, 'g', digits, 64) + " " + p.name + unit
 		}
 	}
 	return ""

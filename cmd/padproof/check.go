@@ -10,6 +10,7 @@ import (
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/unit"
+	"padproof/compare"
 )
 
 // checkFlags are those of check.
@@ -24,6 +25,9 @@ type checkFlags struct {
 	played      string
 	report      string
 	now         func() time.Time
+	ohms        []string
+	meterTol    string
+	meterPlus   float64
 	plots       string
 }
 
@@ -36,14 +40,25 @@ func newCheck() *cobra.Command {
 
 FOLDER holds the unit's takes, before.wav and after.wav at least, and the sheets pad.toml
 and rig.toml; sheets, and takes of the rig alone, may lie one folder up and then serve every
-unit there.
+unit there. An ohms.toml beside the takes holds what an ohmmeter read on the unit.
 Or name the files by role. With no drawing, say what is marked on the pad: the mark is
 judged as a symmetrical matched pad of --marked-ohms, or with --on-this-bench as what
-this bench should read.`,
+this bench should read. Where the reading does not agree with it, the answer says what pads of
+that mark would read with something wrong: likelihoods with what to measure, no findings.
+
+Where the loss is out of its limits and a resistor would bring it in, the answer says which
+(IEC 60063), where, and what should then be measured.
+
+--ohms takes in a reading of an ohmmeter, as often as you like; padproof predict lists the
+pins and what a sound unit reads there. Power, phantom and signal off, the unit unplugged at
+both ends. A reading may settle what the bench cannot see, and tells suspects apart; one that
+no sound unit shows keeps the loss from a PASS.`,
 		Example: `  padproof check testdata/saltmarsh/0417
   padproof check testdata/saltmarsh/0418 --report 0418.html
   padproof check --pad pad.toml --rig rig.toml --before in.wav --after out.wav
-  padproof check --before in.wav --after out.wav --marked-loss-db 10 --within-db 0.5 --marked-ohms 600`,
+  padproof check --before in.wav --after out.wav --marked-loss-db 10 --within-db 0.5 --marked-ohms 600
+  padproof check 0417 --ohms out.hot,out.cold=330 --ohms in.hot,screen=open
+  padproof check 0417 --ohms "in.hot,in.cold with out.hot,out.cold joined=1k12"`,
 		RunE: func(cmd *cobra.Command, args []string) error { return runCheck(cmd, args, f) },
 	}
 	f.files = map[string]*string{}
@@ -74,6 +89,9 @@ this bench should read.`,
 	}
 	flags.StringVar(&f.played, "signal", "", "the WAV that was played, where it is not the test signal: gives the response")
 	_ = cmd.MarkFlagFilename("signal", "wav")
+	flags.StringArrayVar(&f.ohms, "ohms", nil, "an ohmmeter reading, PIN,PIN=OHMS or PIN,PIN with PIN,PIN joined=OHMS; repeatable")
+	flags.StringVar(&f.meterTol, "meter-tolerance", "0.5%", "what the ohmmeter may be off by, of the reading")
+	flags.Float64Var(&f.meterPlus, "meter-plus-ohms", compare.MeterPlusOhms, "and beside that, in ohms")
 	flags.IntVar(&f.channel, "channel", 0, "the channel that holds the tone, from 1; found if left out")
 	flags.Float64Var(&f.markedLoss, "marked-loss-db", 0, "no drawing: the loss marked on the pad")
 	flags.Float64Var(&f.within, "within-db", 0, "no drawing: how far off the mark is still good")
@@ -177,6 +195,9 @@ func (f checkFlags) unit(cmd *cobra.Command, args []string) (*unit.Unit, error) 
 func (f checkFlags) options(cmd *cobra.Command) (proof.Options, error) {
 	o := proof.Options{Channel: f.channel, Played: f.played, Curves: f.plots != "" || f.report != ""}
 	given := cmd.Flags().Changed
+	if err := f.readings(cmd, &o); err != nil {
+		return o, err
+	}
 	if given("channel") && f.channel < 1 {
 		return o, usageError(cmd, "--channel counts from 1, not %d", f.channel)
 	}

@@ -1,7 +1,6 @@
 package main
 
 import (
-	"errors"
 	"fmt"
 	"math"
 	"slices"
@@ -11,8 +10,6 @@ import (
 
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/rehearsal"
-	"padproof/cmd/padproof/internal/result"
-	"padproof/compare/network"
 )
 
 // rehearseFlags are those of rehearse.
@@ -22,6 +19,7 @@ type rehearseFlags struct {
 	faults        []string
 	takes         []string
 	vary          bool
+	ohms          bool
 	plan          rehearsal.Plan // what the flags say of it
 }
 
@@ -64,7 +62,8 @@ func newRehearse() *cobra.Command {
 	flags.StringSliceVar(&p.Flex, "flex", nil, "what happens in flex, in order: "+strings.Join(rehearsal.FlexEvents(), ", ")+"; repeatable")
 	flags.StringSliceVar(&p.Lies, "lie", nil, "what is wrong with the recordings, such as \"clipped\"; repeatable")
 	flags.StringArrayVar(&f.faults, "fault", nil, "what is wrong with the unit, such as \"R3 open\"; repeatable")
-	flags.BoolVar(&f.vary, "vary", false, "draw parts, source, load, cable and gains from their tolerances")
+	flags.BoolVar(&f.ohms, "ohms", false, "write ohms.toml too: what an ohmmeter reads on this unit")
+	flags.BoolVar(&f.vary, "vary", false, "draw parts, source, load, cable, gains and meter from their tolerances")
 	flags.Uint64Var(&p.Seed, "seed", 1, "seed of the noise and of --vary")
 	flags.IntVar(&p.RateHz, "rate", 48000, "sample rate in hertz, 8000 to 384000")
 	flags.IntVar(&p.Bits, "bits", 24, "bits a sample: 16, 24 or 32")
@@ -90,7 +89,8 @@ func rehearseLong() string {
 	return `Write the recordings that a person would make of this drawing on this rig, sound or with
 a fault, to see what the rig could prove. FOLDER gets before.wav, after.wav and copies of
 the sheets, so that padproof check FOLDER works at once; nothing there is overwritten. The
-recordings are marked SIMULATED inside, and so is every answer made from them.
+recordings are marked SIMULATED inside, and so is every answer made from them. With --ohms
+an ohms.toml too, with what an ohmmeter reads on this unit; it is marked likewise.
 
 --takes names other recordings:
 
@@ -102,8 +102,10 @@ before and after.
 
 A --fault is written R3 open, R3 short, R3 x10, R3 /10, R3 is 360, R3 drifted +12 %,
 R1 and R3 swapped, hot leg open at in, cold leg to screen at out (and so on), legs crossed
-or in and out swapped, and may be given more than once. Without --vary every part and
-figure is exactly as stated; the same command gives the same files.
+or in and out swapped; or, of the bench, source not as stated (twice what rig.toml says),
+load not as stated (half of it), source is 300 or load is 600. It may be given more than
+once. Without --vary every part and figure is exactly as stated; the same command gives the
+same files.
 
 A --lie makes the recordings tell what is not so:
 ` + lies.String()
@@ -117,7 +119,7 @@ func runRehearse(cmd *cobra.Command, f rehearseFlags) error {
 	if err != nil {
 		return err
 	}
-	faults, err := parseFaults(drawing.Circuit, f.faults)
+	faults, err := parseFaults(drawing, f.faults)
 	if err != nil {
 		return err
 	}
@@ -127,9 +129,13 @@ func runRehearse(cmd *cobra.Command, f rehearseFlags) error {
 	}
 	ctx, stop := untilInterrupted(cmd)
 	defer stop()
+	sheets := rehearsal.Sheets{Pad: f.pad, Rig: f.rig}
+	if f.ohms {
+		sheets.Ohms = f.ohmsText(plan)
+	}
 	shown := progressOn(cmd.ErrOrStderr(), "writing takes")
 	plan.Progress = shown.tell
-	takes, err := plan.Record(ctx, f.out, rehearsal.Sheets{Pad: f.pad, Rig: f.rig})
+	takes, err := plan.Record(ctx, f.out, sheets)
 	shown.clear()
 	if err != nil {
 		return afterInterrupt(err)
@@ -170,32 +176,16 @@ func (f *rehearseFlags) settle(cmd *cobra.Command) error {
 	return nil
 }
 
-func parseFaults(c *network.Circuit, texts []string) ([]network.Fault, error) {
-	var faults []network.Fault
-	for _, text := range texts {
-		fault, err := network.ParseFault(c, text)
-		var bad *network.Error
-		if errors.As(err, &bad) {
-			return nil, &result.Error{Text: "--fault: " + bad.Text, Hint: bad.Hint}
-		}
-		if err != nil {
-			return nil, err
-		}
-		faults = append(faults, fault)
-	}
-	return faults, nil
-}
-
 // build makes the unit and the bench. What was left out of all takes is said.
-func (f *rehearseFlags) build(d *proof.Drawing, faults []network.Fault) (p rehearsal.Plan, leftOut []string) {
+func (f *rehearseFlags) build(d *proof.Drawing, faults []fault) (p rehearsal.Plan, leftOut []string) {
 	p = f.plan
 	p.Pad = d.Circuit
-	notes := []string{fmt.Sprintf("seed %d", p.Seed)}
-	for _, fault := range faults {
-		p.Pad = fault.Apply(p.Pad)
-		notes = append(notes, fault.String())
-	}
 	p.Bench = f.bench(d)
+	notes := []string{fmt.Sprintf("seed %d", p.Seed)}
+	for _, one := range faults {
+		p.Pad, p.Bench.Ends = one.apply(p.Pad, p.Bench.Ends)
+		notes = append(notes, one.text)
+	}
 	if f.vary {
 		notes = append(notes, "varied")
 		p.Pad, p.Bench = rehearsal.Draw(p.Pad, p.Bench, doubts(d), p.Seed)

@@ -16,7 +16,7 @@ import (
 )
 
 // rehearsed says what was made and what is true of it.
-func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p rehearsal.Plan, takes []rehearsal.Take) *result.Rehearsal {
+func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []fault, p rehearsal.Plan, takes []rehearsal.Take) *result.Rehearsal {
 	toneHz := p.Signal.FreqHz()
 	losses := func(c *network.Circuit, bench network.Ends) result.Losses {
 		return result.Losses{BenchDB: result.Number(c.LossDB(bench, toneHz)), ServiceDB: result.Number(c.LossDB(d.Service, toneHz))}
@@ -43,8 +43,11 @@ func (f *rehearseFlags) rehearsed(d *proof.Drawing, faults []network.Fault, p re
 	for i, atSec := range p.FlexSec() {
 		r.Flex = append(r.Flex, result.RehearsedEvent{AtSec: result.Number(atSec), What: p.Flex[i]})
 	}
-	for _, fault := range faults {
-		r.Faults = append(r.Faults, fault.String())
+	for _, one := range faults {
+		r.Faults = append(r.Faults, one.text)
+	}
+	if f.ohms {
+		r.Sheets = append(r.Sheets, "ohms.toml")
 	}
 	for _, part := range p.Pad.Parts() {
 		r.Truth.Parts = append(r.Truth.Parts, result.RehearsedPart{Ref: part.Ref, Kind: part.Kind.String(), Value: result.Number(part.Value)})
@@ -105,19 +108,13 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 	for _, t := range r.Takes {
 		files = append(files, t.File)
 	}
-	names := strings.Join(files, ", ")
-	if n := len(files); n > 1 {
-		names = strings.Join(files[:n-1], ", ") + " and " + files[n-1]
-	}
-	unit := "a sound unit"
-	if len(r.Faults) > 0 {
-		unit = "a unit with " + strings.Join(r.Faults, " and ")
-	}
+	names := joinedWords(files)
+	unit := faultsText(r.Faults)
 	if r.Varied {
 		unit += ", drawn from its tolerances"
 	}
 	lines := []string{
-		fmt.Sprintf("Wrote %s to %s, SIMULATED, with %s: %s.", names, r.Folder, strings.Join(r.Sheets, " and "), unit),
+		fmt.Sprintf("Wrote %s to %s, SIMULATED, with %s: %s.", names, r.Folder, joinedWords(r.Sheets), unit),
 		fmt.Sprintf("True loss on this bench %s (the drawing's %s), in service %s (the drawing's %s).",
 			lossText(r.Truth.BenchDB), lossText(r.Drawing.BenchDB), lossText(r.Truth.ServiceDB), lossText(r.Drawing.ServiceDB)),
 	}
@@ -141,6 +138,35 @@ func rehearsalText(w io.Writer, r *result.Rehearsal) error {
 	lines = append(lines, "Next: padproof check "+quoteForShell(r.Folder))
 	_, err := fmt.Fprintln(w, strings.Join(lines, "\n"))
 	return err
+}
+
+// faultsText is the unit in words, and the bench where that is not as stated.
+func faultsText(faults []string) string {
+	var ofUnit, ofBench []string
+	for _, text := range faults {
+		if _, isEnd, _ := network.ParseEndFault(text); isEnd {
+			ofBench = append(ofBench, text)
+		} else {
+			ofUnit = append(ofUnit, text)
+		}
+	}
+	unit := "a sound unit"
+	if len(ofUnit) > 0 {
+		unit = "a unit with " + strings.Join(ofUnit, " and ")
+	}
+	if len(ofBench) > 0 {
+		unit += ", on a bench with " + strings.Join(ofBench, " and ")
+	}
+	return unit
+}
+
+// joinedWords are words for a sentence: "a, b and c".
+func joinedWords(words []string) string {
+	n := len(words)
+	if n < 2 {
+		return strings.Join(words, "")
+	}
+	return strings.Join(words[:n-1], ", ") + " and " + words[n-1]
 }
 
 // lossText is a loss as read by people.

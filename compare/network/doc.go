@@ -17,6 +17,7 @@
 //     much each part matters.
 //  5. [Circuit.With] and [Circuit.Swapped] make faulty copies;
 //     [Circuit.ValuesForLoss] says which values of one part explain a loss.
+//     [Fault] and [EndFault] are faults of the unit and of the bench, in words.
 //
 // A Circuit never changes after New, so any number of goroutines may share one.
 //

@@ -16,14 +16,15 @@
 // It says in one sentence what was found ([Picture.Says]), so that nobody need
 // read it off. Each line is named where it ends. Lines differ in width and dash as
 // well as in colour, so that they can be told apart in grey; the colours are those
-// of M. Okabe and K. Ito, "Color Universal Design" (2008), darkened where their
+// of M. Okabe and K. Ito, "Color Universal Design" (2008; from memory), darkened where their
 // contrast with white is less than 3 to 1 (WCAG 2.2, 1.4.11). Frequencies are
 // logarithmic with the octaves of ISO 266; levels are in decibels in steps of 1, 2
 // or 5. SIMULATED stands in every picture that rehearsed takes made.
 //
 // # Limits
 //
-// Text in an SVG is text, in whatever sans serif font the reader has, metric
-// like Liberation Sans, by which it was set out; PNG and PDF hold that font. A
-// PDF shows a question mark for a character outside Windows-1252.
+// Text in an SVG is text, in Liberation Sans, Arial, Helvetica or whatever sans
+// serif font the reader has, each text as wide as in the first, by which pictures
+// are set out. PNG and PDF hold that font; a character that it lacks, a picture
+// sign in a name say, is shown there as an empty box or a question mark.
 package draw

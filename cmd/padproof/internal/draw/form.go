@@ -8,12 +8,9 @@ import (
 	"regexp"
 	"strconv"
 
-	xfont "golang.org/x/image/font"
-	"gonum.org/v1/plot/font"
 	"gonum.org/v1/plot/vg"
 	"gonum.org/v1/plot/vg/draw"
 	"gonum.org/v1/plot/vg/vgimg"
-	"gonum.org/v1/plot/vg/vgpdf"
 	"gonum.org/v1/plot/vg/vgsvg"
 )
 
@@ -26,55 +23,6 @@ func (p *Picture) png(w io.Writer) error {
 	p.draw(c, width, height, true)
 	_, err := vgimg.PngCanvas{Canvas: c}.WriteTo(w)
 	return err
-}
-
-func (p *Picture) pdf(w io.Writer) (err error) {
-	defer func() { // vgpdf makes its fonts in a folder for passing files, and panics where there is none
-		if r := recover(); r != nil {
-			err = fmt.Errorf("no PDF could be made: %v", r)
-		}
-	}()
-	width, height := p.sizeWithHeader()
-	c := pdfCanvas{vgpdf.New(width, height)}
-	p.draw(c, width, height, true)
-	_, err = c.WriteTo(w)
-	return err
-}
-
-// A pdfCanvas writes text in the characters of Windows-1252, which the font in a
-// PDF has.
-type pdfCanvas struct {
-	*vgpdf.Canvas
-}
-
-func (c pdfCanvas) FillString(f font.Face, at vg.Point, text string) {
-	if f.Font.Weight == xfont.WeightBold { // vgpdf asks for a bold font by a name that it has not given it
-		f.Font.Typeface, f.Font.Weight = "LiberationBold", xfont.WeightNormal
-	}
-	c.Canvas.FillString(f, at, windows1252(text))
-}
-
-// others are the characters of Windows-1252 that are not those of Latin-1, and
-// what stands for those that it lacks.
-var others = map[rune]string{
-	'–': "\x96", '—': "\x97", '‘': "\x91", '’': "\x92", '“': "\x93", '”': "\x94",
-	'…': "\x85", '•': "\x95", '€': "\x80", '™': "\x99", '−': "-", 'Ω': "ohm", 'μ': "\xb5",
-}
-
-func windows1252(text string) string {
-	var out []byte
-	for _, r := range text {
-		other, known := others[r]
-		switch {
-		case known:
-			out = append(out, other...)
-		case r < 0x80 || r >= 0xa0 && r <= 0xff:
-			out = append(out, byte(r))
-		default:
-			out = append(out, '?')
-		}
-	}
-	return string(out)
 }
 
 // svgFonts are the fonts of an SVG: the first three have the widths by which

@@ -122,7 +122,7 @@ func (g grid) Plot(c draw.Canvas, p *plot.Plot) {
 
 // Plot draws the line, piece by piece.
 func (l curve) Plot(c draw.Canvas, p *plot.Plot) {
-	for _, piece := range pieces(l.xs, l.ys) {
+	for _, piece := range pieces(p, l.xs, l.ys) {
 		points := make([]vg.Point, 0, len(piece))
 		for _, i := range piece {
 			points = append(points, at(c, p, l.xs[i], kept(l.ys[i])))
@@ -140,7 +140,7 @@ func (b band) Plot(c draw.Canvas, p *plot.Plot) {
 	for i := range width {
 		width[i] = b.highs[i] - b.lows[i]
 	}
-	for _, piece := range pieces(b.xs, width) {
+	for _, piece := range pieces(p, b.xs, width) {
 		var points []vg.Point
 		for _, i := range piece {
 			points = append(points, at(c, p, b.xs[i], kept(b.highs[i])))
@@ -161,6 +161,9 @@ func (st stem) Plot(c draw.Canvas, p *plot.Plot) {
 	c.StrokeLine2(st.look.style(), top.X, c.Min.Y, top.X, top.Y)
 }
 
+// furthestX is beyond any frequency or time that a take has.
+const furthestX = 1e7
+
 // kept keeps a level within what can be drawn.
 func kept(v float64) float64 { return math.Max(-2*furthestDB, math.Min(2*furthestDB, v)) }
 
@@ -168,12 +171,13 @@ func drawable(x, y float64) bool {
 	return !math.IsNaN(x) && !math.IsInf(x, 0) && !math.IsNaN(y) && !math.IsInf(y, 0)
 }
 
-// pieces are the runs of points that can be drawn.
-func pieces(xs, ys []float64) [][]int {
+// pieces are the runs of points that can be drawn on a plot's axes.
+func pieces(p *plot.Plot, xs, ys []float64) [][]int {
+	_, log := p.X.Scale.(plot.LogScale)
 	var all [][]int
 	open := false
 	for i := range min(len(xs), len(ys)) {
-		if !drawable(xs[i], ys[i]) || xs[i] < lowestDrawn && xs[i] < 0 {
+		if !drawable(xs[i], ys[i]) || log && xs[i] < lowestDrawn || math.Abs(xs[i]) > furthestX {
 			open = false
 			continue
 		}

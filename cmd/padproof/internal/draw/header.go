@@ -5,12 +5,13 @@ import "gonum.org/v1/plot/vg"
 const (
 	edge       = 8 // about everything
 	headerGap  = 4
-	mostLines  = 4 // of the sentence
+	mostLines  = 5 // of the sentence
 	simulated  = "SIMULATED"
 	simulation = "Simulated: it says nothing about a real unit."
 )
 
-// saysAll is the sentence, and that the takes are simulated where they are.
+// saysAll is the sentence, and that the takes are simulated where they are: for a
+// reader who does not see the box that says so.
 func (p *Picture) saysAll() string {
 	if p.Simulated {
 		return p.Says + " " + simulation
@@ -20,7 +21,7 @@ func (p *Picture) saysAll() string {
 
 func (p *Picture) headerLines() (title string, says []string) {
 	width := vg.Length(p.Width) - 2*edge
-	return header.clip(p.Title, width), plain.wrap(p.saysAll(), width, mostLines)
+	return header.clip(p.Title, width), plain.wrap(p.Says, width, mostLines)
 }
 
 // sizeWithHeader is the size of the picture with title and sentence.

@@ -1,6 +1,7 @@
 package draw
 
 import (
+	"strconv"
 	"strings"
 
 	"gonum.org/v1/plot/vg"
@@ -190,16 +191,17 @@ func (h hand) wrapAll(texts []string, width vg.Length) []string {
 	return lines
 }
 
-// ohms writes a resistance as the trade does: 330 Ω, 10 kΩ.
+// ohms writes a resistance to three digits, as the trade does: 330 Ω, 10 kΩ.
 func ohms(n result.Number) string {
+	digits := func(v float64) string { return strconv.FormatFloat(v, 'g', 3, 64) }
 	switch v := float64(n); {
-	case !n.OK():
+	case !n.OK() || v < 0 || v >= 999.5e6:
 		return "open"
-	case v >= 1e6:
-		return give(n/1e6) + " MΩ"
-	case v >= 1e3:
-		return give(n/1e3) + " kΩ"
+	case v >= 999.5e3:
+		return digits(v/1e6) + " MΩ"
+	case v >= 999.5:
+		return digits(v/1e3) + " kΩ"
 	default:
-		return give(n) + " Ω"
+		return digits(v) + " Ω"
 	}
 }

@@ -2,7 +2,6 @@ package draw
 
 import (
 	"math"
-	"strings"
 
 	"gonum.org/v1/plot/vg"
 
@@ -19,7 +18,7 @@ func Legs(a *result.Answer) *Picture {
 	}
 	rows := legRows(a.Curves.Legs, c)
 	p := &Picture{Name: "legs", Title: title, Says: legsSays(a.Curves.Legs, c), Simulated: a.Simulated, Width: usualWidth, Height: captionLine + 3*legHeight + 32}
-	p.paint = func(s *sheet) { drawLegs(s, rows) }
+	p.paint = func(s *sheet) { drawLegs(s, rows, a.Curves.Legs.From) }
 	return p
 }
 
@@ -54,12 +53,16 @@ const (
 	legHeight = 32
 )
 
-func drawLegs(s *sheet, rows []legRow) {
+func drawLegs(s *sheet, rows []legRow, from string) {
 	reach := span{-1, 1}
 	for _, r := range rows {
 		reach.take(r.off-zeroIfMissing(r.u), r.off+zeroIfMissing(r.u), r.low, r.high, -r.high)
 	}
-	x := evenly(math.Max(reach.low, -60), math.Min(reach.high, 60), "dB more than the drawing gives")
+	caption := "dB more than the drawing gives"
+	if from == "mean" {
+		caption += "; levels against the mean of the two"
+	}
+	x := evenly(math.Max(reach.low, -60), math.Min(reach.high, 60), caption)
 	left, right := s.Min.X+edge+legNames, s.Max.X-edge-legReads
 	scale := func(v float64) vg.Length {
 		v = math.Max(x.min, math.Min(x.max, v))
@@ -125,9 +128,5 @@ func legsSays(l *result.LegLevels, c *result.Check) string {
 	if !l.ColdDB.OK() {
 		says += "; no tone on the cold leg"
 	}
-	says += "; " + verdictWords(c)
-	if c.Reason != "" {
-		says += " " + strings.ToUpper(c.Reason[:1]) + c.Reason[1:] + "."
-	}
-	return says
+	return says + "; " + verdictWords(c)
 }

@@ -45,7 +45,7 @@ func levelFrame(a *result.Answer) *frame {
 	widest := math.Max(mostLevelDB, reach.high)
 	for _, c := range a.Curves.Level {
 		for _, at := range numbers(c.AtSec) {
-			if !math.IsNaN(at) && !math.IsInf(at, 0) {
+			if math.Abs(at) <= furthestX {
 				time.low, time.high = math.Min(time.low, at), math.Max(time.high, at)
 			}
 		}
@@ -106,7 +106,7 @@ func levelSays(a *result.Answer) string {
 	if c == nil || !c.Measured.OK() {
 		return "The level of the tone against time, held against the two seconds before."
 	}
-	says := "The level of the tone departs by " + atMost(c.Measured, c.Uncertainty) + " dB at the most from that of the two seconds before"
+	says := "The level of the tone departs by " + largest(c.Measured, c.Uncertainty) + " from that of the two seconds before"
 	if c.From != "" && c.AtSec != nil && c.AtSec.OK() {
 		says += " (" + c.From + ", at " + fixed(*c.AtSec, 1) + " s)"
 	}

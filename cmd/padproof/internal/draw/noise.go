@@ -35,7 +35,7 @@ func noiseFrame(n *result.NoiseCurves, hz []float64) *frame {
 	}
 	// A line far below the noise, or none, must not stretch the axis.
 	reach.low = math.Max(floor-5, reach.low)
-	f := &frame{x: frequencies(), y: evenly(reach.low-3, math.Max(reach.high, reach.low+12)+4, n.Unit+" in each 1 Hz of band; lines at their own level")}
+	f := &frame{x: frequencies(), y: between(10*math.Floor((reach.low-3)/10), 10*math.Ceil((math.Max(reach.high, reach.low+12)+4)/10), n.Unit+" in each 1 Hz of band; lines at their own level")}
 	var mains, other note
 	for _, l := range n.Lines {
 		at := note{x: float64(l.FreqHz), y: float64(l.Pad)}

@@ -46,7 +46,7 @@ func (s *sheet) ring(about vg.Point) {
 func (f *frame) drawnLines(p *plot.Plot, data draw.Canvas) [][2]vg.Point {
 	var all [][2]vg.Point
 	for _, c := range f.curves {
-		for _, piece := range pieces(c.xs, c.ys) {
+		for _, piece := range pieces(p, c.xs, c.ys) {
 			for k := 1; k < len(piece); k++ {
 				i, j := piece[k-1], piece[k]
 				all = append(all, [2]vg.Point{at(data, p, c.xs[i], kept(c.ys[i])), at(data, p, c.xs[j], kept(c.ys[j]))})
@@ -103,6 +103,9 @@ func free(box vg.Rectangle, taken []vg.Rectangle) bool {
 	})
 }
 
+// crossMargin is how far words keep from a line.
+const crossMargin = 2
+
 // crossed reports whether a piece of a line lies in a box, by its own box, cut to
 // the stretch beside it.
 func crossed(box vg.Rectangle, lines [][2]vg.Point) bool {
@@ -111,7 +114,7 @@ func crossed(box vg.Rectangle, lines [][2]vg.Point) bool {
 		if a.X > b.X {
 			a, b = b, a
 		}
-		if b.X < box.Min.X || a.X > box.Max.X {
+		if b.X < box.Min.X-crossMargin || a.X > box.Max.X+crossMargin {
 			return false
 		}
 		if b.X > a.X {
@@ -123,6 +126,6 @@ func crossed(box vg.Rectangle, lines [][2]vg.Point) bool {
 				b = vg.Point{X: box.Max.X, Y: b.Y - vg.Length(slope)*(b.X-box.Max.X)}
 			}
 		}
-		return max(a.Y, b.Y) > box.Min.Y && min(a.Y, b.Y) < box.Max.Y
+		return max(a.Y, b.Y) > box.Min.Y-crossMargin && min(a.Y, b.Y) < box.Max.Y+crossMargin
 	})
 }

@@ -112,6 +112,6 @@ func (r responsePlot) says(name string) string {
 	if c.Measured > 0 {
 		way = "quieter"
 	}
-	return "The " + name + " departs from " + against + " by " + atMost(c.Measured, c.Uncertainty) + " dB at the most (" + way + ", at " +
+	return "The " + name + " departs from " + against + " by " + largest(c.Measured, c.Uncertainty) + " (" + way + ", at " +
 		hertz(*c.AtHz) + ", ±" + doubt + "); " + verdictWords(c)
 }

@@ -3,6 +3,7 @@ package draw
 import (
 	"image/color"
 	"math"
+	"sort"
 	"strings"
 
 	xfont "golang.org/x/image/font"
@@ -149,10 +150,8 @@ func (h hand) clip(text string, width vg.Length) string {
 	if len(runes) > 400 {
 		runes = runes[:400]
 	}
-	for len(runes) > 0 && h.width(string(runes)+"…") > width {
-		runes = runes[:len(runes)-1]
-	}
-	return strings.TrimRight(string(runes), " ") + "…"
+	fits := sort.Search(len(runes), func(n int) bool { return h.width(string(runes[:n+1])+"…") > width })
+	return strings.TrimRight(string(runes[:fits]), " ") + "…"
 }
 
 // disc draws a filled circle with an edge.

@@ -112,8 +112,8 @@ func mainsNote(a *result.Answer, s result.SpectrumCurve) (note, bool) {
 		mains = float64(*c.MainsHz)
 	}
 	best := note{y: quiet + mainsStandsDB}
-	for i, hz := range numbers(s.FreqHz) {
-		if db := float64(s.DB[i]); math.Abs(hz/mains-1) < 0.06 && db > best.y {
+	for i := range min(len(s.FreqHz), len(s.DB)) {
+		if hz, db := float64(s.FreqHz[i]), float64(s.DB[i]); math.Abs(hz/mains-1) < 0.06 && db > best.y {
 			best = note{x: hz, y: db, text: "mains hum"}
 		}
 	}

@@ -29,7 +29,7 @@ const suspect = "suspect"
 // A symbol is a part between two points, both on one line, upright or level. Its
 // body stands at a middle of its own, so that a long lead may cross what it must.
 type symbol struct {
-	part    result.DrawnPart
+	part    result.DrawnPart // its A is joined at a, its B at b
 	a, b    vg.Point
 	middle  vg.Point
 	upright bool
@@ -94,7 +94,7 @@ func (y symbol) draw(s *sheet) {
 }
 
 // body draws the symbol itself: a rectangle, two plates or four half turns (IEC
-// 60617: 04-01-01, 04-02-01, 04-03-01).
+// 60617, from memory).
 func (y symbol) body(s *sheet, l look, along, across vg.Point) {
 	at := func(a, c vg.Length) vg.Point { return y.middle.Add(along.Scale(a)).Add(across.Scale(c)) }
 	switch y.part.Kind {
@@ -132,12 +132,15 @@ func (y symbol) words(s *sheet) {
 	ref, value := shortRef(y.part.Ref), textOf(y.part)
 	if y.upright {
 		x := y.middle.X + bodyWidth/2 + 5
+		if y.part.Kind == "capacitor" {
+			x += 4
+		}
 		if y.marked {
 			x += 5
-			s.write(strong, x, y.middle.Y-16, fromLeft, suspect)
+			s.write(strong, x, y.middle.Y-20.5, fromLeft, suspect)
 		}
-		s.write(strong, x, y.middle.Y+2, fromLeft, ref)
-		s.write(plain, x, y.middle.Y-textSize+3, fromLeft, value)
+		s.write(strong, x, y.middle.Y+3, fromLeft, ref)
+		s.write(plain, x, y.middle.Y-8.5, fromLeft, value)
 		return
 	}
 	up, down := vg.Length(bodyWidth/2+4), vg.Length(bodyWidth/2+4+textSize)

@@ -4,6 +4,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"padproof/cmd/padproof/internal/result"
 )
@@ -50,6 +52,15 @@ func atMost(n, u result.Number) string {
 		return "less than " + strconv.FormatFloat(math.Pow(10, -float64(places(u))), 'f', places(u), 64)
 	}
 	return text
+}
+
+// largest is a departure that no other exceeds.
+func largest(n, u result.Number) string {
+	text := atMost(n, u) + " dB"
+	if strings.HasPrefix(text, "less") {
+		return text
+	}
+	return text + " at the most"
 }
 
 func places(u result.Number) int {
@@ -101,7 +112,17 @@ func verdictWords(c *result.Check) string {
 	default:
 		return "no limit is set."
 	}
-	return "limit " + limits + " " + unit + ": " + c.Verdict + "."
+	return "limit " + limits + " " + unit + ": " + c.Verdict + "." + reasonOf(c)
+}
+
+// reasonOf is the reason of a verdict as a sentence of its own.
+func reasonOf(c *result.Check) string {
+	reason := strings.TrimRight(clean(c.Reason), ".")
+	if reason == "" || c.Verdict == "PASS" {
+		return ""
+	}
+	first, size := utf8.DecodeRuneInString(reason)
+	return " " + string(unicode.ToUpper(first)) + reason[size:] + "."
 }
 
 // numbers are figures as they are drawn.

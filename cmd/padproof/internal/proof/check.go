@@ -1,26 +1,33 @@
 package proof
 
 import (
+	"cmp"
 	"strings"
 
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
+	"padproof/compare/suspect"
 )
 
 // Options are what the caller settles beside the unit's files.
 type Options struct {
-	Channel int    // the channel that holds the tone, from 1; 0: find it
-	Mark    *Mark  // no drawing: what is marked on the pad
-	Played  string // a WAV that was played instead of the test signal; "" where none
+	Channel int             // the channel that holds the tone, from 1; 0: find it
+	Mark    *Mark           // no drawing: what is marked on the pad
+	Played  string          // a WAV that was played instead of the test signal; "" where none
+	Ohms    []sheet.Reading // ohmmeter readings beside those of the unit's own sheet
+	Meter   Meter           // that took them
+	Curves  bool            // fill Answer.Curves, which pictures are drawn from
+
+	Shared  *Shared // keeps what takes that serve several units have shown; nil: nothing is kept
+	Workers int     // takes read at once; 0: two
 
 	// Progress is told how many bytes of the takes are read, of all: seldom, and
 	// one call at a time. Err is asked meanwhile; its error ends the check. Both
 	// may be nil.
 	Progress func(done, total int64)
 	Err      func() error
-
-	Curves bool // fill Answer.Curves, which pictures are drawn from
 }
 
 // Check judges one unit. A take that shows nothing is a problem in the answer;
@@ -31,18 +38,20 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	if err != nil {
 		return nil, err
 	}
-	ts, err := openTakes(u)
+	ts, err := openTakes(u, o.Shared)
 	if err != nil {
 		return nil, err
 	}
 	defer ts.close()
 	ts.watch(o)
-	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d, o.Mark)}
+	c := &check{Drawing: d, takes: ts, mark: o.Mark, played: o.Played, answer: newAnswer(u, d, o.Mark), voids: map[string]bool{}}
+	if err := c.readOhms(u, o); err != nil {
+		return nil, err
+	}
 	if o.Played != "" && d.Circuit == nil {
 		return nil, &result.Error{File: o.Played, Text: "what was played gives a response, and there is no drawing to hold it against", Hint: "give a pad.toml, or leave --signal out"}
 	}
-	cal := d.Sheet.Calibration
-	if err := ts.measure(o.Channel, cal.ChannelMatchDB, d.Sheet.MainsHz, o.Played != ""); err != nil {
+	if err := ts.measure(cmp.Or(o.Channel, u.Channel), d.reads(o.Workers), o.Played != ""); err != nil {
 		return nil, err
 	}
 	if err := c.judge(); err != nil {
@@ -55,20 +64,32 @@ func Check(u *unit.Unit, o Options) (*result.Answer, error) {
 	return answer, nil
 }
 
+// reads is what of the rig tells on how takes are read.
+func (d *Drawing) reads(workers int) rigReads {
+	const usual = 2
+	return rigReads{d.Sheet.Calibration.ChannelMatchDB, d.Sheet.MainsHz, d.Gains.LinearityDB, cmp.Or(workers, usual)}
+}
+
 // A check is one unit being judged.
 type check struct {
 	*Drawing
-	takes  *takes
-	mark   *Mark
-	played string
-	found  scale // what dBFS stand for
-	answer *result.Answer
+	takes    *takes
+	mark     *Mark
+	played   string
+	ohms     []compare.OhmSeen // readings of an ohmmeter
+	found    scale             // what dBFS stand for
+	findings findings          // kept for the search of what is wrong
+	voids    map[string]bool   // checks that a problem of their takes voids
+	ranking  *suspect.Ranking  // nil where nothing was sought
+	judged   *judgedLoss       // nil where the loss was not held against the drawing
+	answer   *result.Answer
 }
 
 func newAnswer(u *unit.Unit, d *Drawing, mark *Mark) *result.Answer {
 	a := &result.Answer{
 		Schema: result.CheckSchema, Unit: u.Serial, Pad: d.Name, Rig: d.Sheet.Name,
 		Checks: []result.Check{}, Suspects: []result.Suspect{}, Unseen: []result.Unseen{},
+		Rework: []result.Rework{}, WithoutDrawing: []result.Likelihood{},
 		Budget: []result.Term{}, Captures: []result.Capture{},
 		Sheets: sheetsOf(u.Folder, d), Assumed: d.assumed(), Notes: []string{}, Warnings: append([]string{}, u.Warnings...),
 		BenchEnds: endsOf(d.Rig.Ends),
@@ -89,9 +110,6 @@ func newAnswer(u *unit.Unit, d *Drawing, mark *Mark) *result.Answer {
 // tell of the rig comes first, since the loss stands on it.
 func (c *check) judge() error {
 	c.takes.noteCopies()
-	if err := c.takes.noteSteps(c.Gains.LinearityDB); err != nil {
-		return err
-	}
 	c.pairUp()
 	if err := c.findRig(); err != nil {
 		return err
@@ -114,13 +132,16 @@ func (c *check) add(one result.Check, terms []result.Term, on ...*take) {
 			on = append(on, c.takes.by[second(t.role)])
 		}
 	}
-	void(&one, on...)
+	if void(&one, on...) {
+		c.voids[one.Name] = true
+	}
 	c.answer.Checks = append(c.answer.Checks, one)
 	c.answer.Budget = append(c.answer.Budget, terms...)
 }
 
-// void takes the ground from a check that a problem of a take touches.
-func void(one *result.Check, takes ...*take) {
+// void takes the ground from a check that a problem of a take touches, and
+// reports whether there is one.
+func void(one *result.Check, takes ...*take) bool {
 	var names []string
 	for _, t := range takes {
 		if t == nil {
@@ -133,10 +154,11 @@ func void(one *result.Check, takes ...*take) {
 		}
 	}
 	if len(names) == 0 || one.Verdict == string(compare.None) {
-		return
+		return len(names) > 0
 	}
 	one.Verdict = string(compare.Unproven)
 	one.Reason = strings.Join(unrepeated(names), ", ") + ": see Problems for what to do"
+	return true
 }
 
 // unrepeated leaves each text once.
@@ -182,6 +204,8 @@ func (c *check) finish(u *unit.Unit) *result.Answer {
 	}
 	verdict, reason := compare.Combine(verdicts...)
 	a.Verdict = string(verdict)
+	c.seek(verdict)
+	c.whatToDo()
 	switch {
 	case reason == "":
 	case c.mark == nil && c.Circuit == nil:

@@ -8,8 +8,9 @@ import (
 	"padproof/compare"
 )
 
-// judgeLoss holds a loss against its limit and then asks what the bench could
-// not have seen: a PASS stands only where nothing is left open.
+// judgeLoss holds a loss against its limit and then asks what the ohmmeter speaks
+// against and what the bench could not have seen: a PASS stands only where nothing
+// is left open.
 func (d *Drawing) judgeLoss(k compare.LossCase, loss compare.Loss, limit compare.Limit) (compare.Verdict, string, []compare.Unseen) {
 	if loss.AtLeastDB > limit.High {
 		return compare.Fail, fmt.Sprintf("every part that would explain the reading, moved alone, gives %.2f dB or more in service", loss.AtLeastDB), nil
@@ -22,9 +23,15 @@ func (d *Drawing) judgeLoss(k compare.LossCase, loss compare.Loss, limit compare
 		reason += compare.Settles(loss.Budget)
 	}
 	if verdict == compare.Fail {
+		if reason == "" {
+			reason = loss.OhmRemark()
+		}
 		return verdict, reason, nil
 	}
 	unseen := compare.FindUnseen(k, loss.BenchDB, loss.BenchUDB, limit)
+	if doubt := k.OhmDoubt(loss); verdict == compare.Pass && doubt != "" {
+		return compare.Unproven, doubt, unseen
+	}
 	if verdict == compare.Pass && len(unseen) > 0 {
 		var names []string
 		for _, u := range unseen {

@@ -76,6 +76,7 @@ func (c *check) loss() error {
 		judge = c.eitherCheck
 	}
 	reading := c.reading()
+	c.findings.loss = &reading
 	one, terms, err := judge(reading)
 	if err != nil {
 		return err
@@ -99,7 +100,7 @@ func (d *Drawing) designedDB(freqHz float64) float64 {
 
 // drawnCheck holds the reading against the drawing.
 func (c *check) drawnCheck(reading compare.LossReading) (result.Check, []result.Term, error) {
-	k := compare.LossCase{Circuit: c.Circuit, Rig: c.Rig, Service: c.Service, Reading: reading}
+	k := compare.LossCase{Circuit: c.Circuit, Rig: c.Rig, Service: c.Service, Reading: reading, Ohms: c.ohms}
 	loss, err := compare.JudgeLoss(k)
 	if err != nil {
 		return result.Check{}, nil, err
@@ -114,6 +115,7 @@ func (c *check) drawnCheck(reading compare.LossReading) (result.Check, []result.
 		}
 		return one, terms, nil
 	}
+	c.judged = &judgedLoss{k, loss, limit}
 	verdict, reason, unseen := c.judgeLoss(k, loss, limit)
 	c.answer.Unseen = append(c.answer.Unseen, unseenOf(unseen)...)
 	decide(&one, verdict, reason, limit, loss.ServiceExpectedDB)

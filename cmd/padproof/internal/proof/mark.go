@@ -9,6 +9,7 @@ import (
 	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
+	"padproof/compare/generic"
 	"padproof/compare/network"
 	"padproof/compare/uncertainty"
 )
@@ -20,10 +21,6 @@ type Mark struct {
 	Ohms        float64 // the impedance the mark holds for, at both ends
 	OnThisBench bool    // the mark is what this bench should read
 }
-
-// matchedTolFrac is the tolerance taken for the parts of a pad without a
-// drawing: that of a drawing that gives none.
-const matchedTolFrac = 0.05
 
 // drawingOf is the unit's drawing, or what its mark says of it. Without either
 // the Drawing has no circuit.
@@ -64,35 +61,10 @@ func drawingOf(u *unit.Unit, mark *Mark) (*Drawing, error) {
 	return d, err
 }
 
-// matchedPad is the symmetrical matched pad of an impedance and a loss: a T and
-// a pi, or an H and an O where both ends of the rig are balanced or floating.
-// With K the voltage ratio the T's series arms are R0 (K-1)/(K+1), its shunt
-// 2 R0 K/(K^2-1); the pi's series arm R0 (K^2-1)/(2K), its shunts
-// R0 (K+1)/(K-1); H and O have the series arms in two halves (Bird, Electrical
-// Circuit Theory and Technology, ch. 41).
+// matchedPad is the symmetrical matched pad of an impedance and a loss: a T and a pi, or an H and an O
+// where both ends of the rig are balanced or floating.
 func matchedPad(rig *sheet.Rig, ohms, lossDB float64) (t, pi *network.Circuit, err error) {
-	k := math.Pow(10, lossDB/20)
-	arm, shunt := ohms*(k-1)/(k+1), 2*ohms*k/(k*k-1)
-	series, end := ohms*(k*k-1)/(2*k), ohms*(k+1)/(k-1)
-	if rig.Drive(false) == "unbalanced" || rig.Sense(false) == "unbalanced" {
-		if t, err = padOf("T", arm, arm, shunt); err == nil {
-			pi, err = padOf("pi", end, series, end)
-		}
-		return t, pi, err
-	}
-	if t, err = padOf("H", arm/2, arm/2, arm/2, arm/2, shunt); err == nil {
-		pi, err = padOf("O", end, series/2, series/2, end)
-	}
-	return t, pi, err
-}
-
-// padOf is a standard network of the given values, in the order of its parts.
-func padOf(name string, ohms ...float64) (*network.Circuit, error) {
-	var parts []network.Part
-	for i, v := range ohms {
-		parts = append(parts, network.Part{Ref: network.Refs(name)[i], Value: v, TolFrac: matchedTolFrac})
-	}
-	return network.New(name, parts)
+	return generic.Matched(rig.Drive(false) == "unbalanced" || rig.Sense(false) == "unbalanced", ohms, lossDB)
 }
 
 // eitherCheck judges a mark as both kinds of matched pad: what holds for one
@@ -118,7 +90,7 @@ func (c *check) eitherCheck(reading compare.LossReading) (result.Check, []result
 		u.Part += " of the " + other.Circuit.Name()
 		a.Unseen = append(a.Unseen, u)
 	}
-	a.Assumed = append(a.Assumed, fmt.Sprintf("a symmetrical matched pad, %s or %s, parts within ±%.0f %% (no drawing)", c.Circuit.Name(), other.Circuit.Name(), matchedTolFrac*100))
+	a.Assumed = append(a.Assumed, fmt.Sprintf("a symmetrical matched pad, %s or %s, parts within ±%.0f %% (no drawing)", c.Circuit.Name(), other.Circuit.Name(), generic.PartTolFrac*100))
 	if first.Verdict != second.Verdict {
 		first.Reason = fmt.Sprintf("as a %s pad it would be %s, as a %s pad %s; give a drawing, or use a bench of the impedance marked",
 			c.Circuit.Name(), first.Verdict, other.Circuit.Name(), second.Verdict)
@@ -156,10 +128,6 @@ func (c *check) benchCheck(reading compare.LossReading) (result.Check, []result.
 	return one, termsOf("loss", budget), nil
 }
 
-// commonOhms are impedances that pads are often marked for: common practice, no
-// source.
-var commonOhms = []float64{50, 75, 150, 200, 600}
-
 // withoutMark shows the loss beside what pads of common impedances would read.
 func (c *check) withoutMark(one *result.Check) error {
 	one.Verdict = string(compare.Unproven)
@@ -172,7 +140,7 @@ func (c *check) withoutMark(one *result.Check) error {
 	if lossDB < 0.1 {
 		return nil // no pad reads like this
 	}
-	for _, ohms := range commonOhms {
+	for _, ohms := range generic.CommonOhms {
 		pad, _, err := matchedPad(c.Sheet, ohms, lossDB)
 		if err != nil {
 			return err

@@ -35,6 +35,7 @@ func (c *check) noise() error {
 	if err != nil {
 		return err
 	}
+	c.findings.noise = &k
 	if n.Problem.Name != "" {
 		pad.problems = append(pad.problems, n.Problem)
 	}
@@ -145,6 +146,7 @@ func (c *check) hum() error {
 	if err != nil {
 		return err
 	}
+	c.findings.hum = &f
 	verdict, reason := f.Judge(c.Rule, limit)
 	one := emptyCheck("hum", "dBu")
 	one.Measured, one.Uncertainty = result.Number(f.Measured), result.Number(f.UDB)
@@ -167,7 +169,9 @@ func (c *check) humSources(tone *take, noiseRole string, gainDB float64) (compar
 		s.Noise = compare.HumReading{Hum: t.noise.Hum, FullScaleDBu: c.found.noiseDBu}
 	}
 	if s.Noise.Hum == nil && tone.placed != nil {
-		hum, err := silenceHum(tone, c.Sheet.MainsHz)
+		hum, err := recall(c.takes.shared, tone.key(fmt.Sprint("silence", c.Sheet.MainsHz)), func() (*analysis.Hum, error) {
+			return silenceHum(tone, c.Sheet.MainsHz)
+		})
 		if err != nil {
 			return s, err
 		}

@@ -41,7 +41,7 @@ func Predict(d *Drawing, o PredictOptions) (*result.Prediction, error) {
 		Bench:   conditionOf(c, d.Rig.Ends, o.ToneHz),
 		Service: conditionOf(c, d.Service, o.ToneHz),
 		Parts:   partLines(d, o),
-		Ohms:    ohmReadings(c),
+		Ohms:    ohmReadings(c), OhmNotes: ohmNotes(c),
 		Phantom: phantomOf(c, o.PhantomMA),
 		Unseen:  []result.Unseen{}, Budget: []result.Term{},
 		Recordings: recordings(d),
@@ -130,20 +130,16 @@ func partLines(d *Drawing, o PredictOptions) []result.PartLine {
 }
 
 // ohmReadings are what a sound unit reads, with the worst case of the parts'
-// tolerances: a resistance of a network of resistors only grows with each of
-// them, so all at their least and all at their most bound it.
+// tolerances and what a meter may add.
 func ohmReadings(c *network.Circuit) []result.OhmReading {
-	least, most := c, c
-	for _, p := range c.Parts() {
-		if p.Kind == network.Resistor {
-			least, most = least.With(p.Ref, p.Value*(1-p.TolFrac)), most.With(p.Ref, p.Value*(1+p.TolFrac))
-		}
-	}
 	readings := []result.OhmReading{}
 	for _, r := range compare.Readings(c) {
+		good := r.On(c)
+		low, high := r.Band(c)
 		line := result.OhmReading{
 			Pins: []string{r.PinA, r.PinB}, Joined: []string{},
-			Ohms: result.Number(r.On(c)), Low: result.Number(r.On(least)), High: result.Number(r.On(most)),
+			Ohms: result.Number(good), Low: result.Number(low), High: result.Number(high),
+			Meter: result.Number(compare.MeterTolFrac*good + compare.MeterPlusOhms),
 		}
 		if r.Joined != [2]string{} {
 			line.Joined = r.Joined[:]
@@ -151,6 +147,22 @@ func ohmReadings(c *network.Circuit) []result.OhmReading {
 		readings = append(readings, line)
 	}
 	return readings
+}
+
+// ohmNotes are what to mind when the meter is on this drawing.
+func ohmNotes(c *network.Circuit) []string {
+	notes := []string{}
+	has := map[network.Kind]bool{}
+	for _, p := range c.Parts() {
+		has[p.Kind] = true
+	}
+	if has[network.Capacitor] {
+		notes = append(notes, "There are capacitors: a meter charges them, so wait until the figure stands still. Read so, a capacitor is open, and the meter tells nothing of its value.")
+	}
+	if has[network.Inductor] {
+		notes = append(notes, "There are inductors: the drawing does not say what their wire has, so the reading may lie anywhere from that with none to that with their reactance at 1 kHz.")
+	}
+	return notes
 }
 
 func phantomOf(c *network.Circuit, milliamps float64) *result.Phantom {

@@ -54,6 +54,9 @@ func (c *check) response() error {
 		one.AtHz = result.NumberOf(f.AtHz)
 		decide(&one, f.Verdict, f.Reason, limit, 0)
 		enterCurve(&one, f)
+		if kind.name == "response" {
+			c.findings.response = f.Points
+		}
 		c.needTestSignalFor(&one)
 		c.add(one, termsOf(kind.name, f.Budget), straight, through)
 	}

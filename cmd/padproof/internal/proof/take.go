@@ -15,22 +15,23 @@ import (
 
 // A take is one recording of the unit, opened and then measured.
 type take struct {
-	role     string
-	path     string
-	file     *capture.Take
-	facts    capture.Facts
-	channel  int
-	samples  *capture.Channel
-	reading  *reading // nil: nobody asks how far it is
-	found    []analysis.Stretch
-	measured *analysis.Measurement
-	judged   *analysis.Tone      // the stretch that the loss is judged at
-	placed   *analysis.Placement // where the test signal lies; nil without it
-	noise    *analysis.Noise     // of a take that holds no tone
-	steady   analysis.Steadiness
-	stepped  bool // the test signal's step was read: automatic gain would have shown
-	sha256   string
-	problems []compare.Problem
+	role      string
+	path      string
+	inherited bool // it serves other units too
+	file      *capture.Take
+	facts     capture.Facts
+	channel   int
+	samples   *capture.Channel
+	reading   *reading // nil: nobody asks how far it is
+	found     []analysis.Stretch
+	measured  *analysis.Measurement
+	judged    *analysis.Tone      // the stretch that the loss is judged at
+	placed    *analysis.Placement // where the test signal lies; nil without it
+	noise     *analysis.Noise     // of a take that holds no tone
+	steady    analysis.Steadiness
+	stepped   bool // the test signal's step was read: automatic gain would have shown
+	sha256    string
+	problems  []compare.Problem
 }
 
 func openTake(role, path string) (*take, error) {
@@ -108,8 +109,9 @@ func hertzList(freqs []float64) string {
 	return text + " Hz"
 }
 
-// measure reads the whole take once: its tones, its facts, its hash.
-func (t *take) measure() error {
+// measure reads the whole take once: its tones, its facts, its hash; then, of the
+// test signal, its step and its sweep.
+func (t *take) measure(linearityDB float64) error {
 	if len(t.found) > 0 {
 		if err := t.place(); err != nil {
 			return err
@@ -127,8 +129,10 @@ func (t *take) measure() error {
 	}
 	t.measured = m
 	t.noteSamples()
-	t.sha256, err = t.file.SHA256()
-	return err
+	if t.sha256, err = t.file.SHA256(); err != nil {
+		return err
+	}
+	return errors.Join(t.noteStep(linearityDB), t.noteGaps())
 }
 
 // noteSamples names what the samples themselves show.

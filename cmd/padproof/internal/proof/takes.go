@@ -18,8 +18,9 @@ import (
 // legs-before and both are a take each: the second has the role with " 2"
 // behind it.
 type takes struct {
-	by    map[string]*take
-	order []*take // as opened; one for each file
+	by     map[string]*take
+	order  []*take // as opened; one for each file
+	shared *Shared // what takes that serve several units have shown; nil: nothing is kept
 }
 
 // second is the key of a take's second channel.
@@ -49,8 +50,8 @@ func (ts *takes) again(role string) *analysis.Tone {
 
 // openTakes opens every take of the unit. One that cannot be read ends it all:
 // a take that somebody made is part of what he wants judged.
-func openTakes(u *unit.Unit) (*takes, error) {
-	ts := &takes{by: map[string]*take{}}
+func openTakes(u *unit.Unit, shared *Shared) (*takes, error) {
+	ts := &takes{by: map[string]*take{}, shared: shared}
 	for _, role := range unit.Roles() {
 		path := u.Files[role]
 		if path == "" {
@@ -61,6 +62,7 @@ func openTakes(u *unit.Unit) (*takes, error) {
 			ts.close()
 			return nil, err
 		}
+		t.inherited = u.Inherited[path] || u.Channel > 0
 		ts.by[role] = t
 		ts.order = append(ts.order, t)
 	}
@@ -97,19 +99,23 @@ var (
 // other take, what that tells to look for: under a strong pad the strongest
 // line may be hum. Then the takes are read, two at once. With anything played, a
 // take straight through need not hold a tone.
-func (ts *takes) measure(channel int, matchDB, mainsHz float64, anything bool) error {
+func (ts *takes) measure(channel int, r rigReads, anything bool) error {
+	matchDB, mainsHz := r.channelMatchDB, r.mainsHz
 	first, err := ts.settleFirst(channel, matchDB)
 	if err != nil {
 		return err
 	}
-	if err := first.find(nil); err != nil {
+	if err := first.readOnce(ts.shared, "find", func() error { return first.find(nil) }); err != nil {
 		return err
 	}
 	if anything {
 		first.problems = without(first.problems, compare.NoTone, compare.TooShort)
 	}
 	atHz := frequencies(first.found)
-	jobs := []func() error{first.measure}
+	how := fmt.Sprint(atHz, anything, r)
+	jobs := []func() error{func() error {
+		return first.readOnce(ts.shared, "measure"+how, func() error { return first.measure(r.linearityDB) })
+	}}
 	lookHz := map[string][]float64{}
 	if len(atHz) > 0 {
 		for _, role := range legTakes {
@@ -126,19 +132,31 @@ func (ts *takes) measure(channel int, matchDB, mainsHz float64, anything bool) e
 		if !ofLegs {
 			hz = atHz
 		}
-		jobs = append(jobs, func() error { return t.findAndMeasure(hz) })
+		jobs = append(jobs, func() error {
+			return t.readOnce(ts.shared, fmt.Sprint(hz, r), func() error { return t.findAndMeasure(hz, r.linearityDB) })
+		})
 	}
 	if t := ts.by[unit.Calibration]; t != nil {
 		t.use(min(first.channel, t.facts.Channels))
-		jobs = append(jobs, func() error { return errors.Join(t.find(nil), t.measure()) })
+		jobs = append(jobs, func() error {
+			return t.readOnce(ts.shared, fmt.Sprint(r), func() error { return errors.Join(t.find(nil), t.measure(r.linearityDB)) })
+		})
 	}
 	for _, role := range noiseTakes {
 		if t := ts.by[role]; t != nil {
 			t.use(min(ts.leader(unit.PadNoise, first).channel, t.facts.Channels))
-			jobs = append(jobs, func() error { return t.measureNoise(mainsHz) })
+			jobs = append(jobs, func() error {
+				return t.readOnce(ts.shared, fmt.Sprint(mainsHz), func() error { return t.measureNoise(mainsHz) })
+			})
 		}
 	}
-	return inTwos(jobs)
+	return atOnce(r.workers, jobs)
+}
+
+// rigReads is what of the rig tells on how takes are read.
+type rigReads struct {
+	channelMatchDB, mainsHz, linearityDB float64
+	workers                              int // takes read at once
 }
 
 // leader is the take whose channel a role follows: with both channels in one
@@ -190,13 +208,13 @@ func (ts *takes) toneTakes(first *take) []*take {
 	return all
 }
 
-func (t *take) findAndMeasure(atHz []float64) error {
+func (t *take) findAndMeasure(atHz []float64, linearityDB float64) error {
 	if len(atHz) > 0 {
 		if err := t.find(atHz); err != nil {
 			return err
 		}
 	}
-	return t.measure()
+	return t.measure(linearityDB)
 }
 
 // legTonesHz are the tones to look for in the legs: before's, or where the legs
@@ -279,23 +297,12 @@ func (ts *takes) sameTone(role, other string) bool {
 	return okA && okB && compare.SameSamples(a, b)
 }
 
-// noteSteps looks for automatic gain, and for gaps in the sweep, in every take of
-// the test signal.
-func (ts *takes) noteSteps(linearityDB float64) error {
-	for _, t := range ts.by {
-		if err := errors.Join(t.noteStep(linearityDB), t.noteGaps()); err != nil {
-			return err
-		}
-	}
-	return nil
-}
-
-// inTwos runs jobs, two at a time, and returns the first error in their order.
-func inTwos(jobs []func() error) error {
+// atOnce runs jobs, so many at a time, and returns the first error in their order.
+func atOnce(workers int, jobs []func() error) error {
 	errs := make([]error, len(jobs))
 	next := make(chan int)
 	var wait sync.WaitGroup
-	for range min(2, len(jobs)) {
+	for range min(workers, len(jobs)) {
 		wait.Go(func() {
 			for i := range next {
 				errs[i] = guarded(jobs[i])

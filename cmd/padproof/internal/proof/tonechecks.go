@@ -29,6 +29,7 @@ func (c *check) polarity() error {
 	if sign != 0 {
 		one.Measured = result.Number(sign)
 	}
+	c.findings.polarity = sign
 	if c.Limits.SamePolarity {
 		one.Low, one.High = 1, 1
 		switch {
@@ -149,6 +150,10 @@ func (c *check) legs() error {
 	f, err := compare.JudgeLegs(c.legsCase(hotTone, coldTone, limit))
 	if err != nil {
 		return err
+	}
+	c.findings.legs, c.findings.deadLegs, c.findings.legsHz = &f, [2]bool{hotTone.NoTone, coldTone.NoTone}, hotTone.Tone.FreqHz
+	if hotTone.NoTone {
+		c.findings.legsHz = coldTone.Tone.FreqHz
 	}
 	one, terms := checkOf("legs", "dB", f.Finding)
 	one.Expected = 0

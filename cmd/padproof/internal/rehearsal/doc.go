@@ -6,7 +6,8 @@
 //  1. Put the faults into the drawing (network.Fault), and let [Draw] draw a unit and a
 //     bench from their tolerances, or take both as stated.
 //  2. Fill a [Plan] and ask [Plan.Check].
-//  3. [Plan.Record] writes the takes and the sheets into a folder.
+//  3. [Plan.Record] writes the takes and the sheets into a folder. [Plan.Read] is what an
+//     ohmmeter shows on the unit.
 //
 // The true figures come from the model, not from the takes: the loss of Plan.Pad between
 // Plan.Bench.Ends, and [Plan.RecordedLossDB].

@@ -21,10 +21,14 @@ type Take struct {
 	Clipped  bool // something lay beyond full scale
 }
 
-// Sheets are the files that describe pad and rig; copies of them lie beside the takes.
+// Sheets are the files that describe pad and rig; copies of them lie beside the takes, and
+// so does the text of an ohms.toml, where there is one.
 type Sheets struct {
 	Pad, Rig string
+	Ohms     string // its text; "" for none
 }
+
+const ohmsSheet = "ohms.toml"
 
 // names returns the file in a unit's folder for each sheet.
 func (s Sheets) names() [][2]string {
@@ -59,6 +63,9 @@ func (p Plan) record(ctx context.Context, f *unitFolder, sheets Sheets) ([]Take,
 		if err := f.copySheet(s[0], s[1]); err != nil {
 			return nil, err
 		}
+	}
+	if err := f.writeOhms(sheets.Ohms); err != nil {
+		return nil, err
 	}
 	var takes []Take
 	for _, role := range p.Takes {
@@ -142,7 +149,7 @@ func (f *unitFolder) vacant(roles []string, sheets Sheets) error {
 	}
 	for _, entry := range there {
 		name, path := strings.ToLower(entry.Name()), filepath.Join(f.path, entry.Name())
-		taken := false
+		taken := name == ohmsSheet && sheets.Ohms != ""
 		for _, role := range roles {
 			taken = taken || name == role+".wav"
 		}
@@ -185,11 +192,24 @@ func (f *unitFolder) copySheet(from, name string) error {
 	if f.kept[name] {
 		return nil
 	}
-	to := filepath.Join(f.path, name)
 	data, err := os.ReadFile(from)
 	if err != nil {
 		return err
 	}
+	return f.write(name, data)
+}
+
+// writeOhms writes the readings of an ohmmeter, where there are some.
+func (f *unitFolder) writeOhms(text string) error {
+	if text == "" {
+		return nil
+	}
+	return f.write(ohmsSheet, []byte(text))
+}
+
+// write makes a file of a name that is vacant.
+func (f *unitFolder) write(name string, data []byte) error {
+	to := filepath.Join(f.path, name)
 	out, err := os.OpenFile(to, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o666)
 	if err != nil {
 		return err

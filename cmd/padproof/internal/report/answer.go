@@ -16,8 +16,11 @@ func AnswerText(w io.Writer, a *result.Answer, verbose bool) error {
 	verdict(p, a)
 	checks(p, a)
 	tones(p, a)
+	ohmsSeen(p, a)
 	problems(p, a)
 	suspects(p, a)
+	rework(p, a)
+	withoutDrawing(p, a)
 	bullets(p, "What this bench cannot see", unseenTexts(a.Unseen))
 	bullets(p, "Taken for granted, since rig.toml leaves it out", a.Assumed)
 	bullets(p, "Notes", append(append([]string(nil), a.Notes...), a.Warnings...))
@@ -174,16 +177,6 @@ func problems(p *page, a *result.Answer) {
 			}
 			p.item("  - ", fmt.Sprintf("%s: %s: %s", place, q.Problem, q.Text))
 		}
-	}
-}
-
-func suspects(p *page, a *result.Answer) {
-	if len(a.Suspects) == 0 {
-		return
-	}
-	p.heading("Most likely wrong")
-	for _, s := range a.Suspects {
-		p.item("  - ", fmt.Sprintf("%s (weight %s): %s", s.Fault, fixed(s.Weight, 2), s.Confirm.How))
 	}
 }
 

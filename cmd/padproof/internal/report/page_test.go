@@ -427,17 +427,25 @@ func TestPageGivesTimeAndVersion(t *testing.T) {
 func TestPageCautions(t *testing.T) {
 	passes := sound()
 	passes.Verdict, passes.Checks[0].Verdict = "PASS", "PASS"
+	reworked := sound()
+	reworked.Verdict, reworked.Rework = "FAIL", everything().Rework
 	for name, tt := range map[string]struct {
-		a         *result.Answer
-		any, ohms bool
-	}{"pass": {passes, false, false}, "unproven": {sound(), true, false}, "suspects": {everything(), true, true}} {
+		a                 *result.Answer
+		any, ohms, solder bool
+	}{
+		"pass": {passes, false, false, false}, "unproven": {sound(), true, false, false},
+		"rework": {reworked, true, false, true}, "suspects": {everything(), true, true, true},
+	} {
 		page := html.UnescapeString(pageOf(t, tt.a))
 		for _, c := range result.Cautions {
 			if strings.Contains(page, c) != tt.any {
 				t.Errorf("%s: caution %q there: %v, want %v", name, c, !tt.any, tt.any)
 			}
 		}
-		if strings.Contains(page, result.OhmsCaution) != tt.ohms {
+		if strings.Contains(page, result.SolderCaution) != tt.solder {
+			t.Errorf("%s: the soldering iron's caution there: %v, want %v", name, !tt.solder, tt.solder)
+		}
+		if strings.Contains(page, result.OhmCaution) != tt.ohms {
 			t.Errorf("%s: the ohmmeter's caution there: %v, want %v", name, !tt.ohms, tt.ohms)
 		}
 	}

@@ -33,7 +33,7 @@ func suspectViews(a *result.Answer, marked func(parts []string) *Picture) ([]sus
 			Predicted: predictedFacts(field+"/predicted", s.Predicted),
 			Confirm:   confirmFacts(field+"/confirm", s.Confirm), How: capital(s.Confirm.How),
 		}
-		if known(s.ByPercent) && known(s.ByPercentU) {
+		if known(s.ByPercent) && known(s.ByPercentU) && !strings.Contains(s.Fault, " or ") {
 			one.By = phrase{words("off by "), figure(field+"/by_percent", *s.ByPercent, toDigits(float64(*s.ByPercent), 3)),
 				words(" % ± "), figure(field+"/by_percent_u", *s.ByPercentU, toDigits(float64(*s.ByPercentU), 2)), words(" %")}
 		}
@@ -88,14 +88,6 @@ func confirmFacts(field string, c result.Confirm) []fact {
 		facts = append(facts, fact{"With the next suspect", reads("next_ohms", *c.NextOhms)})
 	}
 	return facts
-}
-
-// capital begins a sentence.
-func capital(text string) string {
-	if text == "" {
-		return text
-	}
-	return strings.ToUpper(text[:1]) + text[1:]
 }
 
 // unexplained reports whether nothing looked for explains the figures better than

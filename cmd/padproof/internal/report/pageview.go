@@ -30,9 +30,12 @@ type pageView struct {
 	Octaves  *table
 	Problems []problemView
 	Suspects []suspectView
-	NoSingle bool   // none of the suspects explains the figures well
-	None     phrase // the weight of that
-	Ohms     string // the caution before an ohmmeter goes on
+	NoSingle bool     // none of the suspects explains the figures well
+	None     phrase   // the weight of that
+	Handling []string // cautions before an ohmmeter or a soldering iron goes on
+	Reworks  []reworkView
+	Likely   *table // what might be wrong, without a drawing
+	Readings *table // of an ohmmeter
 	Cautions []string
 	Pictures []pictureView
 	Found    []fact
@@ -113,12 +116,16 @@ func viewOf(a *result.Answer, info PageInfo) (*pageView, error) {
 		}
 		v.Pictures = append(v.Pictures, one)
 	}
-	if len(v.Suspects)+len(a.Unseen)+len(v.Problems) > 0 || a.Verdict == "UNPROVEN" {
+	if len(a.Suspects)+len(a.Unseen)+len(v.Problems) > 0 || a.Verdict != "PASS" { // something is to be done
 		v.Cautions = result.Cautions
 	}
 	v.NoSingle, v.None = unexplained(a), noneWeight(a)
-	if len(v.Suspects)+len(a.Unseen) > 0 {
-		v.Ohms = "Before an ohmmeter goes on: " + result.OhmsCaution
+	v.Reworks, v.Likely, v.Readings = reworkViews(a), likelihoodTable(a), ohmsTable(a)
+	if len(v.Suspects)+len(a.Unseen)+len(a.WithoutDrawing) > 0 {
+		v.Handling = append(v.Handling, result.OhmCaution)
+	}
+	if len(a.Rework)+len(a.WithoutDrawing) > 0 {
+		v.Handling = append(v.Handling, result.SolderCaution)
 	}
 	return v, nil
 }

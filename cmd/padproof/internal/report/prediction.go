@@ -86,26 +86,6 @@ func signed(n result.Number) string {
 	return text
 }
 
-func ohmReadings(p *page, r *result.Prediction) {
-	if len(r.Ohms) == 0 {
-		return
-	}
-	p.heading("What an ohmmeter reads on a sound unit, unplugged, signal and phantom off")
-	rows := [][]string{{"pins", "joined", "reads", "sound from", "to"}}
-	for _, o := range r.Ohms {
-		joined := dash
-		if len(o.Joined) > 0 {
-			joined = strings.Join(o.Joined, " and ")
-		}
-		low, high := dash, dash
-		if o.Ohms.OK() {
-			low, high = metered(o.Low), metered(o.High)
-		}
-		rows = append(rows, []string{strings.Join(o.Pins, " to "), joined, metered(o.Ohms), low, high})
-	}
-	p.table("  ", rows)
-}
-
 func phantom(p *page, r *result.Prediction) {
 	if r.Phantom == nil {
 		return

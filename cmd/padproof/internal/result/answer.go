@@ -12,16 +12,20 @@ type Answer struct {
 	Verdict string `json:"verdict"` // PASS, FAIL or UNPROVEN
 	Reason  string `json:"reason"`
 
-	Checks      []Check   `json:"checks"`
-	Suspects    []Suspect `json:"suspects"`
-	Unexplained *Number   `json:"unexplained,omitempty"` // where suspects were sought: the weight of "none of these explains it"
-	Unseen      []Unseen  `json:"unseen"`
-	Tones       []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
-	Simulated   bool      `json:"simulated"`
-	Found       *Found    `json:"found,omitempty"`
-	Budget      []Term    `json:"budget"`
-	Captures    []Capture `json:"captures"`
-	Sheets      []Sheet   `json:"sheets"` // as used
+	Checks         []Check      `json:"checks"`
+	Suspects       []Suspect    `json:"suspects"`
+	Unexplained    *Number      `json:"unexplained,omitempty"` // where suspects were sought: the weight of "none of these explains it"
+	Unseen         []Unseen     `json:"unseen"`
+	Rework         []Rework     `json:"rework"`
+	WithoutDrawing []Likelihood `json:"without_drawing"`
+
+	Tones     []Tone    `json:"tones,omitempty"` // where several tones were played, the loss at each
+	Ohms      []OhmSeen `json:"ohms,omitempty"`  // ohmmeter readings taken
+	Simulated bool      `json:"simulated"`
+	Found     *Found    `json:"found,omitempty"`
+	Budget    []Term    `json:"budget"`
+	Captures  []Capture `json:"captures"`
+	Sheets    []Sheet   `json:"sheets"` // as used
 
 	Assumed  []string `json:"assumed"`  // cautious figures taken because the rig sheet leaves them out
 	Notes    []string `json:"notes"`    // what the answer does not cover
@@ -141,6 +145,20 @@ type Confirm struct {
 type Unseen struct {
 	Part string `json:"part"`
 	Text string `json:"text"`
+}
+
+// An OhmSeen is an ohmmeter reading that was taken, beside what the same meter may
+// show on a sound unit. Ohms and GoodHigh are null for an open circuit.
+type OhmSeen struct {
+	Pins      []string `json:"pins"`
+	Joined    []string `json:"joined"` // pins that were joined meanwhile
+	Ohms      Number   `json:"ohms"`
+	GoodLow   Number   `json:"good_low"`
+	GoodHigh  Number   `json:"good_high"`
+	MeterTol  Number   `json:"meter_tolerance"` // fraction of the reading
+	MeterPlus Number   `json:"meter_plus_ohms"`
+	Agrees    bool     `json:"agrees"` // a sound unit can show it
+	Text      string   `json:"text"`
 }
 
 // Found is what the takes told of the rig itself, with expanded uncertainty.

@@ -17,6 +17,7 @@ type Prediction struct {
 	Parts    []PartLine   `json:"parts"`
 	InputDBu Number       `json:"input_dbu"` // level at the pad's input that the dissipation is for
 	Ohms     []OhmReading `json:"ohms"`
+	OhmNotes []string     `json:"ohm_notes"` // what to mind when reading this drawing
 	Phantom  *Phantom     `json:"phantom,omitempty"`
 
 	Limit      *Limit      `json:"limit,omitempty"` // of the loss in service
@@ -64,14 +65,16 @@ type PartLine struct {
 	DissipationW Number `json:"dissipation_w"`
 }
 
-// An OhmReading is what a sound unit reads on an ohmmeter, unplugged. Ohms is
-// null for an open circuit.
+// An OhmReading is what a sound unit reads on an ohmmeter, unplugged: Low to High
+// by the tolerances of its parts, and what a usual meter may be off by beside.
+// Ohms is null for an open circuit.
 type OhmReading struct {
 	Pins   []string `json:"pins"`
 	Joined []string `json:"joined"` // pins to join meanwhile
 	Ohms   Number   `json:"ohms"`
 	Low    Number   `json:"low"`
 	High   Number   `json:"high"`
+	Meter  Number   `json:"meter_plus_minus"`
 }
 
 // Phantom is the voltage a leg loses between the pad's output, where P48 is

@@ -1,5 +1,6 @@
-// Package sheet reads the two sheets that a user writes: pad.toml, the drawing
-// of a pad, and rig.toml, the bench that records it.
+// Package sheet reads the sheets that a user writes: pad.toml, the drawing of a
+// pad, rig.toml, the bench that records it, and ohms.toml, what an ohmmeter read
+// on one unit.
 //
 // Usual order of calls:
 //
@@ -10,7 +11,9 @@
 //     line.
 //  3. Ask [Rig.Drive], [Rig.Sense] and [Rig.LegsLoadOhms] with the pad's kind
 //     (balanced or not), since what is left out depends on it.
-//  4. Say [Rig.Assumed] with the answer: every figure that nobody wrote.
+//  4. [ReadOhms] reads an ohms.toml, [ParseReading] one reading as it is typed.
+//     Whether the drawing has the nodes is the circuit's to say: [Ohms.Errorf].
+//  5. Say [Rig.Assumed] with the answer: every figure that nobody wrote.
 //
 // # Units and signs
 //

@@ -50,6 +50,21 @@ func checkPad(t *testing.T, data []byte) {
 	}
 }
 
+func checkOhms(t *testing.T, data []byte) {
+	t.Helper()
+	o, err := ParseOhmsSheet("ohms.toml", data)
+	if err != nil {
+		checkError(t, data, err, o == nil)
+		return
+	}
+	for _, r := range o.Readings {
+		if !(r.Ohms >= 0) || r.Line < 1 || r.Pins[0] == "" || r.Pins[1] == "" || r.Pins[0] == r.Pins[1] {
+			t.Fatalf("reading %+v out of\n%s", r, data)
+		}
+	}
+	checkFigure(t, data, o.MeterTolFrac, o.MeterPlusOhms)
+}
+
 func checkRig(t *testing.T, data []byte) {
 	t.Helper()
 	r, err := ParseRig("rig.toml", data)
@@ -72,7 +87,7 @@ func checkFigure(t *testing.T, data []byte, figures ...*float64) {
 }
 
 // lineless are the faults that no line has.
-var lineless = []string{"the sheet is empty", "network is missing", "larger than a sheet"}
+var lineless = []string{"the sheet is empty", "network is missing", "readings is missing", "larger than a sheet"}
 
 func checkError(t *testing.T, data []byte, err error, nothing bool) {
 	t.Helper()
@@ -132,6 +147,7 @@ func TestMutatedSheets(t *testing.T) {
 	for range 5000 {
 		checkPad(t, mutate(rnd, pads[rnd.IntN(len(pads))]))
 		checkRig(t, mutate(rnd, rigs[rnd.IntN(len(rigs))]))
+		checkOhms(t, mutate(rnd, []byte(soundOhms)))
 	}
 }
 
@@ -181,4 +197,9 @@ func FuzzRig(f *testing.F) {
 		f.Add(data)
 	}
 	f.Fuzz(checkRig)
+}
+
+func FuzzOhms(f *testing.F) {
+	f.Add([]byte(soundOhms))
+	f.Fuzz(checkOhms)
 }

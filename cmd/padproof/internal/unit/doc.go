@@ -15,15 +15,17 @@
 // # Names
 //
 // A take is ROLE.wav in its unit's folder, SERIAL.ROLE.wav in a flat lot, where a
-// serial may hold dots. Sheets are pad.toml and rig.toml. Case does not count in
-// any of these, so two names that differ in case alone are two files for one
-// role: an error. Hidden files are passed over, and with them the "._" files that
-// some systems put beside the real ones.
+// serial may hold dots. Sheets are pad.toml and rig.toml; ohms.toml, the
+// unit's ohmmeter readings, is named as a take is (SERIAL.ohms.toml). Case does not
+// count in any of these, so two names that differ in case alone are two files for
+// one role: an error. Hidden files are passed over, and with them the "._" files
+// that some systems put beside the real ones.
 //
 // # What comes from above
 //
 // Sheets and the takes of [Shared] roles may lie one folder up (in a flat lot:
 // in the folder itself, without a serial) and then serve every unit there. What
-// lies in the unit's own folder wins. One folder up is meant by the name as it
-// was given: of a link to a folder it is the folder that holds the link.
+// lies in the unit's own folder wins. Ohmmeter readings are never shared. One folder
+// up is meant by the name as it was given: of a link to a folder it is the folder
+// that holds the link.
 package unit

@@ -16,6 +16,10 @@ const (
 	OneUnit   Layout = "unit"    // takes named ROLE.wav
 	FlatLot   Layout = "flat"    // takes named SERIAL.ROLE.wav
 	FolderLot Layout = "folders" // folders, one a unit
+
+	// ChannelLot is a lot whose takes hold a unit in each channel: what OneUnit
+	// looks like where lot.toml names the channels.
+	ChannelLot Layout = "channels"
 )
 
 // LayoutOf tells how a folder holds its units, by names alone. Takes that cannot
@@ -93,6 +97,7 @@ func flatUnit(s *shelf, serial string) *Unit {
 	u.takes(s, serial, false)
 	u.takes(s, "", true)
 	u.sheets(s, true)
+	u.readings(s, serial)
 	u.dropBefore()
 	return u
 }
@@ -101,7 +106,7 @@ func flatUnit(s *shelf, serial string) *Unit {
 // of its serial; it returns those that belong to none.
 func (s *shelf) warnFlat(bySerial map[string]*Unit) []string {
 	lacking := slices.DeleteFunc([]string{padSheet, rigSheet}, func(name string) bool { return len(s.sheets[name]) > 0 })
-	warnings := s.oddSheets(lacking)
+	warnings := append(s.oddSheets(lacking), s.oddOhms(bySerial)...)
 	for _, t := range s.takes {
 		prefix := ""
 		if t.serial != "" {
@@ -114,6 +119,24 @@ func (s *shelf) warnFlat(bySerial map[string]*Unit) []string {
 			warnings = append(warnings, noRole(t.name, prefix, t.last()))
 		case t.serial == "" && !Shared(t.role):
 			warnings = append(warnings, t.name+" names no unit and was left out; name it SERIAL."+t.name)
+		}
+	}
+	return warnings
+}
+
+// oddOhms warns of readings in a flat folder that are no unit's there.
+func (s *shelf) oddOhms(bySerial map[string]*Unit) []string {
+	var warnings []string
+	for _, serial := range slices.Sorted(maps.Keys(s.ohms)) {
+		if bySerial[serial] != nil {
+			continue
+		}
+		for _, name := range s.ohms[serial] {
+			why := "there is no take of that unit"
+			if serial == "" {
+				why = "readings are one unit's; name it SERIAL." + ohmsSheet
+			}
+			warnings = append(warnings, name+" was left out: "+why)
 		}
 	}
 	return warnings

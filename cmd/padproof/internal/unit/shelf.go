@@ -14,10 +14,10 @@ import (
 const (
 	padSheet = "pad.toml"
 	rigSheet = "rig.toml"
-)
+	lotSheet = "lot.toml"
 
-// otherSheets are sheets that a folder may hold and this package does not use.
-var otherSheets = []string{"ohms.toml", "lot.toml"}
+	ohmsSheet = "ohms.toml" // one unit's: SERIAL.ohms.toml in a flat lot
+)
 
 // otherAudio are endings of recordings that are no WAV.
 var otherAudio = []string{".flac", ".aif", ".aiff", ".caf", ".mp3", ".m4a", ".ogg", ".opus", ".wma", ".w64", ".wave", ".bwf"}
@@ -31,13 +31,15 @@ type take struct {
 
 // shelf is what a folder holds, by names.
 type shelf struct {
-	folder  string
-	takes   []take
-	byRole  map[string][]string // names of takes by serial and role, see takeKey
-	sheets  map[string][]string // names of sheets by pad.toml and rig.toml
-	odd     []string            // .toml files that are no sheet
-	foreign map[string]string   // by role: a recording that is no WAV
-	folders []string
+	folder   string
+	takes    []take
+	byRole   map[string][]string // names of takes by serial and role, see takeKey
+	sheets   map[string][]string // names of sheets by pad.toml and rig.toml
+	ohms     map[string][]string // names of readings by serial in small letters, "" for none
+	lotSheet string              // lot.toml as it is named; "" if there is none
+	odd      []string            // .toml files that are no sheet
+	foreign  map[string]string   // by role: a recording that is no WAV
+	folders  []string
 }
 
 // look sorts what a folder holds.
@@ -46,7 +48,7 @@ func look(folder string) (*shelf, error) {
 	if err != nil {
 		return nil, noFolder(folder, err)
 	}
-	s := &shelf{folder: folder, byRole: map[string][]string{}, sheets: map[string][]string{}, foreign: map[string]string{}}
+	s := &shelf{folder: folder, byRole: map[string][]string{}, sheets: map[string][]string{}, ohms: map[string][]string{}, foreign: map[string]string{}}
 	for _, e := range entries {
 		if !strings.HasPrefix(e.Name(), ".") {
 			s.put(e)
@@ -72,13 +74,23 @@ func (s *shelf) put(e fs.DirEntry) {
 	case strings.EqualFold(name, padSheet), strings.EqualFold(name, rigSheet):
 		key := strings.ToLower(name)
 		s.sheets[key] = append(s.sheets[key], name)
-	case ending == ".toml" && !slices.Contains(otherSheets, strings.ToLower(name)):
+	case strings.EqualFold(name, lotSheet):
+		s.lotSheet = name
+	case strings.EqualFold(name, ohmsSheet), hasFoldedSuffix(name, "."+ohmsSheet):
+		serial := strings.ToLower(strings.TrimSuffix(name[:len(name)-len(ohmsSheet)], "."))
+		s.ohms[serial] = append(s.ohms[serial], name)
+	case ending == ".toml":
 		s.odd = append(s.odd, name)
 	case isRole && slices.Contains(otherAudio, ending):
 		s.foreign[role] = name
 	case isFolder(s.folder, e):
 		s.folders = append(s.folders, name)
 	}
+}
+
+// hasFoldedSuffix tells whether a name ends so, case not counting.
+func hasFoldedSuffix(name, end string) bool {
+	return len(name) > len(end) && strings.EqualFold(name[len(name)-len(end):], end)
 }
 
 // isFolder tells whether an entry is a folder, or a link to one.

@@ -1,7 +1,10 @@
 package unit
 
 import (
+	"maps"
 	"path/filepath"
+	"slices"
+	"strings"
 
 	"padproof/cmd/padproof/internal/nearest"
 )
@@ -12,9 +15,11 @@ type Unit struct {
 	Folder    string            // where it lies, as it was given; "" for files named one by one
 	PadFile   string            // "" if there is none
 	RigFile   string            // "" if there is none
+	OhmsFile  string            // ohmmeter readings, never another unit's; "" if there are none
 	Files     map[string]string // the path of each take by its role
 	Inherited map[string]bool   // the paths, of PadFile, RigFile and Files, that serve other units too
 	Warnings  []string          // one sentence each, for the reader of the answer
+	Channel   int               // the channel of every take that is this unit's, from 1; 0 where a take is one unit's
 
 	prefix  string            // before the role in the unit's names: "0417." in a flat lot
 	fault   *Error            // two files for one role
@@ -39,11 +44,12 @@ func Open(folder string) (*Unit, error) {
 	u.looked = []string{folder}
 	u.takes(own, "", false)
 	u.sheets(own, false)
+	u.readings(own, "")
 	u.warn(own)
 	if above := parent(folder); above != "" {
 		u.inherit(above)
 	}
-	u.Warnings = append(u.Warnings, own.oddSheets(u.lacking())...)
+	u.Warnings = append(u.Warnings, own.oddSheets(append(u.lacking(), u.lackingOhms()...))...)
 	if err := u.Ready(); err != nil {
 		return nil, err
 	}
@@ -99,6 +105,11 @@ func (u *Unit) sheets(s *shelf, inherited bool) {
 	}
 }
 
+// readings adds the ohmmeter readings of a serial.
+func (u *Unit) readings(s *shelf, serial string) {
+	u.add(s, s.ohms[strings.ToLower(serial)], "sheet", false, func(path string) { u.OhmsFile = path })
+}
+
 // lacking returns the names of the sheets that u does not have.
 func (u *Unit) lacking() []string {
 	var names []string
@@ -109,6 +120,14 @@ func (u *Unit) lacking() []string {
 		names = append(names, rigSheet)
 	}
 	return names
+}
+
+// lackingOhms returns the name of the readings where u has none.
+func (u *Unit) lackingOhms() []string {
+	if u.OhmsFile != "" {
+		return nil
+	}
+	return []string{ohmsSheet}
 }
 
 // add sets what the only name of names stands for; with several it notes the
@@ -162,6 +181,11 @@ func (u *Unit) warn(s *shelf) {
 			u.slip(t.name, "", t.role)
 		}
 	}
+	for _, serial := range slices.Sorted(maps.Keys(s.ohms)) {
+		if serial != "" {
+			u.Warnings = append(u.Warnings, s.path(s.ohms[serial][0])+" was left out: in a unit's own folder its name is "+ohmsSheet)
+		}
+	}
 	for role, name := range s.foreign {
 		u.instead[role] = s.path(name) + " is there: save it again as WAV, named " + role + ".wav"
 	}
@@ -190,6 +214,9 @@ func (u *Unit) slipsAbove(s *shelf) {
 				u.instead[role] = s.path(name) + " serves no unit: move it into the folder of the unit that it was made of"
 			}
 		}
+	}
+	for _, name := range s.ohms[""] {
+		u.Warnings = append(u.Warnings, s.path(name)+" was left out: readings are one unit's; move it into the folder of the unit that was read")
 	}
 	u.Warnings = append(u.Warnings, s.oddSheets(u.lacking())...)
 }

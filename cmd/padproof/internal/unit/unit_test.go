@@ -233,6 +233,9 @@ func TestWarnings(t *testing.T) {
 		{"lot/aftr.wav", ""}, // what lies above serves no unit as after
 		{"lot/holiday.wav", ""},
 		{"lot/0417/ohms.toml", ""},
+		{"lot/0417/0417.ohms.toml", "lot/0417/0417.ohms.toml was left out: in a unit's own folder its name is ohms.toml"},
+		{"lot/0417/ohm.toml", "lot/0417/ohm.toml is no sheet and was left out; did you mean ohms.toml?"},
+		{"lot/ohms.toml", "lot/ohms.toml was left out: readings are one unit's"},
 		{"lot/0417/readme.txt", ""},
 		{"lot/0417/.hidden.wav", ""},
 	} {
@@ -246,5 +249,45 @@ func TestWarnings(t *testing.T) {
 		if (c.want == "") != (got == "") || !strings.HasPrefix(got, c.want) || len(u.Warnings) > 1 {
 			t.Errorf("with %s: warnings %q, want %q", c.file, got, c.want)
 		}
+	}
+}
+
+// Readings are the unit's own, in a folder and in a flat lot.
+func TestOhmsFile(t *testing.T) {
+	lay(t, "lot/0417/before.wav", "lot/0417/after.wav", "lot/0417/Ohms.toml", "lot/0418/before.wav", "lot/0418/after.wav")
+	for serial, want := range map[string]string{"0417": "lot/0417/Ohms.toml", "0418": ""} {
+		u, err := Open(filepath.Join("lot", serial))
+		if err != nil {
+			t.Fatal(err)
+		}
+		if got := filepath.ToSlash(u.OhmsFile); got != want {
+			t.Errorf("Open(%s).OhmsFile = %q, want %q", serial, got, want)
+		}
+	}
+	lay(t, "flat/before.wav", "flat/0417.a.after.wav", "flat/0417.A.ohms.toml", "flat/0418.after.wav", "flat/0419.ohms.toml", "flat/ohms.toml")
+	units, warnings, err := Flat("flat")
+	if err != nil {
+		t.Fatal(err)
+	}
+	got := map[string]string{}
+	for _, u := range units {
+		got[u.Serial] = filepath.ToSlash(u.OhmsFile)
+	}
+	if len(got) != 2 || got["0417.a"] != "flat/0417.A.ohms.toml" || got["0418"] != "" {
+		t.Errorf("Flat() readings = %q", got)
+	}
+	want := []string{"ohms.toml was left out: readings are one unit's; name it SERIAL.ohms.toml", "0419.ohms.toml was left out: there is no take of that unit"}
+	if !slices.Equal(warnings, want) {
+		t.Errorf("Flat() warnings = %q, want %q", warnings, want)
+	}
+}
+
+func TestOhmsFileTwice(t *testing.T) {
+	if !caseCounts(t) {
+		t.Skip("this system holds one file for both names")
+	}
+	lay(t, "0417/before.wav", "0417/after.wav", "0417/Ohms.toml", "0417/ohms.toml")
+	if _, err := Open("0417"); err == nil || !strings.Contains(err.Error(), "two files for one sheet") {
+		t.Errorf("Open with two ohms.toml = %v, want an error", err)
 	}
 }

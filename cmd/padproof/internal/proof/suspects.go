@@ -1,0 +1,95 @@
+package proof
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"padproof/cmd/padproof/internal/result"
+	"padproof/compare"
+	"padproof/compare/suspect"
+)
+
+// soundRisk is how improbable a sound unit must be before suspects of an unproven
+// unit are listed.
+const soundRisk = 0.05
+
+// seek looks for the fault that explains what was measured, where the unit does
+// not pass. A unit that is only unproven is suspected where a sound one would
+// hardly read like it.
+func (c *check) seek(verdict compare.Verdict) {
+	if c.Circuit == nil || c.Alternative != nil || verdict == compare.Pass {
+		return
+	}
+	e := c.evidence()
+	if len(e.Loss) == 0 && e.Legs == nil && len(e.Ohms) == 0 {
+		return
+	}
+	ranking := suspect.Rank(e)
+	if verdict != compare.Fail && ranking.SoundP >= soundRisk {
+		return
+	}
+	c.ranking = &ranking
+	c.answer.Unexplained = result.NumberOf(ranking.NoneWeight)
+	for _, s := range ranking.Suspects {
+		c.answer.Suspects = append(c.answer.Suspects, suspectOf(s, c.Service != c.Rig.Ends))
+	}
+}
+
+// suspectOf is a suspect in the form of the result.
+func suspectOf(s suspect.Suspect, carried bool) result.Suspect {
+	var names []string
+	one := result.Suspect{Weight: result.Number(s.Weight), Parts: []string{}, Predicted: map[string]result.Number{}}
+	for _, f := range s.Faults {
+		names = append(names, f.String())
+		one.Parts = append(one.Parts, f.Parts()...)
+	}
+	one.Fault, one.Parts = strings.Join(names, " or "), unrepeated(one.Parts)
+	if one.Parts == nil {
+		one.Parts = []string{}
+	}
+	one.Predicted["loss_db"] = result.Number(s.BenchLossDB)
+	if carried {
+		one.Predicted["service_loss_db"] = result.Number(s.ServiceLossDB)
+	}
+	if !math.IsNaN(s.LegsOverDB) {
+		one.Predicted["legs_db"] = result.Number(s.LegsOverDB)
+	}
+	if !math.IsNaN(s.DriftFrac) {
+		one.ByPercent, one.ByPercentU = result.NumberOf(100*s.DriftFrac), result.NumberOf(200*s.DriftStdU)
+	}
+	one.Confirm = confirmOf(s.Confirm, firstName(names))
+	return one
+}
+
+// firstName is the fault that a reading is for, in a sentence.
+func firstName(names []string) string {
+	if len(names) > 1 {
+		return "one with " + names[0]
+	}
+	return "this fault"
+}
+
+// confirmOf is the reading that tells a suspect, in the form of the result.
+func confirmOf(c suspect.Confirm, name string) result.Confirm {
+	r := c.Reading
+	if r.PinA == "" {
+		return result.Confirm{Pins: []string{}, GoodOhms: result.Missing, FaultOhms: result.Missing,
+			How: "no reading between the pins tells this from a sound unit"}
+	}
+	one := result.Confirm{
+		Pins: []string{r.PinA, r.PinB}, Joined: []string{},
+		GoodOhms: result.Number(r.GoodOhms), FaultOhms: result.Number(r.WrongOhms),
+	}
+	if r.Joined != [2]string{} {
+		one.Joined = r.Joined[:]
+	}
+	if !math.IsNaN(c.NextOhms) {
+		one.NextOhms = result.NumberOf(c.NextOhms)
+	}
+	one.How = fmt.Sprintf("read %s: a sound unit reads %s, %s %s", r.How(), compare.OhmsText(r.GoodOhms), name, compare.OhmsText(r.WrongOhms))
+	if one.NextOhms != nil {
+		one.How += ", the next suspect " + compare.OhmsText(c.NextOhms)
+	}
+	return one
+}

@@ -1,0 +1,84 @@
+package report
+
+import (
+	"fmt"
+	"strings"
+
+	"padproof/cmd/padproof/internal/result"
+)
+
+// suspects lists what may be wrong, with the reading that tells.
+func suspects(p *page, a *result.Answer) {
+	if a.Unexplained == nil {
+		return
+	}
+	if len(a.Suspects) == 0 || *a.Unexplained > a.Suspects[0].Weight {
+		p.heading("No single fault explains this well")
+		p.item("  ", "Two things may be wrong, or the bench may not be what rig.toml says.")
+	} else {
+		p.heading("Most likely wrong")
+	}
+	for i, s := range a.Suspects {
+		mark := fmt.Sprintf("  %d. ", i+1)
+		p.item(mark, fmt.Sprintf("%s, weight %s%s", suspectName(s), fixed(s.Weight, 2), predicted(s)))
+		if s.Confirm.How != "" {
+			p.item(strings.Repeat(" ", len(mark)), capital(s.Confirm.How)+".")
+		}
+	}
+	if len(a.Suspects) > 0 {
+		p.item("  -  ", fmt.Sprintf("None of these, weight %s.", fixed(*a.Unexplained, 2)))
+		p.item("  ", "Weights add up to 1 over all faults looked at; small ones are left out. To take a reading: "+lower(result.OhmCaution)+"; then check again with --ohms.")
+	}
+}
+
+// suspectName is the fault, and how far it is off where that is an estimate of one
+// fault alone.
+func suspectName(s result.Suspect) string {
+	if strings.Contains(s.Fault, " or ") || s.ByPercent == nil || s.ByPercentU == nil || !s.ByPercent.OK() || !s.ByPercentU.OK() {
+		return s.Fault
+	}
+	return fmt.Sprintf("%s (%s %% ± %s %%)", s.Fault, withSign(*s.ByPercent), toDigits(float64(*s.ByPercentU), 2))
+}
+
+func withSign(n result.Number) string {
+	if n > 0 {
+		return "+" + toDigits(float64(n), 3)
+	}
+	return toDigits(float64(n), 3)
+}
+
+// predicted is what the fault would give.
+func predicted(s result.Suspect) string {
+	loss, known := s.Predicted["loss_db"]
+	if !known {
+		return ""
+	}
+	it := "it"
+	if strings.Contains(s.Fault, " or ") {
+		it = "the first"
+	}
+	text := ": " + it + " would let nothing through"
+	if loss.OK() {
+		text = ": " + it + " would read " + fixed(loss, 2) + " dB here"
+	}
+	if service, carried := s.Predicted["service_loss_db"]; carried && service.OK() {
+		text += ", " + fixed(service, 2) + " dB in service"
+	}
+	return text
+}
+
+// lower takes a text into a sentence.
+func lower(text string) string {
+	if text == "" {
+		return text
+	}
+	return strings.ToLower(text[:1]) + text[1:]
+}
+
+// capital begins a sentence.
+func capital(text string) string {
+	if text == "" {
+		return text
+	}
+	return strings.ToUpper(text[:1]) + text[1:]
+}

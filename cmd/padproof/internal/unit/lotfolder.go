@@ -1,0 +1,128 @@
+package unit
+
+import (
+	"path/filepath"
+	"slices"
+	"strconv"
+	"strings"
+)
+
+// A Lot is the units of a folder, in the order of their serials.
+type Lot struct {
+	Layout   Layout
+	Units    []*Unit
+	Warnings []string // of the folder, that belong to no unit
+}
+
+// OpenLot finds the units of a lot folder: folders, one a unit; takes named
+// SERIAL.ROLE.wav; or, where channels names a unit for each channel (from 1, as
+// lot.toml does), one set of takes whose channels are units. A unit that lacks
+// something is among them: ask [Unit.Ready]. It is an error, an [*Error], if the
+// folder cannot be read or holds no lot.
+func OpenLot(folder string, channels map[int]string) (*Lot, error) {
+	folder = filepath.Clean(folder)
+	layout, err := LayoutOf(folder)
+	switch {
+	case err != nil:
+		return nil, err
+	case len(channels) > 0 && layout == OneUnit:
+		return channelLot(folder, channels)
+	case len(channels) > 0:
+		return nil, &Error{File: folder, Text: "lot.toml names a unit for each channel, but the takes here are not one set of before.wav and after.wav",
+			Hint: "take [channels] out of lot.toml, or put the takes of all channels into this folder"}
+	case layout == FlatLot:
+		units, warnings, err := Flat(folder)
+		return &Lot{layout, units, warnings}, err
+	case layout == FolderLot:
+		return folderLot(folder)
+	case layout == OneUnit:
+		return nil, &Error{File: folder, Text: "holds the takes of one unit, not of a lot",
+			Hint: "check it by padproof check " + folder + ", or name the folder above; where its channels are units, name them in lot.toml"}
+	}
+	return nil, &Error{File: folder, Text: "holds no takes",
+		Hint: "give each unit a folder with its after.wav, or name takes SERIAL.after.wav"}
+}
+
+// folderLot finds a unit in every folder that holds a take of its own.
+func folderLot(folder string) (*Lot, error) {
+	s, err := look(folder)
+	if err != nil {
+		return nil, err
+	}
+	lot := &Lot{Layout: FolderLot}
+	var empty []string
+	for _, name := range s.folders {
+		path := s.path(name)
+		in, err := look(path)
+		if err == nil && !in.holds(func(t take) bool { return t.serial == "" && t.role != "" }) {
+			empty = append(empty, name)
+			continue
+		}
+		lot.Units = append(lot.Units, openFaulty(path, name))
+	}
+	slices.SortFunc(lot.Units, func(a, b *Unit) int { return compareSerials(a.Serial, b.Serial) })
+	if len(empty) > 0 {
+		lot.Warnings = append(lot.Warnings, "no takes in the folders "+strings.Join(empty, ", ")+": they were left out")
+	}
+	return lot, nil
+}
+
+// openFaulty opens a unit's folder; what keeps it from being opened is the
+// unit's fault.
+func openFaulty(path, name string) *Unit {
+	u, err := Open(path)
+	if err == nil {
+		return u
+	}
+	u = newUnit(name, path)
+	fault, ok := err.(*Error)
+	if !ok {
+		fault = &Error{File: path, Text: err.Error()}
+	}
+	u.fault = fault
+	return u
+}
+
+// channelLot makes a unit of each channel of one set of takes.
+func channelLot(folder string, channels map[int]string) (*Lot, error) {
+	lot := &Lot{Layout: ChannelLot}
+	for channel, serial := range channels {
+		u, err := Open(folder)
+		if err != nil {
+			return nil, err
+		}
+		if u.Files[Both] != "" {
+			return nil, &Error{File: u.Files[Both], Text: "both.wav has one unit only",
+				Hint: "for channels that are units, record before.wav and after.wav with all channels"}
+		}
+		u.Serial, u.Channel = serial, channel
+		lot.Units = append(lot.Units, u)
+	}
+	slices.SortFunc(lot.Units, func(a, b *Unit) int { return a.Channel - b.Channel })
+	if len(lot.Units) > 0 {
+		lot.Warnings, lot.Units[0].Warnings = lot.Units[0].Warnings, nil
+		for _, u := range lot.Units[1:] {
+			u.Warnings = nil
+		}
+	}
+	return lot, nil
+}
+
+// compareSerials puts numbers in their order, 9 before 10, and all else by name.
+func compareSerials(a, b string) int {
+	m, errA := strconv.Atoi(a)
+	n, errB := strconv.Atoi(b)
+	if errA == nil && errB == nil && m != n {
+		return m - n
+	}
+	return strings.Compare(strings.ToLower(a), strings.ToLower(b))
+}
+
+// LotSheet returns the path of a folder's lot.toml, "" if there is none.
+func LotSheet(folder string) string {
+	s, err := look(filepath.Clean(folder))
+	if err != nil || s.lotSheet == "" {
+		return ""
+	}
+	return s.path(s.lotSheet)
+}

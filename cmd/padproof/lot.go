@@ -1,0 +1,202 @@
+package main
+
+import (
+	"encoding/json"
+	"io"
+	"os"
+	"path/filepath"
+	"runtime"
+
+	"github.com/spf13/cobra"
+
+	"padproof/cmd/padproof/internal/lot"
+	"padproof/cmd/padproof/internal/proof"
+	"padproof/cmd/padproof/internal/report"
+	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/sheet"
+	"padproof/cmd/padproof/internal/unit"
+)
+
+// lotFlags are those of lot.
+type lotFlags struct {
+	pad, rig string
+	csv      string
+	workers  int
+}
+
+func newLot() *cobra.Command {
+	var f lotFlags
+	cmd := &cobra.Command{
+		Use:   "lot FOLDER",
+		Short: "Check every unit in a folder",
+		Long: `Check every unit in a folder, several at a time, and say what they show together: yield,
+spread, capability, a chart, and what is likely behind it.
+
+FOLDER holds a folder for each unit, or takes named SERIAL.ROLE.wav; sheets, and takes of
+the rig alone, serve every unit there. Where one set of takes holds a unit in each channel,
+lot.toml names them:
+
+  name = "Saltmarsh lot 12"
+  [channels]
+  1 = "0417"
+  2 = "0418"
+
+A unit that cannot be checked is named, and the rest go on. With --json there is a line for
+each unit, as check prints it, and a last one for the lot.
+
+Exit status: 3 if a unit could not be checked, else 1 if one fails, else 2 if one is
+unproven, else 0.`,
+		Example: `  padproof lot testdata/saltmarsh
+  padproof lot lot12 --csv lot12.csv`,
+		Args: func(cmd *cobra.Command, args []string) error {
+			switch {
+			case len(args) == 0:
+				return usageError(cmd, "which lot? name its folder")
+			case len(args) > 1:
+				return usageError(cmd, "one folder at a time; %q is one too many", args[1])
+			}
+			return nil
+		},
+		RunE: func(cmd *cobra.Command, args []string) error { return runLot(cmd, args[0], f) },
+	}
+	flags := cmd.Flags()
+	flags.SortFlags = false
+	flags.StringVar(&f.csv, "csv", "", "write a table of all units to this file")
+	flags.StringVar(&f.pad, "pad", "", "the drawing of all units, in place of their own")
+	flags.StringVar(&f.rig, "rig", "", "the bench of all units, in place of their own")
+	flags.IntVar(&f.workers, "workers", runtime.NumCPU(), "units checked at a time")
+	_ = cmd.MarkFlagFilename("csv", "csv")
+	_ = cmd.MarkFlagFilename("pad", "toml")
+	_ = cmd.MarkFlagFilename("rig", "toml")
+	return cmd
+}
+
+func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
+	if f.workers < 1 {
+		return usageError(cmd, "--workers counts from 1, not %d", f.workers)
+	}
+	units, tally, err := f.open(folder)
+	if err != nil {
+		return err
+	}
+	ctx, stop := untilInterrupted(cmd)
+	defer stop()
+	out := cmd.OutOrStdout()
+	show := lotLines(out, wantsJSON(cmd), units)
+	err = lot.Run(ctx, units, f.workers, proof.Options{}, func(o lot.Outcome) error {
+		return show(o, tally.Add(o, describe))
+	})
+	if err != nil {
+		return afterInterrupt(err)
+	}
+	whole, err := tally.Lot()
+	if err != nil {
+		return err
+	}
+	if f.csv != "" {
+		if err := writeWhole(f.csv, func(w io.Writer) error { return report.LotCSV(w, whole) }); err != nil {
+			return err
+		}
+	}
+	if wantsJSON(cmd) {
+		err = writeLine(out, whole)
+	} else {
+		err = report.LotText(out, whole)
+	}
+	if err != nil {
+		return err
+	}
+	return lotStatus(whole)
+}
+
+// open finds the units of a folder and begins the tally.
+func (f lotFlags) open(folder string) ([]*unit.Unit, *lot.Tally, error) {
+	named := &sheet.Lot{}
+	if path := unit.LotSheet(folder); path != "" {
+		var err error
+		if named, err = sheet.ReadLot(path); err != nil {
+			return nil, nil, err
+		}
+	}
+	found, err := unit.OpenLot(folder, named.Channels)
+	if err != nil {
+		return nil, nil, err
+	}
+	for _, u := range found.Units {
+		if f.pad != "" {
+			u.PadFile = f.pad
+		}
+		if f.rig != "" {
+			u.RigFile = f.rig
+		}
+	}
+	name := named.Name
+	if name == "" {
+		if full, err := filepath.Abs(folder); err == nil {
+			name = filepath.Base(full)
+		}
+	}
+	tally := lot.NewTally(name)
+	tally.Warn(found.Warnings...)
+	return found.Units, tally, nil
+}
+
+// lotLines shows each unit as it is done.
+func lotLines(w io.Writer, asJSON bool, units []*unit.Unit) func(lot.Outcome, *result.LotRow) error {
+	if asJSON {
+		return func(o lot.Outcome, row *result.LotRow) error {
+			if o.Answer != nil {
+				return writeLine(w, o.Answer)
+			}
+			return writeLine(w, result.Failure{Schema: result.CheckSchema, Unit: row.Unit, Error: *row.Error})
+		}
+	}
+	var serials []string
+	for _, u := range units {
+		serials = append(serials, u.Serial)
+	}
+	rows := report.LotRows(w, serials)
+	return func(_ lot.Outcome, row *result.LotRow) error { return rows(row) }
+}
+
+// writeLine prints one object on one line.
+func writeLine(w io.Writer, v any) error {
+	encoder := json.NewEncoder(w)
+	encoder.SetEscapeHTML(false)
+	return encoder.Encode(v)
+}
+
+// lotStatus is the exit status of a lot.
+func lotStatus(l *result.Lot) error {
+	switch {
+	case l.NotChecked > 0 || l.Units == 0:
+		return exitStatus(exitNoCheck)
+	case l.Failed > 0:
+		return exitStatus(exitFail)
+	case l.Unproven > 0:
+		return exitStatus(exitUnproven)
+	}
+	return nil
+}
+
+// writeWhole writes a file beside its name and then gives it the name: whole, or
+// not at all.
+func writeWhole(path string, write func(io.Writer) error) error {
+	file, err := os.CreateTemp(filepath.Dir(path), ".padproof-*")
+	if err != nil {
+		return err
+	}
+	defer os.Remove(file.Name())
+	if err := write(file); err != nil {
+		file.Close()
+		return err
+	}
+	if err := file.Chmod(0o644); err != nil {
+		file.Close()
+		return err
+	}
+	if err := file.Close(); err != nil {
+		return err
+	}
+	return os.Rename(file.Name(), path)
+}
