@@ -58,14 +58,14 @@ func suspectOf(s suspect.Suspect, carried bool) result.Suspect {
 	if !math.IsNaN(s.DriftFrac) {
 		one.ByPercent, one.ByPercentU = result.NumberOf(100*s.DriftFrac), result.NumberOf(200*s.DriftStdU)
 	}
-	one.Confirm = confirmOf(s.Confirm, firstName(names))
+	one.Confirm = confirmOf(s.Confirm, firstOf(names))
 	return one
 }
 
-// firstName is the fault that a reading is for, in a sentence.
-func firstName(names []string) string {
+// firstOf is the fault that a reading is for, in a sentence.
+func firstOf(names []string) string {
 	if len(names) > 1 {
-		return "one with " + names[0]
+		return "the first of these"
 	}
 	return "this fault"
 }
@@ -87,9 +87,9 @@ func confirmOf(c suspect.Confirm, name string) result.Confirm {
 	if !math.IsNaN(c.NextOhms) {
 		one.NextOhms = result.NumberOf(c.NextOhms)
 	}
-	one.How = fmt.Sprintf("read %s: a sound unit reads %s, %s %s", r.How(), compare.OhmsText(r.GoodOhms), name, compare.OhmsText(r.WrongOhms))
+	one.How = fmt.Sprintf("read %s: a sound unit reads %s; with %s %s", r.How(), compare.OhmsText(r.GoodOhms), name, compare.OhmsText(r.WrongOhms))
 	if one.NextOhms != nil {
-		one.How += ", the next suspect " + compare.OhmsText(c.NextOhms)
+		one.How += "; with the next suspect " + compare.OhmsText(c.NextOhms)
 	}
 	return one
 }
