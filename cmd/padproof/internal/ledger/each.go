@@ -1,0 +1,30 @@
+package ledger
+
+import (
+	"context"
+	"fmt"
+)
+
+// Each calls visit with every record that the filter picks, oldest first, and ends
+// at its first error. It does not look whether a record was altered: [Ledger.Verify]
+// does.
+func (l *Ledger) Each(ctx context.Context, f Filter, visit func(Row, []byte) error) error {
+	where, values := f.where()
+	rows, err := l.db.QueryContext(ctx, l.engine.text(fmt.Sprintf(
+		"SELECT %s, body FROM padproof_record WHERE %s ORDER BY at_us, station, sequence", rowColumns, where)), values...)
+	if err != nil {
+		return l.engine.explain(err)
+	}
+	defer func() { _ = rows.Close() }()
+	for rows.Next() {
+		var r Row
+		var text []byte
+		if err := rows.Scan(append(r.fields(), &text)...); err != nil {
+			return l.engine.explain(err)
+		}
+		if err := visit(r, text); err != nil {
+			return err
+		}
+	}
+	return l.engine.explain(rows.Err())
+}
