@@ -1,17 +1,13 @@
 package ledger
 
-import (
-	"context"
-	"fmt"
-)
+import "context"
 
 // Each calls visit with every record that the filter picks, oldest first, and ends
 // at its first error. It does not look whether a record was altered: [Ledger.Verify]
 // does.
 func (l *Ledger) Each(ctx context.Context, f Filter, visit func(Row, []byte) error) error {
-	where, values := f.where()
-	rows, err := l.db.QueryContext(ctx, l.engine.text(fmt.Sprintf(
-		"SELECT %s, body FROM padproof_record WHERE %s ORDER BY at_us, station, sequence", rowColumns, where)), values...)
+	q := queryOf(f, Place{})
+	rows, err := l.db.QueryContext(ctx, l.engine.text(q.union(rowColumns+", body")+" ORDER BY at_us, station, sequence"), q.values...)
 	if err != nil {
 		return l.engine.explain(err)
 	}

@@ -19,30 +19,109 @@ type Filter struct {
 	To      time.Time // before
 }
 
-// where turns the filter into a condition with its values; numbering begins at $1.
-func (f Filter) where() (string, []any) {
-	var terms []string
-	var values []any
-	add := func(term string, value any) {
-		values = append(values, value)
-		terms = append(terms, fmt.Sprintf(term, len(values)))
+// verdicts are all that a record can have.
+var verdicts = []string{"PASS", "FAIL", "UNPROVEN"}
+
+// A query is a filter, and where a list goes on, as SQL.
+type query struct {
+	branches []string // conditions of which each record meets at most one
+	values   []any
+}
+
+// condition adds a term, its value numbered.
+func (q *query) term(term string, values ...any) string {
+	numbers := make([]any, 0, len(values))
+	for _, v := range values {
+		q.values = append(q.values, v)
+		numbers = append(numbers, len(q.values))
 	}
-	for _, one := range []struct{ column, value string }{
-		{"unit", f.Unit}, {"lot", f.Lot}, {"takes", f.Takes}, {"drawing", f.Drawing},
-		{"station", f.Station}, {"verdict", f.Verdict}, {"kind", f.Kind},
-	} {
-		if one.value != "" {
-			add(one.column+" = $%d", one.value)
+	return fmt.Sprintf(term, numbers...)
+}
+
+// queryOf turns a filter into SQL that an index answers. Most indexes lead with a
+// name, then the verdict, then the time; so where a name is asked for and no
+// verdict is, there is a branch for each verdict, and the database merges them by
+// time. Of several names the one whose index parts the records best is searched by;
+// the others are marked as conditions only.
+func queryOf(f Filter, from Place) query {
+	var q query
+	key := f.key()
+	var terms []string
+	for _, one := range f.names() {
+		switch {
+		case one.value == "":
+		case one.column == key:
+			terms = append(terms, q.term(one.column+" = $%d", one.value))
+		default:
+			terms = append(terms, q.term("@ONLY@"+one.column+" = $%d", one.value))
 		}
 	}
 	if !f.From.IsZero() {
-		add("at_us >= $%d", f.From.UnixMicro())
+		terms = append(terms, q.term("at_us >= $%d", f.From.UnixMicro()))
 	}
 	if !f.To.IsZero() {
-		add("at_us < $%d", f.To.UnixMicro())
+		terms = append(terms, q.term("at_us < $%d", f.To.UnixMicro()))
 	}
+	if from != (Place{}) {
+		terms = append(terms, q.term("(at_us, station, sequence) < ($%d, $%d, $%d)", from.AtMicros, from.Station, from.Sequence))
+	}
+	switch {
+	case f.Verdict != "":
+		q.branches = []string{and(append(terms, q.term("verdict = $%d", f.Verdict)))}
+	case key == "" || key == "unit" || key == "takes":
+		q.branches = []string{and(terms)}
+	default:
+		for _, verdict := range verdicts {
+			q.branches = append(q.branches, and(append(terms[:len(terms):len(terms)], "verdict = '"+verdict+"'")))
+		}
+	}
+	return q
+}
+
+// key is the column to search by, "" for the time or the verdict.
+func (f Filter) key() string {
+	rig := f.Kind
+	if rig != RigCheck { // nearly all are of the other kind
+		rig = ""
+	}
+	for _, one := range []struct{ column, value string }{
+		{"takes", f.Takes}, {"unit", f.Unit}, {"lot", f.Lot}, {"kind", rig}, {"station", f.Station}, {"drawing", f.Drawing},
+	} {
+		if one.value != "" {
+			return one.column
+		}
+	}
+	return ""
+}
+
+// names are the columns that are matched whole, but for the verdict.
+func (f Filter) names() []struct{ column, value string } {
+	return []struct{ column, value string }{
+		{"takes", f.Takes}, {"unit", f.Unit}, {"lot", f.Lot}, {"kind", f.Kind}, {"station", f.Station}, {"drawing", f.Drawing},
+	}
+}
+
+func and(terms []string) string {
 	if len(terms) == 0 {
-		return "1 = 1", nil
+		return "1 = 1"
 	}
-	return strings.Join(terms, " AND "), values
+	return strings.Join(terms, " AND ")
+}
+
+// newest is the statement for the newest records, and for the values that follow.
+func (q query) newest(limit int) string {
+	return q.union(rowColumns) + fmt.Sprintf(" ORDER BY at_us DESC, station DESC, sequence DESC LIMIT %d", limit)
+}
+
+// count counts up to a bound.
+func (q query) count(bound int) string {
+	return fmt.Sprintf("SELECT count(*) FROM (%s LIMIT %d) AS picked", q.union("1 AS one"), bound)
+}
+
+func (q query) union(columns string) string {
+	var all []string
+	for _, branch := range q.branches {
+		all = append(all, "SELECT "+columns+" FROM padproof_record WHERE "+branch)
+	}
+	return strings.Join(all, " UNION ALL ")
 }

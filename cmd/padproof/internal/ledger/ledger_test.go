@@ -14,7 +14,7 @@ func record(station string, n int) Record {
 	r := Record{
 		Station: station, Time: time.Date(2026, 11, 30, 8, 0, n, 0, time.UTC), Verdict: "PASS",
 		Unit: fmt.Sprintf("%04d", n), Lot: fmt.Sprintf("lot %d", n/100), Drawing: Drawing{Name: "Saltmarsh 14 line pad"},
-		Tool: "v0.0.0-test",
+		Tool:   "v0.0.0-test",
 		Answer: json.RawMessage(fmt.Sprintf(`{"schema":"padproof.check.1","unit":"%04d","verdict":"PASS","captures":[{"role":"after","sha256":"%064x"}]}`, n, n)),
 	}
 	r.AddFile("pad", "pad.toml", []byte("name = \"Saltmarsh 14 line pad\" # <µ>\n"))

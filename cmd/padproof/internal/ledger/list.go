@@ -45,15 +45,9 @@ func (l *Ledger) List(ctx context.Context, f Filter, from Place, limit int) (*Pa
 	if limit < 1 {
 		return nil, refused("a list shows at least 1 record, not %d", limit)
 	}
-	where, values := f.where()
-	if from != (Place{}) {
-		n := len(values)
-		where += fmt.Sprintf(" AND (at_us, station, sequence) < ($%d, $%d, $%d)", n+1, n+2, n+3)
-		values = append(values, from.AtMicros, from.Station, from.Sequence)
-	}
 	p := &Page{}
-	err := l.rows(ctx, "SELECT "+rowColumns+" FROM padproof_record WHERE "+where+
-		fmt.Sprintf(" ORDER BY at_us DESC, station DESC, sequence DESC LIMIT %d", limit+1), values, &p.Rows)
+	q := queryOf(f, from)
+	err := l.rows(ctx, q.newest(limit+1), q.values, &p.Rows)
 	if err != nil {
 		return nil, l.engine.explain(err)
 	}
@@ -63,16 +57,15 @@ func (l *Ledger) List(ctx context.Context, f Filter, from Place, limit int) (*Pa
 	p.Rows = p.Rows[:limit]
 	last := p.Rows[limit-1]
 	p.Next = Place{last.Time.UnixMicro(), last.Station, last.Sequence}
-	return p, l.countMore(ctx, f, p)
+	return p, l.countMore(ctx, f, from, p)
 }
 
 // countMore counts what follows a page, up to a bound.
-func (l *Ledger) countMore(ctx context.Context, f Filter, p *Page) error {
-	where, values := f.where()
+func (l *Ledger) countMore(ctx context.Context, f Filter, from Place, p *Page) error {
+	q := queryOf(f, from)
 	bound := countedUpTo + len(p.Rows)
 	var n int64
-	err := l.db.QueryRowContext(ctx, l.engine.text(fmt.Sprintf(
-		"SELECT count(*) FROM (SELECT 1 FROM padproof_record WHERE %s LIMIT %d) AS some", where, bound)), values...).Scan(&n)
+	err := l.db.QueryRowContext(ctx, l.engine.text(q.count(bound)), q.values...).Scan(&n)
 	if err != nil {
 		return l.engine.explain(err)
 	}
@@ -157,4 +150,13 @@ func (l *Ledger) Heads(ctx context.Context) ([]Receipt, error) {
 		}
 		heads = append(heads, head)
 	}
+}
+
+// PlaceOf is where a list goes on behind a record.
+func (l *Ledger) PlaceOf(ctx context.Context, station string, sequence int64) (Place, error) {
+	e, err := l.Show(ctx, station, sequence)
+	if err != nil {
+		return Place{}, err
+	}
+	return Place{e.Record.Time.UnixMicro(), station, sequence}, nil
 }

@@ -39,7 +39,7 @@ func (p *postgres) name() string {
 }
 
 func (p *postgres) text(statement string) string {
-	return strings.NewReplacer("@BYTES@", "BYTEA", "@TEXT@", `TEXT COLLATE "C"`).Replace(statement)
+	return strings.NewReplacer("@BYTES@", "BYTEA", "@TEXT@", `TEXT COLLATE "C"`, "@ONLY@", "").Replace(statement)
 }
 
 // open connects. A server that does not wait for the disk by default is told to.

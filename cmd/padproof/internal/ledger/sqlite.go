@@ -11,6 +11,7 @@ import (
 	"strconv"
 	"strings"
 
+	"github.com/ncruces/go-sqlite3"
 	_ "github.com/ncruces/go-sqlite3/driver" // the SQLite driver
 )
 
@@ -26,15 +27,43 @@ func (s *sqlite) name() string   { return s.path }
 func (s *sqlite) suffix() string { return "sqlite" }
 
 func (s *sqlite) text(statement string) string {
-	return strings.NewReplacer("$", "?", "@BYTES@", "BLOB", "@TEXT@", "TEXT").Replace(statement)
+	return strings.NewReplacer("$", "?", "@BYTES@", "BLOB", "@TEXT@", "TEXT", "@ONLY@", "+").Replace(statement)
 }
 
-// open opens the file with full sync in write-ahead mode.
+// open opens the file with full sync in write-ahead mode. A file that is only to be
+// read is opened as far as rights allow: so that nothing is left beside it, else
+// with what others left there, else as a file that nobody writes.
 func (s *sqlite) open(ctx context.Context, o Options) (*sql.DB, error) {
 	if err := s.look(o); err != nil {
 		return nil, err
 	}
-	db, err := sql.Open("sqlite3", s.source(o))
+	modes := []string{"rwc"}
+	switch {
+	case o.ReadOnly && s.quiet():
+		modes = []string{"rw", "ro", "ro&immutable=1"}
+	case o.ReadOnly:
+		modes = []string{"rw", "ro"}
+	case o.MustExist:
+		modes = []string{"rw"}
+	}
+	var first error
+	for _, mode := range modes {
+		db, err := s.openAs(ctx, mode, o)
+		if err == nil {
+			return db, nil
+		}
+		if first == nil {
+			first = err
+		}
+		if !noRights(err) {
+			break
+		}
+	}
+	return nil, first
+}
+
+func (s *sqlite) openAs(ctx context.Context, mode string, o Options) (*sql.DB, error) {
+	db, err := sql.Open("sqlite3", s.source(mode, o))
 	if err != nil {
 		return nil, err
 	}
@@ -44,6 +73,18 @@ func (s *sqlite) open(ctx context.Context, o Options) (*sql.DB, error) {
 		return nil, err
 	}
 	return db, nil
+}
+
+// quiet reports whether nothing waits in the write-ahead log.
+func (s *sqlite) quiet() bool {
+	info, err := os.Stat(s.path + "-wal")
+	return err != nil || info.Size() == 0
+}
+
+// noRights reports whether opening with fewer rights may help.
+func noRights(err error) bool {
+	return errors.Is(err, sqlite3.READONLY) || errors.Is(err, sqlite3.CANTOPEN) || errors.Is(err, sqlite3.PERM) ||
+		errors.Is(err, fs.ErrPermission)
 }
 
 // look says clearly what SQLite would say darkly: no file, a folder, no rights.
@@ -66,18 +107,15 @@ func (s *sqlite) look(o Options) error {
 
 // source is the data source name. Settings stand in it because each connection of
 // the pool needs them.
-func (s *sqlite) source(o Options) string {
+func (s *sqlite) source(mode string, o Options) string {
 	v := url.Values{"_txlock": {"immediate"}}
 	v.Add("_pragma", "busy_timeout("+strconv.FormatInt(o.Wait.Milliseconds(), 10)+")")
 	v.Add("_pragma", "synchronous(FULL)")
+	v.Add("_pragma", "cache_size(-16384)") // KiB: the upper pages of every index
+	v.Add("_pragma", "temp_store(MEMORY)") // what undoes one statement need not touch the disk
 	v.Add("_pragma", "trusted_schema(OFF)")
-	switch {
-	case o.ReadOnly:
-		v.Set("mode", "ro")
-	case o.MustExist:
-		v.Set("mode", "rw")
-	default:
-		v.Set("mode", "rwc")
+	if o.ReadOnly {
+		v.Add("_pragma", "query_only(ON)")
 	}
 	path := filepath.ToSlash(s.path)
 	if full, err := filepath.Abs(s.path); err == nil {
@@ -86,7 +124,7 @@ func (s *sqlite) source(o Options) string {
 	if !strings.HasPrefix(path, "/") { // C:/…
 		path = "/" + path
 	}
-	return (&url.URL{Scheme: "file", Path: path, RawQuery: v.Encode(), OmitHost: true}).String()
+	return (&url.URL{Scheme: "file", Path: path, RawQuery: "mode=" + mode + "&" + v.Encode(), OmitHost: true}).String()
 }
 
 // settle looks whether the file is a ledger or empty, and turns the write-ahead

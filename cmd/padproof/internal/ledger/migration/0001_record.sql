@@ -17,8 +17,9 @@ CREATE TABLE padproof_record (
 );
 CREATE INDEX padproof_record_at      ON padproof_record (at_us, station, sequence);
 CREATE INDEX padproof_record_unit    ON padproof_record (unit, at_us, station, sequence);
-CREATE INDEX padproof_record_lot     ON padproof_record (lot, at_us, station, sequence);
-CREATE INDEX padproof_record_drawing ON padproof_record (drawing, at_us, station, sequence);
+CREATE INDEX padproof_record_lot     ON padproof_record (lot, verdict, at_us, station, sequence);
+CREATE INDEX padproof_record_drawing ON padproof_record (drawing, verdict, at_us, station, sequence);
+CREATE INDEX padproof_record_station ON padproof_record (station, verdict, at_us, sequence, drawing);
+CREATE INDEX padproof_record_kind    ON padproof_record (kind, verdict, at_us, station, sequence);
 CREATE INDEX padproof_record_verdict ON padproof_record (verdict, at_us, station, sequence);
-CREATE INDEX padproof_record_station ON padproof_record (station, at_us, sequence);
 CREATE INDEX padproof_record_takes   ON padproof_record (takes);

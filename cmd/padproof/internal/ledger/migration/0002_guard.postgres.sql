@@ -8,8 +8,8 @@ CREATE TRIGGER padproof_record_no_truncate BEFORE TRUNCATE ON padproof_record
 FOR EACH STATEMENT EXECUTE FUNCTION padproof_record_refuse();
 CREATE FUNCTION padproof_record_next() RETURNS trigger LANGUAGE plpgsql AS $$
 BEGIN
-    IF NEW.sequence IS DISTINCT FROM
-       (SELECT coalesce(max(sequence), 0) + 1 FROM padproof_record WHERE station = NEW.station) THEN
+    IF NEW.sequence <> 1 AND NOT EXISTS
+       (SELECT 1 FROM padproof_record WHERE station = NEW.station AND sequence = NEW.sequence - 1) THEN
         RAISE EXCEPTION 'a record stands behind the last one of its station, and nowhere else';
     END IF;
     RETURN NEW;
