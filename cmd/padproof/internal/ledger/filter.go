@@ -38,12 +38,17 @@ func (q *query) term(term string, values ...any) string {
 	return fmt.Sprintf(term, numbers...)
 }
 
+// Which way a list goes on from a place.
+const (
+	older = "<"
+	newer = ">"
+)
+
 // queryOf turns a filter into SQL that an index answers. Most indexes lead with a
 // name, then the verdict, then the time; so where a name is asked for and no
-// verdict is, there is a branch for each verdict, and the database merges them by
-// time. Of several names the one whose index parts the records best is searched by;
+// verdict is, there is a branch for each verdict, and what they give is merged. Of several names the one whose index parts the records best is searched by;
 // the others are marked as conditions only.
-func queryOf(f Filter, from Place) query {
+func queryOf(f Filter, from Place, side string) query {
 	var q query
 	key := f.key()
 	var terms []string
@@ -63,7 +68,7 @@ func queryOf(f Filter, from Place) query {
 		terms = append(terms, q.term("at_us < $%d", f.To.UnixMicro()))
 	}
 	if from != (Place{}) {
-		terms = append(terms, q.term("(at_us, station, sequence) < ($%d, $%d, $%d)", from.AtMicros, from.Station, from.Sequence))
+		terms = append(terms, q.term("(at_us, station, sequence) "+side+" ($%d, $%d, $%d)", from.AtMicros, from.Station, from.Sequence))
 	}
 	switch {
 	case f.Verdict != "":
@@ -108,20 +113,39 @@ func and(terms []string) string {
 	return strings.Join(terms, " AND ")
 }
 
-// newest is the statement for the newest records, and for the values that follow.
+// newest is the statement for the newest records, newest first.
 func (q query) newest(limit int) string {
-	return q.union(rowColumns) + fmt.Sprintf(" ORDER BY at_us DESC, station DESC, sequence DESC LIMIT %d", limit)
+	return q.ordered(rowColumns, "at_us DESC, station DESC, sequence DESC", limit)
+}
+
+// oldest is the statement for the oldest records with their bodies, oldest first.
+func (q query) oldest(limit int) string {
+	return q.ordered(rowColumns+", body", "at_us, station, sequence", limit)
+}
+
+// ordered takes the first of each branch, which an index gives in order, and puts
+// those few in order.
+func (q query) ordered(columns, order string, limit int) string {
+	rest := fmt.Sprintf(" ORDER BY %s LIMIT %d", order, limit)
+	if len(q.branches) == 1 {
+		return selected(columns, q.branches[0]) + rest
+	}
+	var all []string
+	for i, branch := range q.branches {
+		all = append(all, fmt.Sprintf("SELECT * FROM (%s%s) AS branch%d", selected(columns, branch), rest, i))
+	}
+	return strings.Join(all, " UNION ALL ") + rest
 }
 
 // count counts up to a bound.
 func (q query) count(bound int) string {
-	return fmt.Sprintf("SELECT count(*) FROM (%s LIMIT %d) AS picked", q.union("1 AS one"), bound)
+	var all []string
+	for i, branch := range q.branches {
+		all = append(all, fmt.Sprintf("SELECT * FROM (%s LIMIT %d) AS branch%d", selected("1 AS one", branch), bound, i))
+	}
+	return fmt.Sprintf("SELECT count(*) FROM (%s LIMIT %d) AS picked", strings.Join(all, " UNION ALL "), bound)
 }
 
-func (q query) union(columns string) string {
-	var all []string
-	for _, branch := range q.branches {
-		all = append(all, "SELECT "+columns+" FROM padproof_record WHERE "+branch)
-	}
-	return strings.Join(all, " UNION ALL ")
+func selected(columns, branch string) string {
+	return "SELECT " + columns + " FROM padproof_record WHERE " + branch
 }

@@ -46,7 +46,7 @@ func (l *Ledger) List(ctx context.Context, f Filter, from Place, limit int) (*Pa
 		return nil, refused("a list shows at least 1 record, not %d", limit)
 	}
 	p := &Page{}
-	q := queryOf(f, from)
+	q := queryOf(f, from, older)
 	err := l.rows(ctx, q.newest(limit+1), q.values, &p.Rows)
 	if err != nil {
 		return nil, l.engine.explain(err)
@@ -62,7 +62,7 @@ func (l *Ledger) List(ctx context.Context, f Filter, from Place, limit int) (*Pa
 
 // countMore counts what follows a page, up to a bound.
 func (l *Ledger) countMore(ctx context.Context, f Filter, from Place, p *Page) error {
-	q := queryOf(f, from)
+	q := queryOf(f, from, older)
 	bound := countedUpTo + len(p.Rows)
 	var n int64
 	err := l.db.QueryRowContext(ctx, l.engine.text(q.count(bound)), q.values...).Scan(&n)

@@ -34,7 +34,10 @@ const (
 	postgresSession = `SELECT set_config('lock_timeout', $1::bigint::text, false),
 		CASE WHEN current_setting('synchronous_commit') = 'off' THEN set_config('synchronous_commit', 'on', false) END`
 
-	postgresThere = `SELECT to_regclass('padproof_ledger') IS NOT NULL`
+	// postgresThere reads pg_class itself: to_regclass may answer from what the
+	// session knew before it waited for another that was making the tables.
+	postgresThere = `SELECT EXISTS (SELECT 1 FROM pg_catalog.pg_class
+		WHERE relname = 'padproof_ledger' AND pg_catalog.pg_table_is_visible(oid))`
 
 	postgresVersions = `CREATE TABLE IF NOT EXISTS padproof_ledger
 		(version BIGINT PRIMARY KEY, applied TIMESTAMPTZ NOT NULL DEFAULT now())`

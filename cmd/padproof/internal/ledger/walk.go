@@ -7,6 +7,7 @@ type walk struct {
 	v     *Verification
 	last  Receipt // the record before; its hash is what its bytes give
 	after string  // the hash that it was stored with
+	loose bool    // that record was none of its place, which was said: nothing follows from it
 }
 
 func (w *walk) fault(r Row, kind, format string, args ...any) {
@@ -21,15 +22,19 @@ func (w *walk) step(r Row, text []byte) {
 	w.last = Receipt{Station: r.Station, Sequence: r.Sequence, Hash: hashOf(text)}
 	stored := w.after
 	w.after = r.Hash
+	loose := w.loose
+	w.loose = false
 	e, err := decode(text)
 	switch {
 	case err != nil:
 		w.fault(r, "altered", "was altered: its body cannot be read (%v)", err)
+		w.loose = r.Hash != w.last.Hash
 		return
 	case r.Hash != e.Hash:
 		w.fault(r, "altered", "was altered: it does not have its hash any more")
 	case e.Station != r.Station || e.Sequence != r.Sequence:
 		w.moved(r, e)
+		w.loose = true
 		return
 	default:
 		if name := differs(r, e); name != "" {
@@ -39,7 +44,7 @@ func (w *walk) step(r Row, text []byte) {
 	switch {
 	case r.Sequence != before.Sequence+1:
 		w.gap(r, before.Sequence)
-	case e.Previous != before.Hash && e.Previous != stored: // where stored fits, the fault is the record's before and was said there
+	case !loose && e.Previous != before.Hash && e.Previous != stored: // where stored fits, the fault is the record's before and was said there
 		w.fault(r, "broken", "does not carry the hash of the record before it: that one was altered or replaced, or this one was")
 	}
 }

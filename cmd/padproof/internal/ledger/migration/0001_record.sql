@@ -22,4 +22,4 @@ CREATE INDEX padproof_record_drawing ON padproof_record (drawing, verdict, at_us
 CREATE INDEX padproof_record_station ON padproof_record (station, verdict, at_us, sequence, drawing);
 CREATE INDEX padproof_record_kind    ON padproof_record (kind, verdict, at_us, station, sequence);
 CREATE INDEX padproof_record_verdict ON padproof_record (verdict, at_us, station, sequence);
-CREATE INDEX padproof_record_takes   ON padproof_record (takes);
+CREATE INDEX padproof_record_takes   ON padproof_record (takes, at_us, station, sequence);
