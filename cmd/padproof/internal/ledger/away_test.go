@@ -52,6 +52,7 @@ func TestServerTrouble(t *testing.T) {
 // A server that dies under its writers loses nothing that was reported; they go on
 // when it is back, and write nothing twice.
 func TestServerCrash(t *testing.T) {
+	t.Parallel()
 	if lack := shared().lack; lack != "" {
 		t.Skip(lack)
 	}
