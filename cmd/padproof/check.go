@@ -2,6 +2,7 @@ package main
 
 import (
 	"cmp"
+	"context"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -9,6 +10,7 @@ import (
 	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
+	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
 )
@@ -29,6 +31,7 @@ type checkFlags struct {
 	meterTol    string
 	meterPlus   float64
 	plots       string
+	recording   recordFlags
 }
 
 func newCheck() *cobra.Command {
@@ -99,6 +102,7 @@ no sound unit shows keeps the loss from a PASS.`,
 	flags.BoolVar(&f.onThisBench, "on-this-bench", false, "no drawing: the mark is what this bench should read")
 	flags.StringVar(&f.report, "report", "", "write the answer as a page to keep and to send, FILE.html")
 	_ = cmd.MarkFlagFilename("report", "html", "htm")
+	f.recording.addTo(cmd)
 	flags.BoolVarP(&f.verbose, "verbose", "v", false, "add the takes and the uncertainty budget")
 	addPlots(cmd, &f.plots)
 	return cmd
@@ -124,23 +128,44 @@ func runCheck(cmd *cobra.Command, args []string, f checkFlags) error {
 	options.Progress, options.Err = shown.tell, ctx.Err
 	answer, err := proof.Check(u, options)
 	shown.clear()
-	err = cmp.Or(err, ctx.Err())
-	if err == nil && f.report != "" {
-		err = writeReport(ctx, f.report, answer, f.now())
-	}
-	if err != nil {
+	if err = cmp.Or(err, ctx.Err()); err != nil {
 		return inUnit(u.Serial, afterInterrupt(err))
 	}
-	if err := writePlots(cmd, f.plots, func() []*draw.Picture { return draw.OfAnswer(answer) }); err != nil {
-		return inUnit(u.Serial, err)
-	}
+	f.record(cmd, answer)
+	unwritten := f.writeFiles(ctx, cmd, answer)
 	if wantsJSON(cmd) {
 		err = writeJSON(cmd.OutOrStdout(), answer)
 	} else {
 		err = report.AnswerText(coloured(cmd.OutOrStdout()), answer, f.verbose)
+		if err == nil && answer.Recorded != nil {
+			err = report.RecordedText(cmd.OutOrStdout(), answer.Recorded)
+		}
 	}
 	if err != nil {
 		return err
+	}
+	return f.end(cmd, answer, unwritten)
+}
+
+// writeFiles writes the page and the pictures that were asked for. The answer is
+// printed even where that fails.
+func (f checkFlags) writeFiles(ctx context.Context, cmd *cobra.Command, answer *result.Answer) error {
+	if f.report != "" {
+		if err := writeReport(ctx, f.report, answer, f.now()); err != nil {
+			return err
+		}
+	}
+	return writePlots(cmd, f.plots, func() []*draw.Picture { return draw.OfAnswer(answer) })
+}
+
+// end is the exit status of an answer that was printed.
+func (f checkFlags) end(cmd *cobra.Command, answer *result.Answer, unwritten error) error {
+	switch {
+	case unwritten != nil:
+		printError(cmd.ErrOrStderr(), describe(afterInterrupt(unwritten)))
+		return exitStatus(exitNoCheck)
+	case answer.RecordError != nil:
+		return notRecorded(cmd, answer.RecordError)
 	}
 	return statusOf(answer.Verdict)
 }

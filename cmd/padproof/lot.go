@@ -3,7 +3,6 @@ package main
 import (
 	"encoding/json"
 	"io"
-	"os"
 	"path/filepath"
 	"runtime"
 
@@ -15,6 +14,7 @@ import (
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
+	"padproof/cmd/padproof/internal/whole"
 )
 
 // lotFlags are those of lot.
@@ -89,24 +89,24 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	if err != nil {
 		return afterInterrupt(err)
 	}
-	whole, err := tally.Lot()
+	together, err := tally.Lot()
 	if err != nil {
 		return err
 	}
 	if f.csv != "" {
-		if err := writeWhole(f.csv, func(w io.Writer) error { return report.LotCSV(w, whole) }); err != nil {
+		if err := whole.Write(ctx, f.csv, func(w io.Writer) error { return report.LotCSV(w, together) }); err != nil {
 			return err
 		}
 	}
 	if wantsJSON(cmd) {
-		err = writeLine(out, whole)
+		err = writeLine(out, together)
 	} else {
-		err = report.LotText(out, whole)
+		err = report.LotText(out, together)
 	}
 	if err != nil {
 		return err
 	}
-	return lotStatus(whole)
+	return lotStatus(together)
 }
 
 // open finds the units of a folder and begins the tally.
@@ -177,26 +177,4 @@ func lotStatus(l *result.Lot) error {
 		return exitStatus(exitUnproven)
 	}
 	return nil
-}
-
-// writeWhole writes a file beside its name and then gives it the name: whole, or
-// not at all.
-func writeWhole(path string, write func(io.Writer) error) error {
-	file, err := os.CreateTemp(filepath.Dir(path), ".padproof-*")
-	if err != nil {
-		return err
-	}
-	defer os.Remove(file.Name())
-	if err := write(file); err != nil {
-		file.Close()
-		return err
-	}
-	if err := file.Chmod(0o644); err != nil {
-		file.Close()
-		return err
-	}
-	if err := file.Close(); err != nil {
-		return err
-	}
-	return os.Rename(file.Name(), path)
 }

@@ -13,18 +13,18 @@ import (
 // the assumptions.
 func sheetsOf(folder string, d *Drawing) []result.Sheet {
 	sheets := []result.Sheet{}
-	add := func(path string, source []byte) {
+	add := func(role, path string, source []byte) {
 		sum := sha256.Sum256(source)
-		sheets = append(sheets, result.Sheet{
+		sheets = append(sheets, result.Sheet{Role: role,
 			File: fileIn(folder, path), SHA256: hex.EncodeToString(sum[:]),
 			Text: string(bytes.TrimPrefix(source, []byte("\xef\xbb\xbf"))),
 		})
 	}
 	if d.Pad != nil {
-		add(d.Pad.File, d.Pad.Source)
+		add("pad", d.Pad.File, d.Pad.Source)
 	}
 	if d.Sheet.File != "" {
-		add(d.Sheet.File, d.Sheet.Source)
+		add("rig", d.Sheet.File, d.Sheet.Source)
 	}
 	return sheets
 }

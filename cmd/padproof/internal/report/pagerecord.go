@@ -27,6 +27,19 @@ func foundFacts(a *result.Answer) []fact {
 	return facts
 }
 
+// recordedFacts are where the answer stands in the ledger.
+func recordedFacts(a *result.Answer) []fact {
+	r := a.Recorded
+	if r == nil {
+		return nil
+	}
+	return []fact{
+		{"Station", phrase{name(r.Station)}},
+		{"Record", phrase{count("/recorded/sequence", int(r.Sequence))}},
+		{"Hash, the head of the station", say(r.Hash)},
+	}
+}
+
 // budgetTables are the uncertainty budgets, one a check.
 func budgetTables(a *result.Answer) []*table {
 	var all []*table

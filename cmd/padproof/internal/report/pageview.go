@@ -39,6 +39,7 @@ type pageView struct {
 	Cautions []string
 	Pictures []pictureView
 	Found    []fact
+	Recorded []fact
 	Budgets  []*table
 	Takes    []*table
 }
@@ -100,7 +101,7 @@ func viewOf(a *result.Answer, info PageInfo) (*pageView, error) {
 	v.Why, v.Facts = whyOf(a), factsOf(a)
 	v.Checks, v.Details = checksTable(a), checkDetails(a)
 	v.Tones, v.Octaves = tonesTable(a), octaveTable(a)
-	v.Problems, v.Found = problemViews(a), foundFacts(a)
+	v.Problems, v.Found, v.Recorded = problemViews(a), foundFacts(a), recordedFacts(a)
 	v.Budgets, v.Takes = budgetTables(a), takeTables(a)
 	if v.Suspects, err = suspectViews(a, info.Marked); err != nil {
 		return nil, err

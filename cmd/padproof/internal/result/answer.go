@@ -34,8 +34,10 @@ type Answer struct {
 	BenchEnds   *Ends `json:"bench_ends,omitempty"`
 	ServiceEnds *Ends `json:"service_ends,omitempty"`
 
-	Drawing *Drawing `json:"drawing,omitempty"` // nil where there is none
-	Curves  *Curves  `json:"curves,omitempty"`  // only where they were asked for
+	Drawing     *Drawing  `json:"drawing,omitempty"`      // nil where there is none
+	Curves      *Curves   `json:"curves,omitempty"`       // only where they were asked for
+	Recorded    *Recorded `json:"recorded,omitempty"`     // where it stands in the ledger
+	RecordError *Error    `json:"record_error,omitempty"` // why it could not be recorded
 }
 
 // Ends are the impedances and the wiring a pad stands between.
@@ -171,6 +173,7 @@ type Found struct {
 
 // A Sheet is a sheet as it was read.
 type Sheet struct {
+	Role   string `json:"role"` // "pad" or "rig"
 	File   string `json:"file"`
 	SHA256 string `json:"sha256"`
 	Text   string `json:"text"`
