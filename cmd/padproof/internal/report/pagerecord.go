@@ -27,17 +27,22 @@ func foundFacts(a *result.Answer) []fact {
 	return facts
 }
 
-// recordedFacts are where the answer stands in the ledger.
+// recordedFacts are where the answer stands in the ledger, or why it does not.
 func recordedFacts(a *result.Answer) []fact {
-	r := a.Recorded
-	if r == nil {
-		return nil
+	var facts []fact
+	if e := a.RecordError; e != nil {
+		why := phrase{name(e.File)}
+		if e.Line > 0 {
+			why = append(why, words(", line "), count("/record_error/line", e.Line))
+		}
+		facts = append(facts, fact{"Not recorded", append(why, words(": "+e.Text+"; "+e.Hint))})
 	}
-	return []fact{
-		{"Station", phrase{name(r.Station)}},
-		{"Record", phrase{count("/recorded/sequence", int(r.Sequence))}},
-		{"Hash, the head of the station", say(r.Hash)},
+	if r := a.Recorded; r != nil {
+		facts = append(facts, fact{"Station", phrase{name(r.Station)}},
+			fact{"Record", phrase{count("/recorded/sequence", int(r.Sequence))}},
+			fact{"Hash, the head of the station", say(r.Hash)})
 	}
+	return facts
 }
 
 // budgetTables are the uncertainty budgets, one a check.
