@@ -1,2 +1,0 @@
-// Package suspect tells which fault explains what was measured of a unit.
-package suspect
