@@ -2,6 +2,7 @@ package suspect
 
 import (
 	"math"
+	"math/cmplx"
 	"slices"
 
 	"padproof/compare"
@@ -50,6 +51,7 @@ const (
 	legsRow
 	phaseRow
 	ohmsRow
+	deadRow // at: 0 hot, 1 cold
 )
 
 // mostLossDB stands for a loss of which nothing was said but that nothing came through.
@@ -136,9 +138,23 @@ func variance(stdU, least float64) float64 {
 	return stdU * stdU
 }
 
+// A leg on which no tone stands lies by so much under one straight through.
+const (
+	deadDB      = 60
+	deadDoubtDB = 8
+)
+
 func (s *search) legs() {
 	l := s.e.Legs
-	if l == nil || l.DeadHot && l.DeadCold || !(l.FreqHz >= 0) || math.IsInf(l.FreqHz, 1) || s.e.Circuit.Unbalanced() {
+	if l == nil || !(l.FreqHz >= 0) || math.IsInf(l.FreqHz, 1) || s.e.Circuit.Unbalanced() {
+		return
+	}
+	if l.DeadHot && l.DeadCold {
+		straight, _ := s.e.Circuit.LegVolts(s.ends, l.LoadOhms, l.FreqHz)
+		level := 20 * math.Log10(math.Max(cmplx.Abs(straight.Hot), cmplx.Abs(straight.Cold)))
+		for leg := range 2 {
+			s.rows = append(s.rows, row{kind: deadRow, at: leg, observed: level - deadDB, variance: deadDoubtDB * deadDoubtDB, bound: -1})
+		}
 		return
 	}
 	over := row{kind: legsRow, observed: l.OverDB, variance: variance(l.StdUDB, leastStdUDB)}

@@ -19,6 +19,7 @@ type hypothesis struct {
 	circuit  *network.Circuit // with the fault in it; of a family at its likeliest amount
 	ends     network.Ends
 	logScore float64
+	second   float64 // logarithm of the likelihood of the fault with a part off beside it
 	weight   float64
 	in       integral  // of a family
 	mean     []float64 // of each row, of a family at its likeliest amount
@@ -79,12 +80,14 @@ func (w *scorer) hypothesis(h *hypothesis, drawn *prediction, straights []networ
 		w.familyOf(h, drawn, straights)
 		return
 	}
-	h.logScore = math.Inf(-1)
+	h.logScore, h.second = math.Inf(-1), math.Inf(-1)
 	if w.farOff(h, straights) {
 		return
 	}
 	p := w.predict(h.circuit, h.ends, straights)
-	h.logScore = w.score(p) + w.e.Hum.score(h.fault.loose(w.e.Circuit, h.circuit))
+	hum := w.e.Hum.score(h.fault.loose(w.e.Circuit, h.circuit))
+	h.logScore = w.score(p) + hum
+	h.second = w.withSecond(p) + hum
 	w.keep(h)
 }
 
@@ -101,11 +104,11 @@ func (w *scorer) farOff(h *hypothesis, straights []network.Slope) bool {
 	clear(p.by)
 	w.through(p, r.at, h.circuit, h.ends, straights[r.at], nil)
 	w.doubts(p, h.circuit)
-	j := w.j[:w.params]
-	clear(j)
+	raw, j := w.raw[:w.params], w.j[:w.params]
+	clear(raw)
 	w.extra[0] = 0
-	d := r.observed - w.addDB(p, r.at, -1, j, 0)
-	w.bounded(j, p.stdU)
+	d := r.observed - w.addDB(p, r.at, -1, raw, 0)
+	w.bounded(j, raw, p.stdU)
 	v := r.variance + w.extra[0] + w.e.GainStdUDB*w.e.GainStdUDB + 0.1
 	for _, x := range j {
 		v += x * x
@@ -137,7 +140,8 @@ func (w *scorer) familyOf(h *hypothesis, drawn *prediction, straights []network.
 		fam.find(t, w.spare)
 		return w.score(w.spare)
 	}))
-	h.logScore = h.in.logScore + w.e.Hum.score(false)
+	hum := w.e.Hum.score(false)
+	h.logScore, h.second = h.in.logScore+hum, w.secondOf(fam)+hum
 	h.fault = h.fault.by(h.in.t, h.in.tStdU)
 	c, e := h.fault.exactly(h.in.bestT).Apply(w.e.Circuit, w.ends)
 	h.circuit, h.ends = c, e

@@ -119,6 +119,18 @@ func (d *drawing) keepDistinct(s suspect.Suspect) []suspect.Fault {
 	return kept
 }
 
+// firstOnly is a suspect with those of its faults left that are the same at every pin as the first.
+func (d *drawing) firstOnly(s suspect.Suspect) suspect.Suspect {
+	var kept []suspect.Fault
+	for _, f := range s.Faults {
+		if len(kept) == 0 || d.same(s.Faults[0], f, 0) {
+			kept = append(kept, f)
+		}
+	}
+	s.Faults = kept
+	return s
+}
+
 // partsOf are the parts that a fault blames; of a leg that is at every pin the same as a part, that part.
 func (d *drawing) partsOf(f suspect.Fault) []string {
 	if parts := f.Parts(); len(parts) > 0 {

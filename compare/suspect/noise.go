@@ -93,16 +93,28 @@ func (s *noiseScale) predict(c *network.Circuit, loadRatio float64) network.Ther
 	return t
 }
 
-// otherNoise is the share of units whose noise has a cause of its own: a socket, a magnet nearby.
-// *Common practice, no source.*
-const otherNoise = 0.05
+// otherNoise is the share of units that make more noise for a cause of its own: a socket, a magnet
+// nearby. Less than thermal noise no cause gives; lessNoise is the share of misread takes. *Common
+// practice, no source.*
+const (
+	otherNoise = 0.03
+	lessNoise  = 0.001
+)
 
-// A noiseDoubt is what is measured and what is predicted, both less the rig's noise.
+// anything is the logarithm of the likelihood of the noise where nothing is known of the circuit.
+func (s *noiseScale) anything() float64 { return math.Log(0.5) }
+
+// A noiseDoubt is the pad's excess over the rig's noise that a circuit should show, and how well that
+// is known.
 type noiseDoubt struct{ mean, stdU float64 }
 
-// doubt works out what a circuit should show and how well that is known. The load's own noise and the
-// noise current count in the middle of what they may be.
-func (s *noiseScale) doubt(t network.Thermal) noiseDoubt {
+// loads are what the load may be: the input of an amplifier, which makes no noise, a real resistor, or
+// something between, with how likely each is. *Common practice, no source.*
+var loads = [...]struct{ chance, share, half float64 }{{0.45, 0, 0}, {0.45, 1, 0}, {0.1, 0.5, 0.5}}
+
+// doubt works out what a circuit should show where the load makes that share, give or take half, of
+// the noise of a resistor. The noise current counts in the middle of what it may be.
+func (s *noiseScale) doubt(t network.Thermal, share, half float64) noiseDoubt {
 	b := s.Bench
 	lowSq, highSq := b.LowAmps*b.LowAmps, b.HighAmps*b.HighAmps
 	if !(lowSq >= 0) || !(highSq < 1) {
@@ -115,7 +127,8 @@ func (s *noiseScale) doubt(t network.Thermal) noiseDoubt {
 			variance += v * v
 		}
 	}
-	add(t.LoadVV/2, rect)
+	add(t.LoadVV*half, rect)
+	add(t.LoadVV*share, 0.03)
 	add(t.OhmsSq*(highSq-lowSq)/2, rect)
 	add(t.UnitVV, 0.02) // tolerances of the parts, temperature
 	add(s.PadVV, s.PadStdUFrac)
@@ -127,31 +140,42 @@ func (s *noiseScale) doubt(t network.Thermal) noiseDoubt {
 		add(s.excess, b.CalibrationUDB/2/compare.DBPerPower)
 	}
 	return noiseDoubt{
-		mean: t.UnitVV + t.LoadVV/2 + t.OhmsSq*(lowSq+highSq)/2,
+		mean: t.UnitVV + t.LoadVV*share + t.OhmsSq*(lowSq+highSq)/2,
 		stdU: math.Max(math.Sqrt(variance), 1e-6*s.PadVV),
 	}
 }
 
-// departure is how many standard uncertainties the noise lies from that of a circuit; false where
-// there is only a bound that holds.
+// departure is how many standard uncertainties the noise lies from that of a circuit, at the load that
+// suits it best; false where there is only a bound that holds.
 func (s *noiseScale) departure(t network.Thermal) (float64, bool) {
-	d := s.doubt(t)
-	if math.IsNaN(s.RigVV) {
-		z := (d.mean - s.PadVV) / d.stdU
-		return z, z > 0
+	least := math.Inf(1)
+	for _, l := range loads {
+		d := s.doubt(t, l.share, l.half)
+		z := (s.excess - d.mean) / d.stdU
+		if math.IsNaN(s.RigVV) {
+			z = math.Max(0, (d.mean-s.PadVV)/d.stdU)
+		}
+		least = math.Min(least, math.Abs(z))
 	}
-	return (s.excess - d.mean) / d.stdU, true
+	return least, !math.IsNaN(s.RigVV) || least > 0
 }
 
 // score is the logarithm of the likelihood of the noise: of pad-noise alone, the chance that the unit
 // makes no more than that.
 func (s *noiseScale) score(t network.Thermal) float64 {
-	d := s.doubt(t)
+	var sum float64
+	for _, l := range loads {
+		sum += l.chance * s.likelihood(s.doubt(t, l.share, l.half))
+	}
+	return math.Log(sum)
+}
+
+func (s *noiseScale) likelihood(d noiseDoubt) float64 {
 	if math.IsNaN(s.RigVV) {
-		return math.Log((1-otherNoise)*chanceBelow((s.PadVV-d.mean)/d.stdU) + otherNoise*0.5)
+		return (1-lessNoise)*chanceBelow((s.PadVV-d.mean)/d.stdU) + lessNoise
 	}
 	z := (s.excess - d.mean) / d.stdU
 	// In parts of pad-noise, so that the unit of the density is the same for all.
 	dense := math.Exp(-z*z/2) / (d.stdU / s.PadVV * math.Sqrt(2*math.Pi))
-	return math.Log((1-otherNoise)*dense + otherNoise*0.5)
+	return (1-otherNoise-lessNoise)*dense + otherNoise*chanceBelow(z) + lessNoise
 }

@@ -16,15 +16,48 @@ const (
 	noneHum     = 0.3 // chance that hum stands out
 )
 
+// Of what is none of the faults, this share is something of another kind than a fault with a part off
+// beside it; and of that, half tilts the response.
+const otherShare = 0.3
+
 // scoreNone is the logarithm of the likelihood of all that was taken where none of the faults, nor a
-// sound unit, explains it.
-func (w *scorer) scoreNone(drawn *prediction) float64 {
+// sound unit, explains it: two things are wrong, or something else.
+func (w *scorer) scoreNone(all []*hypothesis, drawn *prediction) float64 {
+	scores := []float64{
+		math.Log(otherShare/2) + w.scoreOther(drawn, false),
+		math.Log(otherShare/2) + w.scoreOther(drawn, true),
+	}
+	for _, h := range all {
+		scores = append(scores, math.Log((1-otherShare)*h.prior/faultPrior)+h.second)
+	}
+	return logSum(scores)
+}
+
+// logSum is the logarithm of the sum of what the scores are logarithms of.
+func logSum(scores []float64) float64 {
+	best, sum := math.Inf(-1), 0.0
+	for _, s := range scores {
+		best = math.Max(best, s)
+	}
+	if math.IsInf(best, 0) || math.IsNaN(best) {
+		return math.Inf(-1)
+	}
+	for _, s := range scores {
+		if !math.IsNaN(s) {
+			sum += math.Exp(s - best)
+		}
+	}
+	return best + math.Log(sum)
+}
+
+// scoreOther is for something that the model does not hold.
+func (w *scorer) scoreOther(drawn *prediction, tilted bool) float64 {
 	w.fill(drawn)
 	w.covariance()
 	n := w.known
 	for a, ra := range w.rows[:n] {
 		for b := range a + 1 {
-			w.cov[a*n+b] += w.noneShare(ra, w.rows[b], a == b)
+			w.cov[a*n+b] += w.noneShare(ra, w.rows[b], a == b, tilted)
 		}
 	}
 	logDet := w.factor()
@@ -38,7 +71,7 @@ func (w *scorer) scoreNone(drawn *prediction) float64 {
 		sum += math.Log(chanceOf(seen, noneHum))
 	}
 	if w.noise != nil {
-		sum += math.Log(0.5)
+		sum += w.noise.anything()
 	}
 	if math.IsNaN(sum) {
 		return math.Inf(-1)
@@ -54,13 +87,16 @@ func chanceOf(happened bool, p float64) float64 {
 }
 
 // noneShare is what two rows have in common, as variance.
-func (w *scorer) noneShare(a, b row, same bool) float64 {
+func (w *scorer) noneShare(a, b row, same, tilted bool) float64 {
 	losses := func(r row) bool { return r.kind == lossRow || r.kind == responseRow }
 	switch {
 	case losses(a) && losses(b):
-		la, ha := w.tilts(a)
-		lb, hb := w.tilts(b)
-		v := noneTiltDB * noneTiltDB * (la*lb + ha*hb)
+		v := 0.0
+		if tilted {
+			la, ha := w.tilts(a)
+			lb, hb := w.tilts(b)
+			v = noneTiltDB * noneTiltDB * (la*lb + ha*hb)
+		}
 		if a.kind == lossRow && b.kind == lossRow {
 			v += noneLevelDB * noneLevelDB
 		}

@@ -109,7 +109,7 @@ func (s *search) others(p *prediction, c *network.Circuit, e network.Ends) {
 
 func (s *search) hasLegs() bool {
 	for _, r := range s.rows {
-		if r.kind == legsRow || r.kind == phaseRow {
+		if r.kind == legsRow || r.kind == phaseRow || r.kind == deadRow {
 			return true
 		}
 	}

@@ -5,23 +5,23 @@ import "padproof/compare/network"
 // How often what goes wrong, before anything is measured, against one another: see the package doc.
 // All are common practice, no source.
 const (
-	openShare      = 3.0 // a joint left out, a cracked part
-	shortShare     = 1.5 // a bridge of solder
-	decadeShare    = 1.0 // the multiplier misread, each way
-	neighbourShare = 0.7 // the drawer beside, each way
-	driftShare     = 2.0 // overheated, damp, aged
-	swapShare      = 2.0 // each pair
-	legOpenShare   = 1.5 // a broken wire, a plug not soldered
-	legScreenShare = 1.0 // a strand of the screen
-	crossedShare   = 1.5 // hot for cold
-	endsShare      = 1.5 // the pad the wrong way round
-	endShare       = 1.5 // source or load, each
+	openShare      = 2.0  // a joint left out, a cracked part
+	shortShare     = 1.1  // a bridge of solder
+	decadeShare    = 1.0  // the multiplier misread, each way
+	neighbourShare = 0.7  // the drawer beside, each way
+	driftShare     = 2.0  // overheated, damp, aged
+	swapShare      = 2.0  // each pair
+	legOpenShare   = 1.5  // a broken wire, a plug not soldered
+	legScreenShare = 1.25 // a strand of the screen
+	crossedShare   = 1.5  // hot for cold
+	endsShare      = 1.5  // the pad the wrong way round
+	endShare       = 1.5  // source or load, each
 )
 
 // What part of all units that come here is sound, and has something wrong that is none of these.
 const (
 	soundPrior = 0.5
-	nonePrior  = 0.04
+	nonePrior  = 0.06
 	faultPrior = 1 - soundPrior - nonePrior
 )
 

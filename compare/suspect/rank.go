@@ -55,9 +55,9 @@ func Rank(e Evidence) Ranking {
 		return r
 	}
 	sound := math.Log(soundPrior) + w.score(drawn) + e.Hum.score(false)
-	none := math.Log(nonePrior) + w.scoreNone(drawn)
 	all := s.hypotheses()
 	s.scoreAll(all, drawn, straights)
+	none := math.Log(nonePrior) + w.scoreNone(all, drawn)
 	r.Sound, r.NoneWeight = weigh(all, sound, none)
 	classes := s.classes(all)
 	c := s.newConfirmer(r.Sound)

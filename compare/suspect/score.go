@@ -21,18 +21,23 @@ const mostRowStdU = 12
 type scorer struct {
 	*search
 	mean  []float64 // of each row
-	j     []float64 // rows × params, times the standard uncertainty
+	raw   []float64 // slopes, rows × params, per relative change
+	j     []float64 // the same times the standard uncertainty
 	extra []float64 // variance of each row beside its own and j
 	cov   []float64 // known × known, then its factor
 	left  []float64
 	spare *prediction
+	seconds
+
+	lastChi, lastLogDet float64
 }
 
 func newScorer(s *search) *scorer {
 	n := len(s.rows)
 	return &scorer{
-		search: s, mean: make([]float64, n), j: make([]float64, n*s.params), extra: make([]float64, n),
+		search: s, mean: make([]float64, n), raw: make([]float64, n*s.params), j: make([]float64, n*s.params), extra: make([]float64, n),
 		cov: make([]float64, s.known*s.known), left: make([]float64, s.known), spare: s.newPrediction(),
+		seconds: newSeconds(s.known, s.parts),
 	}
 }
 
@@ -41,7 +46,7 @@ func (w *scorer) fill(p *prediction) {
 	_, legs, meters := w.figures()
 	clear(w.extra)
 	for i, r := range w.rows {
-		j := w.j[i*w.params : (i+1)*w.params]
+		j := w.raw[i*w.params : (i+1)*w.params]
 		clear(j)
 		switch r.kind {
 		case lossRow:
@@ -52,6 +57,8 @@ func (w *scorer) fill(p *prediction) {
 			w.mean[i] = w.addDB(p, legs, 1, j, i) + w.addDB(p, legs+1, -1, j, i)
 		case phaseRow:
 			w.mean[i] = w.addPhase(p, legs, 1, j, i) + w.addPhase(p, legs+1, -1, j, i)
+		case deadRow:
+			w.mean[i] = w.addDB(p, legs+r.at, 1, j, i)
 		case ohmsRow:
 			o := w.meters[r.at]
 			ohms := real(p.at[meters+r.at])
@@ -60,18 +67,18 @@ func (w *scorer) fill(p *prediction) {
 				j[k] = real(p.by[(meters+r.at)*w.params+k]) / (ohms + o.scaleOhms())
 			}
 		}
-		w.bounded(j, p.stdU)
+		w.bounded(w.j[i*w.params:(i+1)*w.params], j, p.stdU)
 		if r.kind == lossRow {
 			w.extra[i] += p.cross * p.cross / 9
 		}
 	}
 }
 
-// bounded multiplies the slopes of a row by the standard uncertainties.
-func (w *scorer) bounded(j, stdU []float64) {
+// bounded sets j to the slopes of a row times the standard uncertainties.
+func (w *scorer) bounded(j, raw, stdU []float64) {
 	var sum float64
 	for k := range j {
-		j[k] *= stdU[k]
+		j[k] = raw[k] * stdU[k]
 		sum += j[k] * j[k]
 	}
 	if sum > mostRowStdU*mostRowStdU {
@@ -83,14 +90,26 @@ func (w *scorer) bounded(j, stdU []float64) {
 }
 
 // addDB returns sign times 20 lg of a figure and adds its slopes.
+//
+// Where a figure is nothing but what the tolerances leave of it, as across a bridge in balance, slopes
+// say nothing: it is then of the size of their sum. The logarithm of a normal variable of mean nil has
+// a mean of -0.635 under that of its standard deviation and a standard deviation of 1.11, in nepers.
 func (w *scorer) addDB(p *prediction, figure int, sign float64, j []float64, row int) float64 {
+	const nilShare, nilStdU = 0.281, 1.11 * dbPerNeper
 	v := p.at[figure]
+	by := p.by[figure*w.params : (figure+1)*w.params]
+	var blur float64
+	for k, b := range by {
+		blur += square(b) * p.stdU[k] * p.stdU[k]
+	}
 	size := square(v) + leak*leak
-	w.extra[row] += dbPerNeper * dbPerNeper * leakDoubt * leakDoubt * leak * leak / size
+	share := blur / (blur + size)
+	size += nilShare * blur * share
+	w.extra[row] += nilStdU*nilStdU*share*share*share + dbPerNeper*dbPerNeper*leakDoubt*leakDoubt*leak*leak/size
 	f := sign * dbPerNeper / size
-	for k, by := range p.by[figure*w.params : (figure+1)*w.params] {
-		if by != 0 {
-			j[k] += f * (real(by)*real(v) + imag(by)*imag(v))
+	for k, b := range by {
+		if b != 0 {
+			j[k] += f * (real(b)*real(v) + imag(b)*imag(v))
 		}
 	}
 	return sign * dbPerNeper / 2 * math.Log(size)
@@ -190,8 +209,9 @@ func (w *scorer) departure(row int) float64 {
 // gaussian is the logarithm of the density of the measured rows.
 func (w *scorer) gaussian() float64 {
 	w.covariance()
-	logDet := w.factor()
-	return -(w.chi() + logDet + float64(w.known)*math.Log(2*math.Pi)) / 2
+	w.lastLogDet = w.factor()
+	w.lastChi = w.chi()
+	return -(w.lastChi + w.lastLogDet + float64(w.known)*math.Log(2*math.Pi)) / 2
 }
 
 // leastChance keeps a single bound, which may be misread, from ruling anything out for good.
