@@ -98,6 +98,7 @@ type made struct {
 		PhaseStd number  `json:"phase_std"`
 		DeadHot  bool    `json:"dead_hot"`
 		DeadCold bool    `json:"dead_cold"`
+		Before   bool    `json:"before"`
 	} `json:"legs"`
 	Noise struct {
 		Plug  float64 `json:"plug"`

@@ -10,9 +10,10 @@ and meter are drawn from the rectangles stated, readings get their noise. Keys o
 
     design    parts, whether unbalanced, classes: the faults by words, the same number where no impedance
               between any two pins differs at 0, 997 and 20000 Hz; sound is the number of a sound unit
-    unit      shows_db of two faults (see hides); fault, form, ref, other, ratio (true value of the faulty part, or end, over the stated one),
-              rig as stated, loss, response, legs, polarity, noise, and ohms by "pin,pin" or "pin,pin|pin,pin"
-              with the second pair joined: as the meter showed it, and true; null is over range
+    unit      fault, form, ref, other, ratio (true value of the faulty part, or end, over the stated one), shows_db
+              (of two faults, see hides), rig as stated, loss, response, legs, polarity, noise, and ohms by
+              "pin,pin" or "pin,pin|pin,pin" with the second pair joined: as the meter showed it, and true; null
+              is over range
 """
 import argparse
 import json
@@ -117,7 +118,8 @@ class Plan:
         form, ref = open_ended[i - len(self.known[k])]
         if form == "drift":
             return drift(rng, ref)
-        return Fault(form, f"{form} not as stated", value=math.exp(rng.uniform(math.log(1.25), math.log(10)) * rng.choice((-1, 1))))
+        ratio = math.exp(rng.uniform(math.log(1.25), math.log(10)) * rng.choice((-1, 1)))
+        return Fault(form, f"{form} not as stated", value=ratio)
 
     def two(self, d):
         rng = self.rng
@@ -186,7 +188,8 @@ class Asked:
         loss; loss or legs; loss, legs or noise."""
         def db(a, b, least):
             return 20 * math.log10(max(abs(a), least) / max(abs(b), least))
-        figures = [(db(volts[pad[0]], volts[straight[0]], 1e-4), 0.0 if self.d.unbalanced else db(volts[hot], volts[cold], 1e-5),
+        figures = [(db(volts[pad[0]], volts[straight[0]], 1e-4),
+                    0.0 if self.d.unbalanced else db(volts[hot], volts[cold], 1e-5),
                     10 * math.log10(max(volts[z[0]].real, 1.0))) for (straight, pad), (hot, cold), z in self.alone]
         moved = np.abs(np.array(figures[1:]) - figures[0])
         return [float(moved[:, :n].max(axis=1).min()) for n in (1, 2, 3)]
@@ -280,7 +283,8 @@ class Asked:
         rig = 0.6 * 10 ** (rng.uniform(-129, -120) / 10)
         part = 1 / math.sqrt(BAND_HZ * 10)
         calibration = 10 ** (rng.normal(0, 0.1) / 10)
-        return {"plug": self.plug, "pad_vv": (rig + unit) * calibration * 10 ** (rectangle(rng, 0.02) / 10) * (1 + rng.normal(0, part)),
+        gain = 10 ** (rectangle(rng, 0.02) / 10)
+        return {"plug": self.plug, "pad_vv": (rig + unit) * calibration * gain * (1 + rng.normal(0, part)),
                 "rig_vv": rig * calibration * (1 + rng.normal(0, part)), "part": part, "true_vv": unit}
 
 
