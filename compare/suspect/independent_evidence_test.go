@@ -54,7 +54,7 @@ func (u *made) evidence(k taking) suspect.Evidence {
 	if l := u.Legs; k.legs && l != nil {
 		e.Legs = &suspect.Legs{
 			FreqHz: toneHz, LoadOhms: u.Rig.LegsLoad, OverDB: l.DB, StdUDB: l.Std, PhaseDeg: float64(l.Phase), PhaseStdUDeg: float64(l.PhaseStd),
-			DeadHot: l.DeadHot, DeadCold: l.DeadCold,
+			DeadHot: l.DeadHot, DeadCold: l.DeadCold, Before: l.Before,
 		}
 	}
 	if k.noise {

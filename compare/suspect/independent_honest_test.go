@@ -121,7 +121,7 @@ func TestIndependentTime(t *testing.T) {
 		if u := &units[i]; len(u.of.Parts) == 12 {
 			e := u.evidence(takings[len(takings)-1])
 			best := time.Hour
-			for range 3 { // others may be at work on this machine
+			for range 8 { // others may be at work on this machine
 				start := time.Now()
 				suspect.Rank(e)
 				best = min(best, time.Since(start))
