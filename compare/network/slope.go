@@ -40,16 +40,26 @@ func (c *Circuit) loadSlope(values []float64, e Ends, freqHz float64, parts []co
 // LegSlopes returns the leg voltages of [Circuit.LegVolts] with the pad and their slopes, by the load
 // of each leg apart.
 func (c *Circuit) LegSlopes(e Ends, legsLoadOhms, freqHz float64) (hot, cold Slope) {
+	return c.legSlopes(c.values, e, legsLoadOhms, freqHz)
+}
+
+// StraightLegSlopes is LegSlopes straight through, without a pad.
+func (c *Circuit) StraightLegSlopes(e Ends, legsLoadOhms, freqHz float64) (hot, cold Slope) {
+	return c.legSlopes(nil, e, legsLoadOhms, freqHz)
+}
+
+func (c *Circuit) legSlopes(values []float64, e Ends, legsLoadOhms, freqHz float64) (hot, cold Slope) {
 	e = e.bounded()
 	e.Sense = SenseBalanced
 	e.LoadOhms = 2 * atLeast(legsLoadOhms, minEndOhms)
-	s := c.through(c.values, e, angular(freqHz))
+	s := c.through(values, e, angular(freqHz))
 	defer s.end()
+	pad := values != nil
 	if s.floating { // see legVolts: the middle lies at screen
-		hot = c.slopeOf(s, outHot, outCold, true, nil)
+		hot = c.slopeOf(s, outHot, outCold, pad, nil)
 		return hot.times(0.5), hot.times(-0.5)
 	}
-	return c.slopeOf(s, outHot, screen, true, nil), c.slopeOf(s, outCold, screen, true, nil)
+	return c.slopeOf(s, outHot, screen, pad, nil), c.slopeOf(s, outCold, screen, pad, nil)
 }
 
 // slopeOf reads a voltage of a solved circuit and its slopes.

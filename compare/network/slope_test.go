@@ -61,6 +61,12 @@ func TestSlopesAreDifferences(t *testing.T) {
 			})
 		}
 
+		straightHot, _ := c.StraightLegSlopes(e, 5000, freqHz)
+		check("source on hot straight", straightHot.Source, func(by float64) complex128 {
+			l, _ := c.LegVolts(bySource(by), 5000, freqHz)
+			return l.Hot
+		})
+
 		for _, joined := range [][][2]string{nil, {{"out.hot", "out.cold"}}} {
 			ohms, shares := c.OhmsSlope("in.hot", "in.cold", joined...)
 			if want := c.Ohms("in.hot", "in.cold", joined...); ohms != want {

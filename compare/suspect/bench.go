@@ -21,6 +21,8 @@ type search struct {
 	params int       // parts, then the ends
 	meters []Ohms    // readings in rows
 	noise  *noiseScale
+
+	straightLegs []float64 // dB of hot over cold straight through per relative change of each end; nil where it is not off
 }
 
 // The doubtful figures after those of the parts.
@@ -157,6 +159,9 @@ func (s *search) legs() {
 		}
 		return
 	}
+	if l.Before {
+		s.straightLegs = s.straightLegsDB()
+	}
 	over := row{kind: legsRow, observed: l.OverDB, variance: variance(l.StdUDB, leastStdUDB)}
 	switch {
 	case l.DeadHot:
@@ -170,6 +175,19 @@ func (s *search) legs() {
 	if over.bound == 0 && !math.IsNaN(l.PhaseDeg) && !math.IsInf(l.PhaseDeg, 0) {
 		s.rows = append(s.rows, row{kind: phaseRow, observed: l.PhaseDeg, variance: variance(l.PhaseStdUDeg, leastStdUDeg)})
 	}
+}
+
+// straightLegsDB are what the ends do to hot over cold straight through; nil where one leg is not fed.
+func (s *search) straightLegsDB() []float64 {
+	hot, cold := s.e.Circuit.StraightLegSlopes(s.ends, s.e.Legs.LoadOhms, s.e.Legs.FreqHz)
+	if h, c := cmplx.Abs(hot.At), cmplx.Abs(cold.At); !(h > c/10 && c > h/10) {
+		return nil
+	}
+	all := make([]float64, endParams)
+	db := func(a, b complex128) float64 { return dbPerNeper * (real(a/hot.At) - real(b/cold.At)) }
+	all[sourceParam], all[cableParam] = db(hot.Source, cold.Source), db(hot.Cable, cold.Cable)
+	all[hotLoadParam], all[coldLoadParam] = db(hot.Load, cold.Load), db(hot.ColdLoad, cold.ColdLoad)
+	return all
 }
 
 // A meter is read on a scale, ln(ohms + scaleOhms), on which its half-width is the same everywhere.

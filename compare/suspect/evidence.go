@@ -37,6 +37,9 @@ type Legs struct {
 	LoadOhms float64 // each leg to screen; each within the rig's load tolerance by itself
 	OverDB   float64 // hot over cold
 	StdUDB   float64
+	// Before says that the channels' own difference is known from the same two channels straight
+	// through: what the legs' loads do to them there is then off as well.
+	Before bool
 
 	PhaseDeg     float64 // hot against cold; NaN not known
 	PhaseStdUDeg float64
