@@ -104,14 +104,17 @@ func naming(all []candidate, reading int) float64 {
 	return (sum + open) / total
 }
 
-// best is the reading with the highest chance of naming; of those that are as good, the one that
-// moves most against a sound unit.
+// best is the reading with the highest chance of naming; of those that are as good, one that needs no
+// pins joined, and of those the one that moves most against a sound unit.
 func (c *confirmer) best(all []candidate, suspect candidate) (reading int, ok bool) {
-	const asGood = 0.003
+	const asGood, joining = 0.01, 0.008
 	chances := make([]float64, len(c.readings))
 	most := 0.0
 	for i := range c.readings {
 		chances[i] = naming(all, i)
+		if c.readings[i].Joined != [2]string{} {
+			chances[i] -= joining
+		}
 		most = math.Max(most, chances[i])
 	}
 	reading, furthest := -1, -1.0

@@ -69,7 +69,7 @@ func (s *search) groups(classes []class) []group {
 		}
 		g := group{classes: []class{lead}, weight: lead.weight}
 		for k := i + 1; k < len(classes); k++ {
-			if !taken[k] && classes[k].weight*within >= lead.weight && agree(lead.first(), classes[k].first()) {
+			if !taken[k] && classes[k].weight*within >= lead.weight && s.agree(lead.first(), classes[k].first()) {
 				taken[k] = true
 				g.classes = append(g.classes, classes[k])
 				g.weight += classes[k].weight
@@ -81,11 +81,16 @@ func (s *search) groups(classes []class) []group {
 	return groups
 }
 
-// agree tells whether two hypotheses give the same for all that was measured, within its doubt.
-func agree(a, b *hypothesis) bool {
+// agree tells whether two hypotheses give the same for all that was measured, within its doubt. Of a
+// bound both have said what they can by their weights.
+func (s *search) agree(a, b *hypothesis) bool {
 	const doubts = 2
-	for i := range a.mean {
-		if math.Abs(a.mean[i]-b.mean[i]) > doubts*math.Hypot(a.stdU[i], b.stdU[i]) {
+	for i, r := range s.rows[:s.known] {
+		d := a.mean[i] - b.mean[i]
+		if r.kind == phaseRow {
+			d = math.Remainder(d, 360)
+		}
+		if math.Abs(d) > doubts*math.Hypot(a.stdU[i], b.stdU[i]) {
 			return false
 		}
 	}

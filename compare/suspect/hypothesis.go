@@ -107,7 +107,8 @@ func (w *scorer) farOff(h *hypothesis, straights []network.Slope) bool {
 	raw, j := w.raw[:w.params], w.j[:w.params]
 	clear(raw)
 	w.extra[0], w.nilDB = 0, 0
-	d := r.observed - w.addDB(w.blurred(p, r.at), -1, raw, 0)
+	b := w.blurred(p, r.at)
+	d := r.observed - w.addDB(&b, -1, raw, 0)
 	w.bounded(j, raw, p.stdU)
 	v := r.variance + w.extra[0] + w.nilDB*w.nilDB + w.e.GainStdUDB*w.e.GainStdUDB + 0.1
 	for _, x := range j {

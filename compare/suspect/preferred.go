@@ -11,13 +11,13 @@ var e24 = [...]float64{
 	3.3, 3.6, 3.9, 4.3, 4.7, 5.1, 5.6, 6.2, 6.8, 7.5, 8.2, 9.1,
 }
 
-// neighbours are the next values of E24 below and above a value, that value itself left out. Of 0 and
-// of what is not finite there are none.
+// neighbours are the next values of E24 below and above a value; one that lies within half a per cent of
+// the value is the value itself. Of 0 and of what is not finite there are none.
 func neighbours(value float64) (below, above float64, ok bool) {
 	if !(value > 1e-300) || value > 1e300 {
 		return 0, 0, false
 	}
-	const same = 1e-6 // relative
+	const same = 0.005
 	decade := int(math.Floor(math.Log10(value)))
 	for d := decade - 1; d <= decade+1; d++ {
 		for _, digits := range e24 {

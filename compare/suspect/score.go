@@ -26,6 +26,7 @@ type scorer struct {
 	extra []float64 // variance of each row beside its own and j
 	cov   []float64 // known × known, then its factor
 	left  []float64
+	blurs []blurred // of transfers and legs
 	spare *prediction
 	seconds
 
@@ -38,7 +39,7 @@ func newScorer(s *search) *scorer {
 	return &scorer{
 		search: s, mean: make([]float64, n), raw: make([]float64, n*s.params), j: make([]float64, n*s.params), extra: make([]float64, n),
 		cov: make([]float64, s.known*s.known), left: make([]float64, s.known), spare: s.newPrediction(),
-		seconds: newSeconds(s.known, s.parts),
+		seconds: newSeconds(s.known), blurs: make([]blurred, len(s.freqs)+2),
 	}
 }
 
@@ -46,21 +47,24 @@ func newScorer(s *search) *scorer {
 func (w *scorer) fill(p *prediction) {
 	_, legs, meters := w.figures()
 	clear(w.extra)
+	for i := range w.blurs {
+		w.blurs[i] = w.blurred(p, i)
+	}
 	for i, r := range w.rows {
 		j := w.raw[i*w.params : (i+1)*w.params]
 		clear(j)
 		w.nilDB = 0
 		switch r.kind {
 		case lossRow:
-			w.mean[i] = w.addDB(w.blurred(p, r.at), -1, j, i)
+			w.mean[i] = w.addDB(&w.blurs[r.at], -1, j, i)
 		case responseRow: // what doubts leave of a figure is much the same at all frequencies
-			w.mean[i] = w.addDB(w.blurred(p, r.at), -1, j, i) + w.addDB(w.blurred(p, r.ref), 1, j, i)
+			w.mean[i] = w.addDB(&w.blurs[r.at], -1, j, i) + w.addDB(&w.blurs[r.ref], 1, j, i)
 		case legsRow:
 			w.mean[i] = w.legsOver(p, legs, j, i)
 		case phaseRow:
 			w.mean[i] = w.legsPhase(p, legs, j, i)
 		case deadRow:
-			w.mean[i] = w.addDB(w.blurred(p, legs+r.at), 1, j, i)
+			w.mean[i] = w.addDB(&w.blurs[legs+r.at], 1, j, i)
 		case ohmsRow:
 			o := w.meters[r.at]
 			ohms := real(p.at[meters+r.at])
@@ -121,7 +125,7 @@ func (w *scorer) blurred(p *prediction, figure int) blurred {
 }
 
 // addDB returns sign times 20 lg of a figure and adds its slopes.
-func (w *scorer) addDB(b blurred, sign float64, j []float64, row int) float64 {
+func (w *scorer) addDB(b *blurred, sign float64, j []float64, row int) float64 {
 	w.nilDB += sign * nilStdU * math.Sqrt(b.share*b.share*b.share)
 	w.extra[row] += dbPerNeper * dbPerNeper * leakDoubt * leakDoubt * leak * leak / b.size
 	f := sign * dbPerNeper / b.size
@@ -134,7 +138,7 @@ func (w *scorer) addDB(b blurred, sign float64, j []float64, row int) float64 {
 }
 
 // together is the coherence of what the doubts leave of two figures, 0 to 1, and their product.
-func together(p *prediction, a, b blurred) (coherence float64, product complex128) {
+func together(p *prediction, a, b *blurred) (coherence float64, product complex128) {
 	if a.blur == 0 || b.blur == 0 {
 		return 0, 0
 	}
@@ -148,7 +152,7 @@ func together(p *prediction, a, b blurred) (coherence float64, product complex12
 // legsOver is hot over cold. Where both are nil but for the same doubts, their ratio is none the less
 // known.
 func (w *scorer) legsOver(p *prediction, legs int, j []float64, row int) float64 {
-	hot, cold := w.blurred(p, legs), w.blurred(p, legs+1)
+	hot, cold := &w.blurs[legs], &w.blurs[legs+1]
 	coherence, _ := together(p, hot, cold)
 	db := w.addDB(hot, 1, j, row)
 	nilHot := w.nilDB
@@ -161,10 +165,10 @@ func (w *scorer) legsOver(p *prediction, legs int, j []float64, row int) float64
 // legsPhase is the phase of hot over that of cold, in degrees.
 func (w *scorer) legsPhase(p *prediction, legs int, j []float64, row int) float64 {
 	const degrees, anyPhase = 180 / math.Pi, 104 // standard deviation of a phase of which nothing is known
-	hot, cold := w.blurred(p, legs), w.blurred(p, legs+1)
+	hot, cold := &w.blurs[legs], &w.blurs[legs+1]
 	coherence, product := together(p, hot, cold)
 	unknown := 0.0
-	for i, b := range []blurred{hot, cold} {
+	for i, b := range []*blurred{hot, cold} {
 		sign := float64(1 - 2*i)
 		unknown += b.share * b.share * b.share * (1 - coherence)
 		w.extra[row] += math.Min(anyPhase*anyPhase, degrees*degrees*leakDoubt*leakDoubt*leak*leak/b.size)

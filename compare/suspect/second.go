@@ -11,7 +11,7 @@ type seconds struct {
 	reach []float64 // of one part, in terms of the factor of the covariance
 }
 
-func newSeconds(known, parts int) seconds {
+func newSeconds(known int) seconds {
 	return seconds{reach: make([]float64, known)}
 }
 
