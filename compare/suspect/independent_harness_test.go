@@ -38,6 +38,7 @@ type drawing struct {
 	Design     string         `json:"design"`
 	Network    string         `json:"network"`
 	Classes    map[string]int `json:"classes"` // by words; the same number: no reading at any pin differs
+	Direct     map[string]int `json:"direct"`  // the same number: no ohmmeter reading differs
 	Unbalanced bool           `json:"unbalanced"`
 	Parts      []struct {
 		Ref   string  `json:"ref"`

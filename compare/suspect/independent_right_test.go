@@ -131,6 +131,27 @@ func (d *drawing) firstOnly(s suspect.Suspect) suspect.Suspect {
 	return s
 }
 
+// foremost tells whether the first fault of the first suspect is the true one, or one that no ohmmeter
+// could part from a true one in the same group: parts behind a capacitor, or the ends of the bench.
+func (u *made) foremost(r suspect.Ranking) bool {
+	if u.place(r) != 1 {
+		return false
+	}
+	first := u.of.firstOnly(r.Suspects[0])
+	if u.names(first) {
+		return true
+	}
+	claim, true_ := first.Faults[0].String(), u.Fault
+	return u.of.Direct[claim] == u.of.Direct[true_] && u.of.fixed(claim) && u.of.fixed(true_)
+}
+
+// fixed tells whether a fault has no amount that an ohmmeter reads: those listed, and ends of the bench,
+// which to an ohmmeter are a sound unit, of number 0.
+func (d *drawing) fixed(words string) bool {
+	_, ok := d.Direct[words]
+	return ok || strings.HasSuffix(words, " not as stated")
+}
+
 // partsOf are the parts that a fault blames; of a leg that is at every pin the same as a part, that part.
 func (d *drawing) partsOf(f suspect.Fault) []string {
 	if parts := f.Parts(); len(parts) > 0 {

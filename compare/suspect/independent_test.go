@@ -132,7 +132,7 @@ func readings(t *testing.T, all []ranked, k taking) {
 				ranking = suspect.Rank(e)
 			}
 			places[n] = r.made.place(ranking)
-			foremost[n] = places[n] == 1 && r.names(r.of.firstOnly(ranking.Suspects[0]))
+			foremost[n] = r.made.foremost(ranking)
 		}
 		mu.Lock()
 		defer mu.Unlock()

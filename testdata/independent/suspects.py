@@ -9,7 +9,7 @@ Mixes: prior (each fault of a drawing as likely as another), solder (drifts, ope
 and meter are drawn from the rectangles stated, readings get their noise. Keys of a line:
 
     design    parts, whether unbalanced, classes: the faults by words, the same number where no impedance
-              between any two pins differs at 0, 997 and 20000 Hz; sound is the number of a sound unit
+              between any two pins differs at 0, 997 and 20000 Hz (a sound unit is 0); direct: the same at 0 Hz
     unit      fault, form, ref, other, ratio (true value of the faulty part, or end, over the stated one), shows_db
               (of two faults, see hides), rig as stated, loss, response, legs, polarity, noise, and ohms by
               "pin,pin" or "pin,pin|pin,pin" with the second pair joined: as the meter showed it, and true; null
@@ -68,7 +68,8 @@ def drift(rng, ref, least=1.03, most=3.0):
 
 
 def classes_of(d):
-    """Faults by words, numbered so that those alike at every pin have one number; sound comes first."""
+    """Faults by words, numbered so that those alike at every pin have one number, sound 0; and so that those
+    have which direct current, an ohmmeter's, finds alike."""
     faults = [SOUND] + discrete_faults(d)
     stated = {p.ref: p.value for p in d.parts}
     pins = ("in.hot", "out.hot", "screen") if d.unbalanced else PINS
@@ -81,16 +82,21 @@ def classes_of(d):
             ask_pins(batch, unit, a, b, None, [TONE_HZ, 20000.0])
     z = batch.run().reshape(len(faults), -1)
     z[np.abs(z) > OPEN_OHMS] = OPEN_OHMS
-    kinds, number = [], {}
-    for f, row in zip(faults, z):
+    return {f.text: k for f, k in zip(faults, numbered(z))}, {f.text: k for f, k in zip(faults, numbered(z[:, ::3]))}
+
+
+def numbered(rows):
+    """Numbers for rows, the same for rows that are alike."""
+    kinds, numbers = [], []
+    for row in rows:
         for k, other in enumerate(kinds):
             if np.all(np.abs(row - other) <= 1e-6 * (np.abs(other) + 1e-3)):
                 break
         else:
             k = len(kinds)
             kinds.append(row)
-        number[f.text] = k
-    return number
+        numbers.append(k)
+    return numbers
 
 
 class Plan:
@@ -101,7 +107,7 @@ class Plan:
         self.known, self.numbers = [], []
         for d in DESIGNS:
             self.numbers.append(classes_of(d))
-            self.known.append([f for f in discrete_faults(d) if self.numbers[-1][f.text] != 0])
+            self.known.append([f for f in discrete_faults(d) if self.numbers[-1][0][f.text] != 0])
 
     def fault(self, k):
         d, rng = DESIGNS[k], self.rng
@@ -301,11 +307,11 @@ def finite(value):
 def write(mix, count, seed, out, chunk=500):
     rng = np.random.default_rng(seed)
     plan = Plan(mix, rng)
-    for d, numbers in zip(DESIGNS, plan.numbers):
+    for d, (numbers, direct) in zip(DESIGNS, plan.numbers):
         parts = [{"ref": p.ref, "kind": p.kind, "value": p.value, "tol": t, "a": p.a if i >= len(d.parts) - d.own else "",
                   "b": p.b if i >= len(d.parts) - d.own else ""} for i, (p, t) in enumerate(zip(d.parts, d.tolerances))]
         print(json.dumps({"design": d.name, "network": d.network, "parts": parts, "unbalanced": d.unbalanced,
-                          "classes": numbers}), file=out)
+                          "classes": numbers, "direct": direct}), file=out)
     for first in range(0, count, chunk):
         batch = Batch()
         asked = [Asked(batch, DESIGNS[i % len(DESIGNS)], rng, plan.fault(i % len(DESIGNS)))

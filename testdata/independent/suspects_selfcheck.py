@@ -123,16 +123,18 @@ def by_hand():
     near("above 330", neighbours(330)[1], 360, 0)
     near("above 9100", neighbours(9100)[1], 10000, 0)
     near("below 100", neighbours(100)[0], 91, 0)
-    number = classes_of(d)
+    number, _ = classes_of(d)
     near("hot leg open at in is R1 open", number["hot leg open at in"], number["R1 open"], 0)
-    number = classes_of(DESIGNS[0])
+    number, _ = classes_of(DESIGNS[0])
     near("hot leg to screen at out is R2 short", number["hot leg to screen at out"], number["R2 short"], 0)
     near("hot leg open at out is not R1 open", float(number["hot leg open at out"] != number["R1 open"]), 1.0, 0)
-    number = classes_of(next(d for d in DESIGNS if d.name == "Saltmarsh 600 H 10"))
+    number, _ = classes_of(next(d for d in DESIGNS if d.name == "Saltmarsh 600 H 10"))
     near("R1 and R3 swapped is sound", number["R1 and R3 swapped"], 0, 0)
     near("in and out swapped is sound", number["in and out swapped"], 0, 0)
     near("legs crossed is not", float(number["legs crossed"] != 0), 1.0, 0)
-    return 11
+    _, direct = classes_of(next(d for d in DESIGNS if d.name == "Saltmarsh coupled U"))
+    near("R1 open is R2 open to an ohmmeter", direct["R1 open"], direct["R2 open"], 0)
+    return 12
 
 
 def selfcheck():
