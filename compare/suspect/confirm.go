@@ -77,8 +77,8 @@ func naming(all []candidate, reading int) float64 {
 			open = math.Max(open, c.weight)
 			continue
 		}
-		for k := -16; k <= 16; k++ {
-			at = append(at, r.at+float64(k)*r.stdU/4)
+		for k := -18; k <= 18; k++ { // to six standard deviations, so that gaps between candidates count for nothing
+			at = append(at, r.at+float64(k)*r.stdU/3)
 		}
 	}
 	slices.Sort(at)
@@ -88,7 +88,7 @@ func naming(all []candidate, reading int) float64 {
 		for _, c := range all {
 			r := c.reads[reading]
 			z := (x - r.at) / r.stdU
-			if r.open() || z*z > 36 {
+			if r.open() || z*z > 37 {
 				continue
 			}
 			most = math.Max(most, c.weight*math.Exp(-z*z/2)/(r.stdU*math.Sqrt(2*math.Pi)))

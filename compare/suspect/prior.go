@@ -21,7 +21,7 @@ const (
 // What part of all units that come here is sound, and has something wrong that is none of these.
 const (
 	soundPrior = 0.5
-	nonePrior  = 0.13
+	nonePrior  = 0.1
 	faultPrior = 1 - soundPrior - nonePrior
 )
 
