@@ -2,10 +2,8 @@ package suspect
 
 import (
 	"math"
-	"math/cmplx"
 	"slices"
 
-	"padproof/compare"
 	"padproof/compare/network"
 )
 
@@ -138,106 +136,6 @@ func variance(stdU, least float64) float64 {
 		stdU = 1e3
 	}
 	return stdU * stdU
-}
-
-// A leg on which no tone stands lies by so much under one straight through.
-const (
-	deadDB      = 60
-	deadDoubtDB = 8
-)
-
-func (s *search) legs() {
-	l := s.e.Legs
-	if l == nil || !(l.FreqHz >= 0) || math.IsInf(l.FreqHz, 1) || s.e.Circuit.Unbalanced() {
-		return
-	}
-	if l.DeadHot && l.DeadCold {
-		straight, _ := s.e.Circuit.LegVolts(s.ends, l.LoadOhms, l.FreqHz)
-		level := 20 * math.Log10(math.Max(cmplx.Abs(straight.Hot), cmplx.Abs(straight.Cold)))
-		for leg := range 2 {
-			s.rows = append(s.rows, row{kind: deadRow, at: leg, observed: level - deadDB, variance: deadDoubtDB * deadDoubtDB, bound: -1})
-		}
-		return
-	}
-	if l.Before {
-		s.straightLegs = s.straightLegsDB()
-	}
-	over := row{kind: legsRow, observed: l.OverDB, variance: variance(l.StdUDB, leastStdUDB)}
-	switch {
-	case l.DeadHot:
-		over.bound = -1
-	case l.DeadCold:
-		over.bound = 1
-	}
-	if !math.IsNaN(l.OverDB) && !math.IsInf(l.OverDB, 0) {
-		s.rows = append(s.rows, over)
-	}
-	if over.bound == 0 && !math.IsNaN(l.PhaseDeg) && !math.IsInf(l.PhaseDeg, 0) {
-		s.rows = append(s.rows, row{kind: phaseRow, observed: l.PhaseDeg, variance: variance(l.PhaseStdUDeg, leastStdUDeg)})
-	}
-}
-
-// straightLegsDB are what the ends do to hot over cold straight through; nil where one leg is not fed.
-func (s *search) straightLegsDB() []float64 {
-	hot, cold := s.e.Circuit.StraightLegSlopes(s.ends, s.e.Legs.LoadOhms, s.e.Legs.FreqHz)
-	if h, c := cmplx.Abs(hot.At), cmplx.Abs(cold.At); !(h > c/10 && c > h/10) {
-		return nil
-	}
-	all := make([]float64, endParams)
-	db := func(a, b complex128) float64 { return dbPerNeper * (real(a/hot.At) - real(b/cold.At)) }
-	all[sourceParam], all[cableParam] = db(hot.Source, cold.Source), db(hot.Cable, cold.Cable)
-	all[hotLoadParam], all[coldLoadParam] = db(hot.Load, cold.Load), db(hot.ColdLoad, cold.ColdLoad)
-	return all
-}
-
-// A meter is read on a scale, ln(ohms + scaleOhms), on which its half-width is the same everywhere.
-// Over range begins at overOhms at the latest; no prediction is over openOhms.
-const (
-	meterTolFrac  = 0.005
-	meterPlusOhms = 0.2
-	overOhms      = 2e6
-	openOhms      = 2e7
-)
-
-// filled gives a reading the meter's own doubt where none is said.
-func (o Ohms) filled() Ohms {
-	if !(o.TolFrac > 0) && !(o.PlusOhms > 0) {
-		o.TolFrac, o.PlusOhms = meterTolFrac, meterPlusOhms
-	}
-	o.TolFrac = math.Max(1e-4, math.Min(o.TolFrac, 1))
-	o.PlusOhms = math.Max(1e-3, math.Min(o.PlusOhms, 1e6))
-	return o
-}
-
-func (o Ohms) scaleOhms() float64 { return o.PlusOhms / o.TolFrac }
-
-func (o Ohms) scale(ohms float64) float64 {
-	return math.Log(math.Min(math.Max(ohms, 0), openOhms) + o.scaleOhms())
-}
-
-func (s *search) meter(o Ohms) {
-	if math.IsNaN(o.Ohms) || o.Ohms < 0 {
-		return
-	}
-	o = o.filled()
-	r := row{kind: ohmsRow, at: len(s.meters), observed: o.scale(o.Ohms), variance: o.TolFrac * o.TolFrac / 3}
-	if o.Ohms >= overOhms {
-		r.bound, r.observed = 1, o.scale(overOhms)
-	}
-	s.meters = append(s.meters, o)
-	s.rows = append(s.rows, r)
-}
-
-// on is what the reading gives on a circuit, with its slopes.
-func (o Ohms) on(c *network.Circuit) (float64, []float64) {
-	if o.Joined == [2]string{} {
-		return c.OhmsSlope(o.PinA, o.PinB)
-	}
-	return c.OhmsSlope(o.PinA, o.PinB, o.Joined)
-}
-
-func ohmsOf(r compare.OhmReading) Ohms {
-	return Ohms{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined}.filled()
 }
 
 // serviceEnds are those of the service, or the bench's.

@@ -24,8 +24,7 @@ func NoiseOf(k compare.NoiseCase) *Noise {
 type noiseScale struct {
 	Noise
 	at     []network.Band // LowHz is a frequency, HighHz the width in Hz that it stands for
-	plug   network.Thermal
-	excess float64 // of pad-noise over rig-noise
+	excess float64        // of pad-noise over rig-noise
 }
 
 func newNoiseScale(n *Noise) *noiseScale {
