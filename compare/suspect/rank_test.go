@@ -235,7 +235,16 @@ func TestLegsBefore(t *testing.T) {
 		Legs: &Legs{FreqHz: 997, LoadOhms: 300, StdUDB: 0.01, PhaseDeg: math.NaN(), Before: true},
 	}
 	e.Legs.OverDB = 20*math.Log10(abs(legs.Hot)/abs(legs.Cold)) - 20*math.Log10(0.96)
-	if s := first(t, Rank(e), fault.String()); s.Weight < 0.5 {
-		t.Errorf("weight = %v, want over 0.5", s.Weight)
+	first(t, Rank(e), fault.String())
+	chi := func() float64 {
+		s := newSearch(e)
+		w := newScorer(s)
+		w.score(s.predict(fault.Apply(c), ends, s.straights(ends)))
+		return w.lastChi
+	}
+	known := chi()
+	e.Legs.Before = false
+	if unknown := chi(); !(known < 6 && unknown > 2*known) {
+		t.Errorf("chi-square of the true fault = %v for two figures, without legs-before %v, want under 6, and over twice as much", known, unknown)
 	}
 }
