@@ -430,3 +430,29 @@ func (a *audio) Frames() int64 { return int64(len(a.x)) }
 func (a *audio) ReadAt(dst []float64, frame int64) (int, error) {
 	return copy(dst, a.x[min(frame, a.Frames()):]), nil
 }
+
+// Powers are the volts squared that the takes were made of: rig-noise is the rig's own and the plug's,
+// pad-noise over it is the unit's thermal noise, with no noise of the load or the current.
+func TestPowers(t *testing.T) {
+	pad := circuit(t, "U", 0.01, 560, 560, 330)
+	s := noiseScene{drawn: pad, pad: pad, bench: sceneBench(10000), seconds: 60, tempC: 21, unitFactor: 1}
+	k := NoiseCase{Circuit: pad, Bench: s.bench}
+	k.PadNoise, k.RigNoise = s.takes(rand.New(rand.NewPCG(5, 5)))
+	p, ok := k.Powers()
+	if !ok {
+		t.Fatal("Powers tells nothing of two good takes")
+	}
+	e := s.bench.Ends
+	e.Drive, e.SourceOhms = network.DriveFloating, s.bench.PadPlugOhms
+	unit := pad.ThermalNoise(e, 294.15, []network.Band{{LowHz: 20, HighHz: 20000}}).UnitVV
+	if got := p.PadVV - p.RigVV; math.Abs(got/unit-1) > 4*math.Hypot(p.PadStdUFrac*p.PadVV, p.RigStdUFrac*p.RigVV)/unit+0.01 {
+		t.Errorf("PadVV - RigVV = %v, want %v (thermal)", got, unit)
+	}
+	k.RigNoise = nil
+	if p, ok := k.Powers(); !ok || !math.IsNaN(p.RigVV) {
+		t.Errorf("without rig-noise Powers = %+v, %v, want a RigVV of NaN", p, ok)
+	}
+	if _, ok := (NoiseCase{Circuit: pad}).Powers(); ok {
+		t.Error("Powers of no take at all are some")
+	}
+}

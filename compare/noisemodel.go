@@ -224,3 +224,27 @@ func (m *noiseModel) subtract(b uncertainty.Budget, c noiseChange) (subtraction,
 	}
 	return s, err
 }
+
+// NoisePowers are the two noise takes as powers at the rig's input terminals, in volts squared, with
+// their relative standard uncertainties by averaging. RigVV is NaN without rig-noise.
+type NoisePowers struct {
+	Bands              []analysis.FreqRange // what was summed
+	PadVV, PadStdUFrac float64
+	RigVV, RigStdUFrac float64
+}
+
+// Powers are what the takes hold; false where nothing can be told from them.
+func (k NoiseCase) Powers() (NoisePowers, bool) {
+	if k.PadNoise == nil {
+		return NoisePowers{}, false
+	}
+	m := newNoiseModel(k)
+	if m.cannot() != "" {
+		return NoisePowers{}, false
+	}
+	p := NoisePowers{Bands: m.bands, PadVV: m.pad, PadStdUFrac: m.padPart, RigVV: math.NaN(), RigStdUFrac: math.NaN()}
+	if !m.noRig() {
+		p.RigVV, p.RigStdUFrac = m.rig, m.rigPart
+	}
+	return p, true
+}

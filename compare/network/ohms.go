@@ -15,13 +15,22 @@ import (
 // no node of the drawing touches nothing. In an unbalanced network in.cold, out.cold
 // and screen are one node.
 func (c *Circuit) Ohms(pinA, pinB string, joined ...[2]string) float64 {
+	s, a, b, ok := c.ohmmeter(pinA, pinB, joined)
+	if !ok {
+		return math.Inf(1)
+	}
+	defer s.end()
+	return real(s.impedance(a, b))
+}
+
+// ohmmeter fills a solver with the unit alone; false where a pin is no node.
+func (c *Circuit) ohmmeter(pinA, pinB string, joined [][2]string) (s *solver, a, b uint8, ok bool) {
 	a, okA := c.node(pinA)
 	b, okB := c.node(pinB)
 	if !okA || !okB {
-		return math.Inf(1)
+		return nil, 0, 0, false
 	}
-	s := begin(len(c.nodes))
-	defer s.end()
+	s = begin(len(c.nodes))
 	s.pad(c, c.values, 0)
 	if c.unbalanced {
 		s.wire(inCold, screen)
@@ -34,7 +43,7 @@ func (c *Circuit) Ohms(pinA, pinB string, joined ...[2]string) float64 {
 			s.wire(p, q)
 		}
 	}
-	return real(s.impedance(a, b))
+	return s, a, b, true
 }
 
 // node returns the number of a node.
