@@ -5,6 +5,7 @@ import (
 	"io"
 	"path/filepath"
 	"runtime"
+	"time"
 
 	"github.com/spf13/cobra"
 
@@ -21,6 +22,8 @@ type lotFlags struct {
 	pad, rig string
 	csv      string
 	workers  int
+
+	recording recordFlags
 }
 
 func newLot() *cobra.Command {
@@ -63,6 +66,8 @@ unproven, else 0.`,
 	flags.StringVar(&f.csv, "csv", "", "write a table of all units to this file")
 	flags.StringVar(&f.pad, "pad", "", "the drawing of all units, in place of their own")
 	flags.StringVar(&f.rig, "rig", "", "the bench of all units, in place of their own")
+	flags.StringVar(&f.recording.ledger, "ledger", "", "the ledger that holds the bench's rig checks, where rig.toml asks for them; "+ledgerVariable+" if left out")
+	flags.StringVar(&f.recording.station, "station", "", "the bench's name in the ledger; "+stationVariable+", else this machine's name, if left out")
 	flags.IntVar(&f.workers, "workers", runtime.NumCPU(), "units checked at a time")
 	_ = cmd.MarkFlagFilename("csv", "csv")
 	_ = cmd.MarkFlagFilename("pad", "toml")
@@ -80,14 +85,18 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	}
 	ctx, stop := untilInterrupted(cmd)
 	defer stop()
+	gate, done := f.recording.rigGate()
+	defer done()
 	out := cmd.OutOrStdout()
 	show := lotLines(out, wantsJSON(cmd), units)
 	err = lot.Run(ctx, units, f.workers, proof.Options{}, func(o lot.Outcome) error {
+		_ = gate.Hold(ctx, o.Unit, o.Answer, time.Now()) // what it met stands in the answer
 		return show(o, tally.Add(o, describe))
 	})
 	if err != nil {
 		return afterInterrupt(err)
 	}
+	tally.Warn(gate.Notes()...)
 	whole, err := tally.Lot(nil)
 	if err != nil {
 		return err

@@ -32,6 +32,8 @@ type Answer struct {
 	BenchEnds   *Ends `json:"bench_ends,omitempty"`
 	ServiceEnds *Ends `json:"service_ends,omitempty"`
 
+	RigCheck *RigHeld `json:"rig_check,omitempty"` // the rig check that held, where the bench asks for one
+
 	Recorded    *Recorded `json:"recorded,omitempty"`     // where it stands in the ledger
 	RecordError *Error    `json:"record_error,omitempty"` // why it could not be recorded
 }
