@@ -43,6 +43,9 @@ lot.toml names them:
   1 = "0417"
   2 = "0418"
 
+Where rig.toml asks for rig checks (required under [reference]), no unit passes without one in
+order: padproof rigcheck --help says how. --ledger names the ledger that holds them.
+
 A unit that cannot be checked is named, and the rest go on. With --json there is a line for
 each unit, as check prints it, and a last one for the lot.
 
