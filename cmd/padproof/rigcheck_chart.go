@@ -72,8 +72,9 @@ func runRigChart(cmd *cobra.Command, folder string, f rigCheckFlags) error {
 	defer stop()
 	var readings []rigcheck.Reading
 	l, err := openToLook(ctx, place)
+	missing := ledger.ReasonOf(err) == ledger.Missing
 	switch {
-	case ledger.ReasonOf(err) == ledger.Missing:
+	case missing:
 	case err != nil:
 		return err
 	default:
@@ -82,14 +83,13 @@ func runRigChart(cmd *cobra.Command, folder string, f rigCheckFlags) error {
 			return err
 		}
 	}
-	missing := err != nil
 	chart, err := rigcheck.ChartOf(rig, known, readings, time.Now())
 	if err != nil {
 		return err
 	}
-	chart.Station, chart.Ledger, chart.Simulated = station, place, f.recording.simulated
+	chart.Station, chart.Ledger, chart.Simulated = station, shownPlace(l, place), f.recording.simulated
 	if missing {
-		chart.Notes = append(chart.Notes, "there is no ledger at "+place+" yet")
+		chart.Notes = append(chart.Notes, "there is no ledger at "+chart.Ledger+" yet")
 	}
 	if wantsJSON(cmd) {
 		err = writeJSON(cmd.OutOrStdout(), chart)
