@@ -5,6 +5,7 @@ import (
 	"io"
 	"path/filepath"
 	"runtime"
+	"time"
 
 	"github.com/spf13/cobra"
 
@@ -22,6 +23,8 @@ type lotFlags struct {
 	pad, rig string
 	csv      string
 	workers  int
+
+	recording recordFlags
 }
 
 func newLot() *cobra.Command {
@@ -40,6 +43,10 @@ lot.toml names them:
   [channels]
   1 = "0417"
   2 = "0418"
+
+With --ledger each unit is recorded before its line is printed. Where rig.toml asks for rig
+checks (required under [reference]), no unit passes without one in order in that ledger:
+padproof rigcheck --help says how.
 
 A unit that cannot be checked is named, and the rest go on. With --json there is a line for
 each unit, as check prints it, and a last one for the lot.
@@ -65,6 +72,7 @@ unproven, else 0.`,
 	flags.StringVar(&f.pad, "pad", "", "the drawing of all units, in place of their own")
 	flags.StringVar(&f.rig, "rig", "", "the bench of all units, in place of their own")
 	flags.IntVar(&f.workers, "workers", runtime.NumCPU(), "units checked at a time")
+	f.recording.addTo(cmd)
 	_ = cmd.MarkFlagFilename("csv", "csv")
 	_ = cmd.MarkFlagFilename("pad", "toml")
 	_ = cmd.MarkFlagFilename("rig", "toml")
@@ -81,18 +89,29 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	}
 	ctx, stop := untilInterrupted(cmd)
 	defer stop()
-	out := cmd.OutOrStdout()
+	gate, done := f.recording.rigGate()
+	defer done()
+	recorder, err := f.recording.lotRecorder(ctx, tally.Name())
+	if err != nil {
+		return err
+	}
+	defer recorder.close()
+	out := coloured(cmd.OutOrStdout())
 	show := lotLines(out, wantsJSON(cmd), units)
 	err = lot.Run(ctx, units, f.workers, proof.Options{}, func(o lot.Outcome) error {
+		_ = gate.Hold(ctx, o.Unit, o.Answer, time.Now()) // what it met stands in the answer
+		recorder.record(ctx, o.Answer)
 		return show(o, tally.Add(o, describe))
 	})
 	if err != nil {
 		return afterInterrupt(err)
 	}
+	tally.Warn(gate.Notes()...)
 	together, err := tally.Lot()
 	if err != nil {
 		return err
 	}
+	together.Recorded = recorder.head
 	if f.csv != "" {
 		if err := whole.Write(ctx, f.csv, func(w io.Writer) error { return report.LotCSV(w, together) }); err != nil {
 			return err
@@ -105,6 +124,10 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	}
 	if err != nil {
 		return err
+	}
+	if lost := recorder.failure(); lost != nil {
+		printError(cmd.ErrOrStderr(), lost)
+		return exitStatus(exitNoCheck)
 	}
 	return lotStatus(together)
 }

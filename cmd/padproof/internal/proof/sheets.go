@@ -1,7 +1,6 @@
 package proof
 
 import (
-	"bytes"
 	"crypto/sha256"
 	"encoding/hex"
 	"path/filepath"
@@ -17,7 +16,7 @@ func sheetsOf(folder string, d *Drawing) []result.Sheet {
 		sum := sha256.Sum256(source)
 		sheets = append(sheets, result.Sheet{Role: role,
 			File: fileIn(folder, path), SHA256: hex.EncodeToString(sum[:]),
-			Text: string(bytes.TrimPrefix(source, []byte("\xef\xbb\xbf"))),
+			Text: string(source),
 		})
 	}
 	if d.Pad != nil {

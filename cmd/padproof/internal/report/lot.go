@@ -91,6 +91,9 @@ func LotText(w io.Writer, l *result.Lot) error {
 		}
 	}
 	bullets(p, "Notes", l.Warnings)
+	if l.Recorded != nil && p.err == nil {
+		return RecordedText(w, l.Recorded)
+	}
 	return p.err
 }
 

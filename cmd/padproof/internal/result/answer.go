@@ -36,6 +36,7 @@ type Answer struct {
 
 	Drawing     *Drawing  `json:"drawing,omitempty"`      // nil where there is none
 	Curves      *Curves   `json:"curves,omitempty"`       // only where they were asked for
+	RigCheck    *RigHeld  `json:"rig_check,omitempty"`    // the rig check that held, where the bench asks for one
 	Recorded    *Recorded `json:"recorded,omitempty"`     // where it stands in the ledger
 	RecordError *Error    `json:"record_error,omitempty"` // why it could not be recorded
 }

@@ -21,6 +21,7 @@ type Lot struct {
 	Drawings []LotDrawing `json:"drawings"` // units of one drawing and one set of limits each
 	Rows     []LotRow     `json:"rows"`
 	Warnings []string     `json:"warnings"`
+	Recorded *Recorded    `json:"recorded,omitempty"` // the last record of the lot, where it was recorded
 }
 
 // A Share is a part of a whole, with its 95 % interval: 0 to 1.

@@ -12,6 +12,7 @@ type Rig struct {
 	Output           Output
 	Input            Input
 	Calibration      Calibration
+	Reference        *Reference   // nil if left out
 	Assumed          []Assumption // in the order of the sheet's keys
 
 	lines map[string]int
@@ -117,6 +118,10 @@ func ParseRig(file string, data []byte) (*Rig, error) {
 	r := &Rig{File: file, lines: d.lines}
 	r.fill(d.table("", d.root), 0.10)
 	d.unknown()
+	if err := d.first(); err != nil {
+		return nil, err
+	}
+	r.Reference.check(d)
 	if err := d.first(); err != nil {
 		return nil, err
 	}

@@ -45,6 +45,7 @@ func (r *Rig) fill(top *table, tolFrac float64) {
 	r.levels(cal)
 	r.drifts(cal)
 	r.plugs(cal)
+	r.reference(top)
 }
 
 // assume notes a figure that was not written.
