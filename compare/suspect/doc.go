@@ -74,8 +74,9 @@
 // # Groups
 //
 // Faults that no pin can tell apart count as one, as do a drift and another value of the same part
-// within the drift's doubt. A group holds those within three times of the likeliest one's weight, as
-// long as what they give for each measured figure agrees within twice its doubt.
+// within the drift's doubt, the lesser of which is named where it has a third of the other's weight. A
+// group holds those within three times of the likeliest one's weight, as
+// long as what they give for each measured figure agrees as two such figures do in nine cases of ten.
 //
 // # Ohmmeter
 //

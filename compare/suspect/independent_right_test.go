@@ -177,7 +177,8 @@ func (d *drawing) same(f, g suspect.Fault, stdU float64) bool {
 	}
 	x, okX := d.ratio(f)
 	y, okY := d.ratio(g)
-	return okX && okY && f.Ref == g.Ref && math.Abs(x/y-1) <= d.tol(f.Ref)+2*stdU
+	const written = 0.005 // amounts are written to the per cent
+	return okX && okY && f.Ref == g.Ref && math.Abs(x/y-1) <= d.tol(f.Ref)+2*stdU+written
 }
 
 func absOf(z complex128) float64   { return cmplx.Abs(z) }

@@ -112,7 +112,9 @@ func (s *search) suspect(g group) Suspect {
 	}
 	for _, k := range g.classes {
 		for _, h := range k.members {
-			one.Faults = append(one.Faults, h.fault)
+			if h.family == k.first().family || h.weight*within >= k.first().weight {
+				one.Faults = append(one.Faults, h.fault)
+			}
 		}
 	}
 	if s.toneAt >= 0 {
