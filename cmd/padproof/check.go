@@ -18,6 +18,7 @@ type checkFlags struct {
 	markedOhms  float64
 	onThisBench bool
 	played      string
+	recording   recordFlags
 }
 
 func newCheck() *cobra.Command {
@@ -75,6 +76,7 @@ Where the loss is out of its limits and a resistor would bring it in, the answer
 	flags.Float64Var(&f.within, "within-db", 0, "no drawing: how far off the mark is still good")
 	flags.Float64Var(&f.markedOhms, "marked-ohms", 0, "no drawing: the impedance marked on the pad")
 	flags.BoolVar(&f.onThisBench, "on-this-bench", false, "no drawing: the mark is what this bench should read")
+	f.recording.addTo(cmd)
 	flags.BoolVarP(&f.verbose, "verbose", "v", false, "add the takes and the uncertainty budget")
 	return cmd
 }
@@ -88,17 +90,25 @@ func runCheck(cmd *cobra.Command, args []string, f checkFlags) error {
 	if err != nil {
 		return inUnit(u.Serial, err)
 	}
+	sheets := f.recording.sheetsUsed(u)
 	answer, err := proof.Check(u, options)
 	if err != nil {
 		return inUnit(u.Serial, err)
 	}
+	f.record(cmd, u, sheets, answer)
 	if wantsJSON(cmd) {
 		err = writeJSON(cmd.OutOrStdout(), answer)
 	} else {
 		err = report.AnswerText(cmd.OutOrStdout(), answer, f.verbose)
+		if err == nil && answer.Recorded != nil {
+			err = report.RecordedText(cmd.OutOrStdout(), answer.Recorded)
+		}
 	}
 	if err != nil {
 		return err
+	}
+	if answer.RecordError != nil {
+		return notRecorded(cmd, answer.RecordError)
 	}
 	return statusOf(answer.Verdict)
 }

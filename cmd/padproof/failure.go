@@ -9,6 +9,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"padproof/capture"
+	"padproof/cmd/padproof/internal/ledger"
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
@@ -31,6 +32,10 @@ func reportError(cmd *cobra.Command, err error, asJSON bool, stdout, stderr io.W
 			return
 		}
 	}
+	printError(stderr, e)
+}
+
+func printError(stderr io.Writer, e *result.Error) {
 	fmt.Fprintf(stderr, "padproof: error: %s\n", e.Error())
 	if e.Hint != "" {
 		fmt.Fprintf(stderr, "padproof: hint: %s\n", e.Hint)
@@ -61,6 +66,7 @@ func describe(err error) *result.Error {
 	var inSheet *sheet.Error
 	var inUnit *unit.Error
 	var inTake *capture.FormatError
+	var inLedger *ledger.Error
 	var inPath *fs.PathError
 	switch {
 	case errors.As(err, &e):
@@ -71,6 +77,8 @@ func describe(err error) *result.Error {
 		return &result.Error{File: inUnit.File, Text: inUnit.Text, Hint: inUnit.Hint}
 	case errors.As(err, &inTake):
 		return &result.Error{File: inTake.Name, Text: inTake.Text, Hint: inTake.Hint}
+	case errors.As(err, &inLedger):
+		return &result.Error{File: inLedger.Where, Text: inLedger.Text, Hint: inLedger.Hint}
 	case errors.As(err, &inPath):
 		return &result.Error{File: inPath.Path, Text: inPath.Err.Error(), Hint: pathHint(err)}
 	}

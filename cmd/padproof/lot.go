@@ -3,7 +3,6 @@ package main
 import (
 	"encoding/json"
 	"io"
-	"os"
 	"path/filepath"
 	"runtime"
 
@@ -177,26 +176,4 @@ func lotStatus(l *result.Lot) error {
 		return exitStatus(exitUnproven)
 	}
 	return nil
-}
-
-// writeWhole writes a file beside its name and then gives it the name: whole, or
-// not at all.
-func writeWhole(path string, write func(io.Writer) error) error {
-	file, err := os.CreateTemp(filepath.Dir(path), ".padproof-*")
-	if err != nil {
-		return err
-	}
-	defer os.Remove(file.Name())
-	if err := write(file); err != nil {
-		file.Close()
-		return err
-	}
-	if err := file.Chmod(0o644); err != nil {
-		file.Close()
-		return err
-	}
-	if err := file.Close(); err != nil {
-		return err
-	}
-	return os.Rename(file.Name(), path)
 }

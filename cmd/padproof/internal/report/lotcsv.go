@@ -24,7 +24,7 @@ func LotCSV(w io.Writer, l *result.Lot) error {
 		return err
 	}
 	for _, r := range l.Rows {
-		if err := out.Write(csvRow(r, names, l.Simulated)); err != nil {
+		if err := out.Write(lotCSVRow(r, names, l.Simulated)); err != nil {
 			return err
 		}
 	}
@@ -32,7 +32,7 @@ func LotCSV(w io.Writer, l *result.Lot) error {
 	return out.Error()
 }
 
-func csvRow(r result.LotRow, names []string, simulated bool) []string {
+func lotCSVRow(r result.LotRow, names []string, simulated bool) []string {
 	row := []string{r.Unit, r.Verdict}
 	for _, n := range names {
 		cells := []string{"", "", ""}

@@ -31,6 +31,9 @@ type Answer struct {
 
 	BenchEnds   *Ends `json:"bench_ends,omitempty"`
 	ServiceEnds *Ends `json:"service_ends,omitempty"`
+
+	Recorded    *Recorded `json:"recorded,omitempty"`     // where it stands in the ledger
+	RecordError *Error    `json:"record_error,omitempty"` // why it could not be recorded
 }
 
 // Ends are the impedances and the wiring a pad stands between.
