@@ -57,7 +57,8 @@ type pending struct {
 func newWatching(cmd *cobra.Command, folder string, f watchFlags, b book) *watching {
 	w := &watching{watchFlags: f, folder: folder, out: cmd.OutOrStdout(), err: cmd.ErrOrStderr(), asJSON: wantsJSON(cmd),
 		named: &sheet.Lot{}, shared: &proof.Shared{}, book: b, status: newStatusLine(cmd.ErrOrStderr())}
-	o := arrival.Options{Settle: f.settle, Expect: f.expect, NeedsDrawing: f.pad == "", AsIs: f.once, Channels: w.readLotSheet}
+	o := arrival.Options{Settle: f.settle, Expect: f.expect, NeedsDrawing: f.pad == "", AsIs: f.once, Channels: w.readLotSheet,
+		FullEvery: max(time.Second, 2*f.settle)}
 	if f.once {
 		o.Patience = f.settle
 	}

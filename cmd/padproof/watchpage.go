@@ -132,5 +132,5 @@ func (g *pages) unwritten() string {
 	if len(g.owed) == 0 {
 		return ""
 	}
-	return fmt.Sprintf("padproof: %d pages could not be written to %s; the next watch with --reports writes them from the ledger", len(g.owed), g.folder)
+	return fmt.Sprintf("padproof: pages that could not be written to %s: %d; the next watch with --reports writes them from the ledger", g.folder, len(g.owed))
 }

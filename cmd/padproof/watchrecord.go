@@ -128,14 +128,14 @@ func (w *watching) close() { _ = w.book.Close() }
 // again because they changed. takes gives the hashes by role, and is asked only if
 // the unit has any record.
 func findRecord(ctx context.Context, b book, p pending, takes func() map[string]string) (*ledger.Entry, error) {
-	const atATime = 50
+	const atATime, most = 50, 200
 	filter := ledger.Filter{Unit: p.unit.Serial, Kind: ledger.UnitCheck}
 	page, err := b.List(ctx, filter, ledger.Place{}, atATime)
 	if err != nil || len(page.Rows) == 0 {
 		return nil, err
 	}
 	own := takes()
-	for len(own) > 0 && len(page.Rows) > 0 {
+	for looked := 0; len(own) > 0 && looked < most; {
 		for _, row := range page.Rows {
 			entry, err := b.Show(ctx, row.Station, row.Sequence)
 			if err != nil {
@@ -145,7 +145,7 @@ func findRecord(ctx context.Context, b book, p pending, takes func() map[string]
 				return entry, nil
 			}
 		}
-		if len(page.Rows) < atATime {
+		if looked += len(page.Rows); len(page.Rows) < atATime {
 			break
 		}
 		if page, err = b.List(ctx, filter, page.Next, atATime); err != nil {

@@ -13,7 +13,7 @@ import (
 type Options struct {
 	Settle       time.Duration // unchanged for so long, a file is done; 2 s if left out
 	Patience     time.Duration // how long a file that does not look whole is waited for; 15 times Settle if left out
-	FullEvery    time.Duration // how often every file is asked for; 30 s if left out
+	FullEvery    time.Duration // how often every file is asked for, or less often so that it takes a tenth of the time; 5 s if left out
 	Expect       []string      // roles that a unit is waited for until it has them
 	NeedsDrawing bool          // a unit is waited for until it has a pad.toml, its own or a shared one
 	AsIs         bool          // units that lack something are due as well
@@ -62,7 +62,7 @@ func New(folder string, o Options) *Watcher {
 		o.Settle = 2 * time.Second
 	}
 	o.Patience = max(o.Settle, cmp.Or(o.Patience, 15*o.Settle))
-	o.FullEvery = cmp.Or(o.FullEvery, 30*time.Second)
+	o.FullEvery = cmp.Or(o.FullEvery, 5*time.Second)
 	if o.FS == nil {
 		o.FS = machine{}
 	}
@@ -81,14 +81,15 @@ func (w *Watcher) Look() (*Seen, error) {
 	if _, err := w.top.refresh(w.o.FS, now, full); err != nil {
 		return nil, err
 	}
-	if full {
-		w.nextFull = now.Add(w.o.FullEvery)
-	}
 	w.looks++
 	seen := &Seen{}
 	w.lookAtTop(seen, now, full)
 	w.lookAtFolders(seen, now, full)
 	w.forget(now)
+	if full {
+		ended := w.o.Now()
+		w.nextFull = ended.Add(max(w.o.FullEvery, 10*ended.Sub(now)))
+	}
 	for _, p := range w.pads {
 		if p.atSee == w.looks {
 			w.judge(p, seen, now)
