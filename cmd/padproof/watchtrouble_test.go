@@ -11,6 +11,8 @@ import (
 	"time"
 
 	"padproof/cmd/padproof/internal/ledger"
+	"padproof/cmd/padproof/internal/lot"
+	"padproof/cmd/padproof/internal/proof"
 )
 
 // A sickBook is a ledger that fails in its first calls.
@@ -210,29 +212,35 @@ func TestPageOwed(t *testing.T) {
 }
 
 // A file that is replaced while its unit is checked spoils no record: what was read
-// is dropped.
+// is dropped, and the unit is checked as it is then.
 func TestReplacedMeanwhile(t *testing.T) {
 	b := benchWith(t, &sickBook{}, nil)
-	var first sync.Once
-	b.watching.book = &hookedBook{b.ledger, func() {
-		first.Do(func() { write(t, filepath.Join(b.lot, "0417", "after.wav"), small(t, -16)) })
-	}}
+	for range 3 {
+		if _, err := b.look(); err != nil {
+			t.Fatal(err)
+		}
+		time.Sleep(b.settle)
+	}
+	seen, err := b.look()
+	if err != nil || len(seen.Due) != 1 {
+		t.Fatalf("due: %v, %v, want 0417", seen, err)
+	}
+	p, err := b.ready(t.Context(), seen.Due[0])
+	if err != nil {
+		t.Fatal(err)
+	}
+	answer, err := proof.Check(p.unit, proof.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	write(t, filepath.Join(b.lot, "0417", "after.wav"), small(t, -16))
+	if err := b.took(t.Context(), *p, lot.Outcome{Unit: p.unit, Answer: answer}); err != nil || b.records(t) != 0 || b.out.String() != "" {
+		t.Errorf("took = %v, %d records, printed %q, want nothing of it", err, b.records(t), b.out.String())
+	}
 	b.until(t, func() bool { return strings.Contains(b.out.String(), "0417") })
 	if !strings.Contains(b.out.String(), "FAIL") || b.records(t) != 1 {
 		t.Errorf("%d records, printed:\n%s\nwant the one of the take that is there", b.records(t), b.out.String())
 	}
-}
-
-// A hookedBook does something whenever it is asked for records: after a unit fell
-// due and before it is checked.
-type hookedBook struct {
-	*ledger.Ledger
-	do func()
-}
-
-func (h *hookedBook) List(ctx context.Context, f ledger.Filter, from ledger.Place, limit int) (*ledger.Page, error) {
-	h.do()
-	return h.Ledger.List(ctx, f, from, limit)
 }
 
 // What shared files have shown is kept while they are what they were, and let go
@@ -255,4 +263,31 @@ func TestSharedLetGo(t *testing.T) {
 	if b.records(t) != 3 {
 		t.Errorf("%d records, want 3", b.records(t))
 	}
+}
+
+// A unit in the ledger is not even read again after a restart because a shared file
+// has changed since.
+func TestNotReadAgain(t *testing.T) {
+	b := benchWith(t, &sickBook{}, nil)
+	b.until(t, func() bool { return strings.Contains(b.out.String(), "0417") })
+	write(t, filepath.Join(b.lot, "before.wav"), small(t, -7))
+	cmd := newWatch()
+	cmd.SetErr(&b.err)
+	again := newWatching(cmd, b.lot, b.watchFlags, b.book)
+	for range 10 {
+		seen, err := again.look()
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, a := range seen.Due {
+			if p, err := again.ready(t.Context(), a); p != nil || err != nil {
+				t.Errorf("%s is to be checked again (%v)", a.Serial, err)
+			}
+		}
+		if again.count.known == 1 {
+			return
+		}
+		time.Sleep(again.settle)
+	}
+	t.Error("0417 was not found in the ledger")
 }

@@ -316,7 +316,7 @@ func TestChannels(t *testing.T) {
 func TestCheap(t *testing.T) {
 	l := watchLot(t, Options{})
 	l.put("lot/before.wav", take(10))
-	const units = 1000
+	const units = 300
 	for i := range units {
 		l.put(fmt.Sprintf("lot/%04d/after.wav", i), take(10))
 		l.put(fmt.Sprintf("lot/f%04d.after.wav", i), take(10))
@@ -334,6 +334,18 @@ func TestCheap(t *testing.T) {
 	l.due(l.after(10*time.Second), "")
 	l.nextFull = time.Time{}
 	l.due(l.after(settle), "0007")
+}
+
+// A take that comes within one tick of a folder's coarse clock is not missed.
+func TestCoarseClock(t *testing.T) {
+	l := watchLot(t, Options{Expect: []string{"legs"}})
+	l.put("lot/0417/both.wav", take(10))
+	l.after(0)
+	l.nextFull = l.now.Add(time.Hour)
+	l.now = l.now.Add(time.Second)
+	l.stale = true
+	l.put("lot/0417/legs.wav", take(10))
+	l.due(l.after(settle), "0417")
 }
 
 // What is known stays bounded by what lies in the folder.
