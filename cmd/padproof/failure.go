@@ -46,6 +46,7 @@ func printError(stderr io.Writer, e *result.Error) {
 func schemaOf(cmd *cobra.Command) string {
 	schema, known := map[string]string{
 		"predict": result.PredictSchema, "signal": result.SignalSchema, "rehearse": result.RehearseSchema,
+		"ledger": ledgerSchema, "list": ledgerSchema, "show": ledgerSchema, "export": ledgerSchema, "verify": ledgerSchema,
 	}[commandName(cmd)]
 	if !known {
 		return result.CheckSchema

@@ -59,18 +59,18 @@ func (l *Ledger) write(ctx context.Context, records []Record) ([]Receipt, error)
 	if err != nil {
 		return nil, err
 	}
-	insert, err := tx.PrepareContext(ctx, l.engine.text(sqlInsert))
+	insert, done, err := l.inserter(ctx, tx, len(records))
 	if err != nil {
 		return nil, err
 	}
-	defer func() { _ = insert.Close() }()
+	defer done()
 	receipts := make([]Receipt, 0, len(records))
 	for _, r := range records {
 		text, receipt, err := encode(r, heads[r.Station])
 		if err != nil {
 			return nil, err
 		}
-		if _, err := insert.ExecContext(ctx, columns(r, receipt, text)...); err != nil {
+		if err := insert(columns(r, receipt, text)); err != nil {
 			return nil, err
 		}
 		heads[r.Station] = receipt
@@ -80,6 +80,19 @@ func (l *Ledger) write(ctx context.Context, records []Record) ([]Receipt, error)
 		return l.afterCommit(ctx, receipts, err)
 	}
 	return receipts, nil
+}
+
+// inserter returns what inserts one record; for many the statement is prepared.
+func (l *Ledger) inserter(ctx context.Context, tx *sql.Tx, count int) (insert func([]any) error, done func(), err error) {
+	text := l.engine.text(sqlInsert)
+	if count == 1 {
+		return func(values []any) error { _, err := tx.ExecContext(ctx, text, values...); return err }, func() {}, nil
+	}
+	prepared, err := tx.PrepareContext(ctx, text)
+	if err != nil {
+		return nil, nil, err
+	}
+	return func(values []any) error { _, err := prepared.ExecContext(ctx, values...); return err }, func() { _ = prepared.Close() }, nil
 }
 
 // lockHeads keeps others from the stations of the records, taken in order so that

@@ -118,6 +118,7 @@ func kills(usual int) int {
 func TestKilledWriters(t *testing.T) {
 	for name, usual := range map[string]int{"sqlite": 60, "postgres": 20} {
 		t.Run(name, func(t *testing.T) {
+			t.Parallel()
 			where := ""
 			if name == "sqlite" {
 				where = inFile(t)

@@ -62,7 +62,7 @@ func TestManyRecords(t *testing.T) {
 		} else if _, err := l.db.ExecContext(ctx, "VACUUM ANALYZE padproof_record"); err != nil {
 			t.Fatal(err)
 		}
-		mid := time.Date(2020, 1, 1, 0, n*30, 0, 0, time.UTC)
+		mid := time.Date(2020, 1, 1, 0, 0, n*30, 0, time.UTC)
 		for _, f := range []struct {
 			name   string
 			filter Filter

@@ -40,13 +40,28 @@ func TestListPlans(t *testing.T) {
 				for _, branch := range q.branches {
 					one := query{branches: []string{branch}, values: q.values}
 					plan := planOf(t, l, explain+one.newest(51), q.values)
-					if !strings.Contains(plan, "padproof_record") || through.MatchString(plan) {
+					if !strings.Contains(strings.ReplaceAll(plan, "\n", " ")+" ", indexFor(f, where)) || through.MatchString(plan) {
 						t.Errorf("the plan for %s, %s is\n%s", name, branch, plan)
 					}
 				}
 			}
 		}
 	})
+}
+
+// indexFor is the index that parts the records best. A server that knows how few
+// there are in a test may well choose another.
+func indexFor(f Filter, where string) string {
+	column := f.key()
+	switch {
+	case IsServer(where):
+		return "padproof_record_"
+	case column == "" && f.Verdict != "":
+		column = "verdict"
+	case column == "":
+		column = "at"
+	}
+	return "padproof_record_" + column + " "
 }
 
 func planOf(t *testing.T, l *Ledger, statement string, values []any) string {

@@ -111,6 +111,7 @@ func (s *sqlite) source(mode string, o Options) string {
 	v := url.Values{"_txlock": {"immediate"}}
 	v.Add("_pragma", "busy_timeout("+strconv.FormatInt(o.Wait.Milliseconds(), 10)+")")
 	v.Add("_pragma", "synchronous(FULL)")
+	v.Add("_pragma", "fullfsync(ON)")      // macOS: through the disk's own cache
 	v.Add("_pragma", "cache_size(-16384)") // KiB: the upper pages of every index
 	v.Add("_pragma", "temp_store(MEMORY)") // what undoes one statement need not touch the disk
 	v.Add("_pragma", "trusted_schema(OFF)")

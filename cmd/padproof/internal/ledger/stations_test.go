@@ -13,6 +13,7 @@ import (
 // connections that vie for its chain: none is lost, none doubled, every chain
 // verifies.
 func TestEightStations(t *testing.T) {
+	t.Parallel()
 	where := onServer(t)
 	const stations, hands, each = 8, 2, 1250
 	began := time.Now()

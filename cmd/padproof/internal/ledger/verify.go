@@ -66,9 +66,14 @@ func cutOff(head Receipt, now []Receipt) Fault {
 		return f
 	}
 	for _, h := range now {
-		if h.Station == head.Station {
-			f.Text = fmt.Sprintf("the record with the hash %s is not there: %s was once at %d and is now at %d",
-				head.Hash, head.Station, head.Sequence, h.Sequence)
+		switch {
+		case h.Station != head.Station:
+		case h.Sequence < head.Sequence:
+			f.Text = fmt.Sprintf("the chain of %s ends at %d: %d with the hash %s was cut off", head.Station, h.Sequence, head.Sequence, head.Hash)
+			return f
+		default:
+			f.Fault = "broken"
+			f.Text = fmt.Sprintf("%s was once there with the hash %s: it was altered, or the chain was written anew", head, head.Hash)
 			return f
 		}
 	}

@@ -126,6 +126,10 @@ func TestVerifyHead(t *testing.T) {
 		if v, err := l.Verify(ctx, head, hashAlone); err != nil || len(v.Faults) > 0 {
 			t.Errorf("Verify = %+v, %v, want no faults", v, err)
 		}
+		other := Receipt{Station: "bench", Sequence: 9, Hash: strings.Repeat("1", 64)}
+		if v, err := l.Verify(ctx, other); err != nil || len(v.Faults) != 1 || v.Faults[0].Fault != "broken" {
+			t.Errorf("Verify(%v) = %+v, %v, want a record with another hash", other, v, err)
+		}
 		change(t, l, "DELETE FROM padproof_record WHERE station = 'bench' AND sequence > 7")
 		if v, err := l.Verify(ctx); err != nil || len(v.Faults) > 0 {
 			t.Errorf("Verify with no head = %+v, %v, want no faults: nothing can show it", v, err)
