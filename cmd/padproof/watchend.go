@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"strings"
 
 	"padproof/cmd/padproof/internal/arrival"
 	"padproof/cmd/padproof/internal/lot"
@@ -52,8 +53,26 @@ func (w *watching) ended(ctx context.Context, err error) error {
 		return err
 	}
 	w.say("padproof: " + w.count.text())
+	w.say(waitingText(w.waiting))
 	w.say(w.pages.unwritten())
 	return nil
+}
+
+// waitingText names units that lack a file, the first few; "" if none does.
+func waitingText(all []arrival.Waiting) string {
+	if len(all) == 0 {
+		return ""
+	}
+	const most = 5
+	var some []string
+	for _, u := range all[:min(most, len(all))] {
+		some = append(some, u.Serial+" for "+u.Lacks)
+	}
+	text := "padproof: waiting: " + strings.Join(some, "; ")
+	if more := len(all) - most; more > 0 {
+		text += fmt.Sprintf("; and %d more", more)
+	}
+	return text
 }
 
 // endOnce ends a run that was to look once: what is not whole yet was not checked.

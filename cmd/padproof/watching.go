@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"io"
 	"os"
+	"strings"
 	"syscall"
 	"time"
 
@@ -41,6 +42,8 @@ type watching struct {
 	away     trouble // of the folder
 	stuck    trouble // of the ledger
 	saidTest bool    // that simulated results are not recorded
+	saidPad  bool    // that there is no drawing
+	waiting  []arrival.Waiting
 	count    watchCount
 }
 
@@ -150,6 +153,13 @@ func (w *watching) look() (*arrival.Seen, error) {
 	}
 	if seen.Shared != w.sharedOf { // what other shared files have shown is of no use any more
 		w.shared, w.sharedOf = &proof.Shared{}, seen.Shared
+	}
+	w.waiting = seen.Waiting
+	for _, u := range seen.Waiting {
+		if strings.Contains(u.Lacks, "pad.toml") && !w.saidPad {
+			w.saidPad = true
+			w.say("padproof: note: unit " + u.Serial + " waits for a drawing: put pad.toml into " + w.folder + ", or name one with --pad")
+		}
 	}
 	w.status.show(fmt.Sprintf("watching: %d checked, %d being written, %d wait for a file", w.count.checked(), len(seen.Settling), len(seen.Waiting)))
 	return seen, nil

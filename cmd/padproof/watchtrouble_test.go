@@ -291,3 +291,34 @@ func TestNotReadAgain(t *testing.T) {
 	}
 	t.Error("0417 was not found in the ledger")
 }
+
+// A unit without a drawing, or without a take, waits and is named.
+func TestWaits(t *testing.T) {
+	b := benchWith(t, &sickBook{}, nil)
+	if err := os.Remove(filepath.Join(b.lot, "pad.toml")); err != nil {
+		t.Fatal(err)
+	}
+	b.until(t, func() bool { return strings.Contains(b.err.String(), "0417 waits for a drawing") })
+	said := b.err.String()
+	if b.out.String() != "" || strings.Count(said, "waits for a drawing") != 1 || !strings.Contains(said, "padproof: waiting: 0417 for pad.toml") {
+		t.Errorf("printed %q, said:\n%s", b.out.String(), said)
+	}
+	write(t, filepath.Join(b.lot, "pad.toml"), []byte(smallPad))
+	b.until(t, func() bool { return strings.Contains(b.out.String(), "0417      PASS") })
+}
+
+// The line that is written over is taken away before anything is printed.
+func TestStatusLine(t *testing.T) {
+	var screen bytes.Buffer
+	s := &statusLine{w: &screen}
+	s.show("a long line")
+	s.show("short")
+	s.clear()
+	s.clear()
+	if got, want := screen.String(), "\rpadproof: a long line\rpadproof: short      \r               \r"; got != want {
+		t.Errorf("screen: %q, want %q", got, want)
+	}
+	if newStatusLine(&screen).show("x"); strings.Contains(screen.String(), "x") {
+		t.Error("a status line on what is no terminal")
+	}
+}
