@@ -15,7 +15,6 @@ import (
 	"padproof/cmd/padproof/internal/arrival"
 	"padproof/cmd/padproof/internal/lot"
 	"padproof/cmd/padproof/internal/proof"
-	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
@@ -49,13 +48,6 @@ type watching struct {
 
 // watchCount is what has become of units.
 type watchCount struct{ passed, failed, unproven, notChecked, known int }
-
-// A pending unit is due, and what it was when it fell due.
-type pending struct {
-	arrived arrival.Unit
-	unit    *unit.Unit
-	sheets  []usedFile
-}
 
 func newWatching(cmd *cobra.Command, folder string, f watchFlags, b book) *watching {
 	w := &watching{watchFlags: f, folder: folder, out: cmd.OutOrStdout(), err: cmd.ErrOrStderr(), asJSON: wantsJSON(cmd),
@@ -192,59 +184,6 @@ func (w *watching) take(ctx context.Context, seen *arrival.Seen) (busy bool, err
 	})
 }
 
-// ready opens a unit that is due. It returns nil if the unit needs no check: it is
-// in the ledger, or it cannot be opened, which is told.
-func (w *watching) ready(ctx context.Context, a arrival.Unit) (*pending, error) {
-	u, err := w.openUnit(a)
-	if err != nil {
-		return nil, w.notChecked(pending{arrived: a, unit: &unit.Unit{Serial: a.Serial}}, err)
-	}
-	p := &pending{arrived: a, unit: u}
-	p.sheets, _ = sheetsOf(u) // one that cannot be read: the check will say why
-	entry, err := w.recordedBefore(ctx, p)
-	if err != nil || entry == nil {
-		return p, err
-	}
-	w.count.add(entry.Record.Verdict, true)
-	w.arrivals.Done(a)
-	return nil, w.pages.mend(ctx, w, entry)
-}
-
-// openUnit finds the files of a unit that has arrived.
-func (w *watching) openUnit(a arrival.Unit) (u *unit.Unit, err error) {
-	switch a.Layout {
-	case unit.FlatLot:
-		u, err = unit.OpenSerial(a.Folder, a.Serial)
-	case unit.ChannelLot:
-		u, err = w.openChannel(a)
-	default:
-		u, err = unit.Open(a.Folder)
-	}
-	if err != nil {
-		return nil, err
-	}
-	if w.pad != "" {
-		u.PadFile, u.Inherited[w.pad] = w.pad, true
-	}
-	if w.rig != "" {
-		u.RigFile, u.Inherited[w.rig] = w.rig, true
-	}
-	return u, nil
-}
-
-func (w *watching) openChannel(a arrival.Unit) (*unit.Unit, error) {
-	found, err := unit.OpenLot(a.Folder, w.named.Channels)
-	if err != nil {
-		return nil, err
-	}
-	for _, u := range found.Units {
-		if u.Channel == a.Channel && u.Serial == a.Serial {
-			return u, nil
-		}
-	}
-	return nil, &result.Error{File: a.Folder, Text: "lot.toml has changed"}
-}
-
 // took takes in what became of a unit: it is recorded first, then reported.
 func (w *watching) took(ctx context.Context, p pending, o lot.Outcome) error {
 	if !w.arrivals.Unchanged(p.arrived) || o.Answer != nil && unchanged(p.sheets, p.unit) != nil {
@@ -298,29 +237,4 @@ func (w *watching) notChecked(p pending, err error) error {
 	}
 	w.count.notChecked++
 	return w.print(lot.Outcome{Unit: p.unit, Err: err})
-}
-
-// print prints one unit as lot does.
-func (w *watching) print(o lot.Outcome) error {
-	w.status.clear()
-	if w.asJSON && o.Answer != nil {
-		return writeLine(w.out, o.Answer)
-	}
-	row := lot.NewTally("").Add(o, describe)
-	if w.asJSON {
-		return writeLine(w.out, result.Failure{Schema: result.CheckSchema, Unit: row.Unit, Error: *row.Error})
-	}
-	if w.rows == nil {
-		const usual = "00000000"
-		w.rows = report.LotRows(w.out, []string{usual, row.Unit})
-	}
-	return w.rows(row)
-}
-
-// say prints a line for the person at the bench; "" is none.
-func (w *watching) say(line string) {
-	if line != "" {
-		w.status.clear()
-		fmt.Fprintln(w.err, line)
-	}
 }

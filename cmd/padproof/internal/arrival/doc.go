@@ -39,8 +39,8 @@
 // File-system events differ between platforms, get lost when many come at once,
 // and are not sent for what another machine writes to a network share. Looking
 // works everywhere alike. It costs one question for each unit's folder; files are
-// asked for only while something moves, and all of them every
-// [Options].FullEvery, since some shares keep no time of a folder, and a file
+// asked for only while something moves, and all of them every [Options].FullEvery
+// or, where that takes long, less often, since some shares keep no time of a folder, and a file
 // written over in its place leaves it as it was.
 //
 // # Limits
