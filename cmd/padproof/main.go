@@ -5,8 +5,8 @@
 //
 //	padproof COMMAND [flags]
 //
-// The commands are check, predict, signal, rehearse and ledger; padproof COMMAND --help
-// explains each. The exit status is 0 for PASS (or done), 1 for FAIL, 2 for
+// The commands are check, lot, watch, predict, signal, rehearse and ledger; padproof
+// COMMAND --help explains each. The exit status is 0 for PASS (or done), 1 for FAIL, 2 for
 // UNPROVEN and 3 where nothing could be checked.
 package main
 

@@ -69,7 +69,7 @@ Exit status: 0 PASS or done, 1 FAIL, 2 UNPROVEN, 3 could not check.`,
 	}
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error { return usageError(cmd, "%v", err) })
 	root.PersistentFlags().Bool("json", false, "print the result as JSON")
-	root.AddCommand(newCheck(), newPredict(), newSignal(), newRehearse(), newLot(), newLedger(), newRigCheck())
+	root.AddCommand(newCheck(), newPredict(), newSignal(), newRehearse(), newLot(), newWatch(), newLedger(), newRigCheck())
 	root.InitDefaultCompletionCmd()
 	if completion, _, err := root.Find([]string{"completion"}); err == nil {
 		completion.Args = func(cmd *cobra.Command, args []string) error {

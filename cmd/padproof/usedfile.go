@@ -1,8 +1,10 @@
 package main
 
 import (
+	"bytes"
 	"os"
 
+	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/unit"
 )
 
@@ -26,4 +28,19 @@ func sheetsOf(u *unit.Unit) ([]usedFile, error) {
 		all = append(all, s)
 	}
 	return all, nil
+}
+
+// unchanged looks whether the sheets are still what they were before a check, so
+// that no record is taken for one of sheets that were not used.
+func unchanged(before []usedFile, u *unit.Unit) error {
+	after, err := sheetsOf(u)
+	if err != nil {
+		return err
+	}
+	for i, s := range after {
+		if i >= len(before) || !bytes.Equal(before[i].text, s.text) {
+			return &result.Error{File: s.path, Text: "was changed while the unit was checked", Hint: "check the unit again"}
+		}
+	}
+	return nil
 }

@@ -60,7 +60,7 @@ func folderLot(folder string) (*Lot, error) {
 		}
 		lot.Units = append(lot.Units, openFaulty(path, name))
 	}
-	slices.SortFunc(lot.Units, func(a, b *Unit) int { return compareSerials(a.Serial, b.Serial) })
+	slices.SortFunc(lot.Units, func(a, b *Unit) int { return CompareSerials(a.Serial, b.Serial) })
 	if len(empty) > 0 {
 		lot.Warnings = append(lot.Warnings, "no takes in the folders "+strings.Join(empty, ", ")+": they were left out")
 	}
@@ -108,8 +108,8 @@ func channelLot(folder string, channels map[int]string) (*Lot, error) {
 	return lot, nil
 }
 
-// compareSerials puts numbers in their order, 9 before 10, and all else by name.
-func compareSerials(a, b string) int {
+// CompareSerials puts numbers in their order, 9 before 10, and all else by name.
+func CompareSerials(a, b string) int {
 	m, errA := strconv.Atoi(a)
 	n, errB := strconv.Atoi(b)
 	if errA == nil && errB == nil && m != n {

@@ -204,7 +204,10 @@ func (u *Unit) slip(name, prefix, stem string) {
 // there is none of this unit's business.
 func (u *Unit) slipsAbove(s *shelf) {
 	for _, t := range s.takes {
-		if role, ok := nearest.Slip(t.stem(), Roles()); ok && t.role == "" && Shared(role) && u.Files[role] == "" {
+		if t.role != "" {
+			continue
+		}
+		if role, ok := nearest.Slip(t.stem(), Roles()); ok && Shared(role) && u.Files[role] == "" {
 			u.slip(s.path(t.name), "", t.stem())
 		}
 	}
