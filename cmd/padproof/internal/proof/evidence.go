@@ -6,6 +6,7 @@ import (
 	"slices"
 
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/unit"
 	"padproof/compare"
 	"padproof/compare/network"
 	"padproof/compare/suspect"
@@ -124,6 +125,7 @@ func (c *check) legsEvidence() *suspect.Legs {
 	l := &suspect.Legs{
 		FreqHz: c.findings.legsHz, LoadOhms: load, OverDB: f.Measured + f.DrawnDB, StdUDB: f.ReadingStdUDB,
 		PhaseDeg: math.NaN(), PhaseStdUDeg: f.PhaseUDeg / 2,
+		Before:  c.takes.by[unit.LegsBefore] != nil,
 		DeadHot: c.findings.deadLegs[0], DeadCold: c.findings.deadLegs[1],
 	}
 	if !math.IsNaN(f.PhaseDeg) && drawn.Cold != 0 {
