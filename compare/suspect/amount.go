@@ -68,13 +68,17 @@ func (s *side) unclear(i int, best float64) bool {
 		}
 		return s.amounts[k].logScore
 	}
-	step := math.Abs(at(i) - at(i-1))
-	if !(step > missedFrac) {
-		return false
+	between := func(j, k int) float64 {
+		if d := math.Abs(at(j) - at(k)); !math.IsInf(d, 0) && !math.IsNaN(d) {
+			return d
+		}
+		return 0
 	}
+	step := between(i, i-1)
 	top := at(i-1) >= at(i-2) && at(i-1) >= at(i) || at(i) >= at(i+1) && at(i) >= at(i-1)
-	if top {
-		return math.Max(at(i), at(i-1)) > best-200
+	if top { // a peak midway between two amounts gives both one score: the slopes beside tell of it
+		steps := math.Max(step, math.Max(between(i-1, i-2), between(i, i+1)))
+		return steps > missedFrac && math.Max(at(i), at(i-1)) > best-200
 	}
 	return step > 1 && math.Max(at(i), at(i-1)) > best-matters
 }

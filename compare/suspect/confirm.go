@@ -26,13 +26,25 @@ func (r reads) open() bool { return r.ohms >= openOhms }
 type confirmer struct {
 	*search
 	readings []compare.OhmReading
+	taken    []bool // of the readings: what was read tells nothing new
 	sound    candidate
 }
 
 func (s *search) newConfirmer(soundWeight float64) *confirmer {
 	c := &confirmer{search: s, readings: compare.Readings(s.e.Circuit)}
 	c.sound = candidate{weight: soundWeight, reads: c.readsOf(s.e.Circuit, "", 0)}
+	for _, r := range c.readings {
+		c.taken = append(c.taken, s.hasRead(r))
+	}
 	return c
+}
+
+// hasRead tells whether a reading was taken.
+func (s *search) hasRead(r compare.OhmReading) bool {
+	one := compare.OhmSeen{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined}
+	return slices.ContainsFunc(s.e.Ohms, func(o Ohms) bool {
+		return one.Same(s.e.Circuit, compare.OhmSeen{PinA: o.PinA, PinB: o.PinB, Joined: o.Joined})
+	})
 }
 
 // readsOf are the readings of a circuit; drifting is a part whose amount is in doubt.
@@ -104,13 +116,16 @@ func naming(all []candidate, reading int) float64 {
 	return (sum + open) / total
 }
 
-// best is the reading with the highest chance of naming; of those that are as good, one that needs no
+// best is the reading, of those not taken, with the highest chance of naming; of those that are as good, one that needs no
 // pins joined, and of those the one that moves most against a sound unit.
 func (c *confirmer) best(all []candidate, suspect candidate) (reading int, ok bool) {
 	const asGood, joining = 0.01, 0.008
 	chances := make([]float64, len(c.readings))
 	most := 0.0
 	for i := range c.readings {
+		if c.taken[i] {
+			continue
+		}
 		chances[i] = naming(all, i)
 		if c.readings[i].Joined != [2]string{} {
 			chances[i] -= joining
@@ -119,7 +134,7 @@ func (c *confirmer) best(all []candidate, suspect candidate) (reading int, ok bo
 	}
 	reading, furthest := -1, -1.0
 	for i, chance := range chances {
-		if chance < most-asGood {
+		if chance < most-asGood || c.taken[i] {
 			continue
 		}
 		if far := apart(c.sound.reads[i], suspect.reads[i]); far > furthest {
