@@ -152,11 +152,18 @@ func lotChart(p *page, f result.LotFigure) {
 	if c.Provisional {
 		text += " (of fewer than 20 units: provisional)"
 	}
-	if len(c.Breaks) == 0 {
+	if len(c.LeftOut) > 0 {
+		text += ", made without " + strings.Join(c.LeftOut, ", ")
+	}
+	found := "not steady"
+	switch {
+	case len(c.Breaks) == 0:
 		p.item("  ", text+": steady.")
 		return
+	case c.Steady:
+		found = "as steady as can be told"
 	}
-	p.item("  ", fmt.Sprintf("%s: broken %d times; a steady line of as many units does so about %s times by chance.", text, len(c.Breaks), fixed(c.FalseBreaks, 1)))
+	p.item("  ", fmt.Sprintf("%s: %s; broken %d times, where a steady line of as many units shows about %s by chance.", text, found, len(c.Breaks), fixed(c.FalseBreaks, 1)))
 	for _, b := range c.Breaks {
 		p.item("  - ", fmt.Sprintf("%s at %s: %s", b.Rule, strings.Join(b.Units, ", "), b.Text))
 	}
