@@ -1,31 +1,38 @@
 package main
 
 import (
+	"context"
 	"encoding/json"
 	"io"
-	"os"
 	"path/filepath"
 	"runtime"
+	"time"
 
 	"github.com/spf13/cobra"
 
+	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/lot"
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
+	"padproof/cmd/padproof/internal/whole"
 )
 
 // lotFlags are those of lot.
 type lotFlags struct {
 	pad, rig string
 	csv      string
+	report   string
+	reports  string
+	plots    string
 	workers  int
+	now      func() time.Time
 }
 
 func newLot() *cobra.Command {
-	var f lotFlags
+	f := lotFlags{now: time.Now}
 	cmd := &cobra.Command{
 		Use:   "lot FOLDER",
 		Short: "Check every unit in a folder",
@@ -41,13 +48,19 @@ lot.toml names them:
   1 = "0417"
   2 = "0418"
 
+Units are taken in the order of their serials, letter by letter, and that counts as the order
+of making: a trend, a step, the chart and the capability within rest on it, yield, mean and
+spread do not. Give serials as many digits each: 0009 comes before 0010, 9 after 10.
+
 A unit that cannot be checked is named, and the rest go on. With --json there is a line for
-each unit, as check prints it, and a last one for the lot.
+each unit, as check prints it, and a last one for the lot. --report writes a page for whoever
+must know how the lot went, --reports one for each unit besides, to which the lot's page leads.
 
 Exit status: 3 if a unit could not be checked, else 1 if one fails, else 2 if one is
 unproven, else 0.`,
 		Example: `  padproof lot testdata/saltmarsh
-  padproof lot lot12 --csv lot12.csv`,
+  padproof lot lot12 --csv lot12.csv
+  padproof lot lot12 --report lot12.html --reports lot12-units`,
 		Args: func(cmd *cobra.Command, args []string) error {
 			switch {
 			case len(args) == 0:
@@ -62,10 +75,15 @@ unproven, else 0.`,
 	flags := cmd.Flags()
 	flags.SortFlags = false
 	flags.StringVar(&f.csv, "csv", "", "write a table of all units to this file")
+	flags.StringVar(&f.report, "report", "", "write the lot as a page to keep and to send, FILE.html")
+	flags.StringVar(&f.reports, "reports", "", "write each unit's page into this folder, SERIAL.html")
+	addPlots(cmd, &f.plots)
 	flags.StringVar(&f.pad, "pad", "", "the drawing of all units, in place of their own")
 	flags.StringVar(&f.rig, "rig", "", "the bench of all units, in place of their own")
 	flags.IntVar(&f.workers, "workers", runtime.NumCPU(), "units checked at a time")
 	_ = cmd.MarkFlagFilename("csv", "csv")
+	_ = cmd.MarkFlagFilename("report", "html", "htm")
+	_ = cmd.MarkFlagDirname("reports")
 	_ = cmd.MarkFlagFilename("pad", "toml")
 	_ = cmd.MarkFlagFilename("rig", "toml")
 	return cmd
@@ -75,38 +93,83 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	if f.workers < 1 {
 		return usageError(cmd, "--workers counts from 1, not %d", f.workers)
 	}
+	if cmd.Flags().Changed("report") {
+		if err := checkReportPath(cmd, f.report); err != nil {
+			return err
+		}
+	}
 	units, tally, err := f.open(folder)
+	if err != nil {
+		return err
+	}
+	pages, err := f.unitPages(cmd, units)
 	if err != nil {
 		return err
 	}
 	ctx, stop := untilInterrupted(cmd)
 	defer stop()
-	out := cmd.OutOrStdout()
-	show := lotLines(out, wantsJSON(cmd), units)
-	err = lot.Run(ctx, units, f.workers, proof.Options{}, func(o lot.Outcome) error {
-		return show(o, tally.Add(o, describe))
-	})
-	if err != nil {
-		return afterInterrupt(err)
+	checked, err := f.check(ctx, cmd, units, tally, pages)
+	if err == nil {
+		err = f.write(ctx, checked)
 	}
-	whole, err := tally.Lot()
+	if err != nil {
+		return pages.afterInterrupt(err)
+	}
+	if err := writePlots(cmd, f.plots, func() []*draw.Picture { return lotPictures(checked) }); err != nil {
+		return err
+	}
+	if wantsJSON(cmd) {
+		err = writeLine(cmd.OutOrStdout(), checked)
+	} else {
+		err = report.LotText(cmd.OutOrStdout(), checked)
+	}
 	if err != nil {
 		return err
 	}
+	return lotStatus(checked)
+}
+
+// check checks all units and shows each as it is done.
+func (f lotFlags) check(ctx context.Context, cmd *cobra.Command, units []*unit.Unit, tally *lot.Tally, pages *unitPages) (*result.Lot, error) {
+	out := cmd.OutOrStdout()
+	show := lotLines(coloured(out), wantsJSON(cmd), units)
+	var shown *progress
+	if !isTerminal(out) { // there the lines themselves show how far it is
+		shown = progressOn(cmd.ErrOrStderr(), "checking units")
+	}
+	defer shown.clear()
+	done := int64(0)
+	o := proof.Options{Err: ctx.Err, Curves: pages != nil}
+	err := lot.Run(ctx, units, f.workers, o, func(o lot.Outcome) error {
+		row := tally.Add(o, describe)
+		if o.Answer != nil && pages != nil {
+			path, err := pages.write(ctx, o.Unit, o.Answer)
+			if err != nil {
+				return err
+			}
+			row.Report = path
+		}
+		done++
+		shown.tell(done, int64(len(units)))
+		return show(o, row)
+	})
+	if err != nil {
+		return nil, err
+	}
+	return tally.Lot()
+}
+
+// write writes the files that were asked for.
+func (f lotFlags) write(ctx context.Context, l *result.Lot) error {
 	if f.csv != "" {
-		if err := writeWhole(f.csv, func(w io.Writer) error { return report.LotCSV(w, whole) }); err != nil {
+		if err := whole.Write(ctx, f.csv, func(w io.Writer) error { return report.LotCSV(w, l) }); err != nil {
 			return err
 		}
 	}
-	if wantsJSON(cmd) {
-		err = writeLine(out, whole)
-	} else {
-		err = report.LotText(out, whole)
+	if f.report == "" {
+		return nil
 	}
-	if err != nil {
-		return err
-	}
-	return lotStatus(whole)
+	return writeLotReport(ctx, f.report, l, f.now())
 }
 
 // open finds the units of a folder and begins the tally.
@@ -146,6 +209,7 @@ func lotLines(w io.Writer, asJSON bool, units []*unit.Unit) func(lot.Outcome, *r
 	if asJSON {
 		return func(o lot.Outcome, row *result.LotRow) error {
 			if o.Answer != nil {
+				o.Answer.Curves = nil // they are for pictures; check does not print them either
 				return writeLine(w, o.Answer)
 			}
 			return writeLine(w, result.Failure{Schema: result.CheckSchema, Unit: row.Unit, Error: *row.Error})
@@ -177,26 +241,4 @@ func lotStatus(l *result.Lot) error {
 		return exitStatus(exitUnproven)
 	}
 	return nil
-}
-
-// writeWhole writes a file beside its name and then gives it the name: whole, or
-// not at all.
-func writeWhole(path string, write func(io.Writer) error) error {
-	file, err := os.CreateTemp(filepath.Dir(path), ".padproof-*")
-	if err != nil {
-		return err
-	}
-	defer os.Remove(file.Name())
-	if err := write(file); err != nil {
-		file.Close()
-		return err
-	}
-	if err := file.Chmod(0o644); err != nil {
-		file.Close()
-		return err
-	}
-	if err := file.Close(); err != nil {
-		return err
-	}
-	return os.Rename(file.Name(), path)
 }

@@ -22,7 +22,7 @@ func LotChart(l *result.Lot, drawing int, check string) *Picture {
 	if !ok || s.Chart == nil || len(s.values) < 2 {
 		return nothing(name, "Chart of "+check, "a chart wants two units that give a "+check)
 	}
-	p := &Picture{Name: name, Title: "Chart of " + check + ": " + s.title, Says: s.chartSays(), Simulated: s.simulated, Width: usualWidth, Height: usualHeight + 60}
+	p := &Picture{Name: name, Title: "Chart of " + check + ": " + s.title, Says: s.chartSays(), Simulated: s.simulated, Width: usualWidth, Height: usualHeight + 66}
 	p.paint = func(sh *sheet) { s.drawChart(sh) }
 	return p
 }
@@ -30,7 +30,7 @@ func LotChart(l *result.Lot, drawing int, check string) *Picture {
 const (
 	dottedUpTo  = 100 // more points than that are a line alone
 	rangeHeight = 72
-	panelsApart = 22
+	panelsApart = 28
 )
 
 func (s lotSeries) drawChart(sh *sheet) {
