@@ -48,9 +48,10 @@ lot.toml names them:
   1 = "0417"
   2 = "0418"
 
-Units are taken in the order of their serials, letter by letter, and that counts as the order
-of making: a trend, a step, the chart and the capability within rest on it, yield, mean and
-spread do not. Give serials as many digits each: 0009 comes before 0010, 9 after 10.
+Units stand in the order of their serials, figures in them taken as numbers (SM-9 before
+SM-10), and that counts as the order of making: chart, trend, step and the capability within
+rest on it; yield, mean and spread do not. Where serials do not follow the making, read those
+with care.
 
 A unit that cannot be checked is named, and the rest go on. With --json there is a line for
 each unit, as check prints it, and a last one for the lot. --report writes a page for whoever

@@ -118,7 +118,7 @@ func lotViewOf(l *result.Lot, info LotPageInfo) (*lotView, error) {
 
 // lotCounts say how many units there are of each verdict, and the yield.
 func lotCounts(l *result.Lot) []phrase {
-	counts := phrase{count("/units", l.Units), words(" units: "), count("/passed", l.Passed), words(" PASS, "),
+	counts := phrase{count("/units", l.Units), words(" " + unitWord(l.Units) + ": "), count("/passed", l.Passed), words(" PASS, "),
 		count("/failed", l.Failed), words(" FAIL, "), count("/unproven", l.Unproven), words(" UNPROVEN, "), count("/not_checked", l.NotChecked), words(" not checked")}
 	if l.Units == 0 {
 		return []phrase{counts}
@@ -136,7 +136,7 @@ func lotFacts(l *result.Lot) []fact {
 		if d.Pad == "" {
 			pad = say("no drawing")
 		}
-		pad = append(pad, words(", "), count(at("/drawings", i)+"/units", d.Units), words(" units"))
+		pad = append(pad, words(", "), count(at("/drawings", i)+"/units", d.Units), words(" "+unitWord(d.Units)))
 		facts = append(facts, fact{"Pad", pad})
 		if d.Rig != "" && (i == 0 || l.Drawings[i-1].Rig != d.Rig) {
 			facts = append(facts, fact{"Rig", phrase{name(d.Rig)}})
