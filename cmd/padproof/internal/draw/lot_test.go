@@ -32,6 +32,16 @@ func TestBarsHoldEveryUnit(t *testing.T) {
 		n, most := len(beyond), 0
 		for _, b := range piles {
 			n, most = n+b.count, max(most, b.count)
+			top := 0
+			for _, l := range b.layers() {
+				if l.from != top || l.to-l.from != b.verdicts[l.verdict] {
+					t.Errorf("%s: %v does not stand on the layer below it, at %d", name, l, top)
+				}
+				top = l.to
+			}
+			if top != b.count {
+				t.Errorf("%s: a bar of %d units is %d high", name, b.count, top)
+			}
 			for _, limit := range []float64{float64(s.Low), float64(s.High)} {
 				if b.from < limit-1e-6 && b.to > limit+1e-6 {
 					t.Errorf("%s: a bar from %v to %v stands on both sides of the limit %v", name, b.from, b.to, limit)
@@ -46,6 +56,14 @@ func TestBarsHoldEveryUnit(t *testing.T) {
 				t.Errorf("%s: the limit %v is not between %v and %v", name, limit, w.low, w.high)
 			}
 		}
+	}
+}
+
+// Those that pass stand at the foot of a bar, those that fail on top.
+func TestBarsAreStacked(t *testing.T) {
+	b := pile{verdicts: map[string]int{"FAIL": 1, "PASS": 3, "UNPROVEN": 2}, count: 6}
+	if got, want := b.layers(), []layer{{"PASS", 0, 3}, {"UNPROVEN", 3, 5}, {"FAIL", 5, 6}}; !slices.Equal(got, want) {
+		t.Errorf("layers %v, want %v", got, want)
 	}
 }
 

@@ -45,15 +45,29 @@ var stacked = []string{"PASS", "", "UNPROVEN", "FAIL"}
 
 const unitRadius = 3.8
 
-// bars draws a pile as a bar, stacked by verdict.
-func (b *pile) bars(p *panel) {
+// A layer is the units of one verdict in a pile.
+type layer struct {
+	verdict  string
+	from, to int // counted from the foot of the pile
+}
+
+// layers are the verdicts of a pile over one another.
+func (b *pile) layers() []layer {
+	var all []layer
 	from := 0
 	for _, v := range stacked {
-		to := from + b.verdicts[v]
-		if to > from {
-			p.brick(p.place(b.from, float64(from)), p.place(b.to, float64(to)), v)
+		if n := b.verdicts[v]; n > 0 {
+			all = append(all, layer{v, from, from + n})
+			from += n
 		}
-		from = to
+	}
+	return all
+}
+
+// bars draws a pile as a bar, stacked by verdict.
+func (b *pile) bars(p *panel) {
+	for _, l := range b.layers() {
+		p.brick(p.place(b.from, float64(l.from)), p.place(b.to, float64(l.to)), l.verdict)
 	}
 	low, high := p.place(b.from, 0), p.place(b.to, float64(b.count))
 	p.lines = append(p.lines, [2]vg.Point{{X: low.X, Y: high.Y}, high}, [2]vg.Point{low, {X: low.X, Y: high.Y}}, [2]vg.Point{{X: high.X, Y: low.Y}, high})
@@ -61,13 +75,12 @@ func (b *pile) bars(p *panel) {
 
 // dots draws a pile as dots over one another.
 func (b *pile) dots(p *panel) {
-	x, k := (b.from+b.to)/2, 0
-	for _, v := range stacked {
-		for range b.verdicts[v] {
+	x := (b.from + b.to) / 2
+	for _, l := range b.layers() {
+		for k := l.from; k < l.to; k++ {
 			at := p.place(x, float64(k)+0.5)
-			p.dot(at, v)
+			p.dot(at, l.verdict)
 			p.lines = append(p.lines, [2]vg.Point{{X: at.X - unitRadius, Y: at.Y}, {X: at.X + unitRadius, Y: at.Y}})
-			k++
 		}
 	}
 }

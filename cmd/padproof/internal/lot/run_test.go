@@ -9,6 +9,7 @@ import (
 	"path/filepath"
 	"slices"
 	"testing"
+	"time"
 
 	"padproof/capture"
 	"padproof/cmd/padproof/internal/proof"
@@ -161,19 +162,19 @@ func TestRunEnds(t *testing.T) {
 	if !errors.Is(err, full) || n != 2 {
 		t.Errorf("after %d units: %v, want 2 and %v", n, err, full)
 	}
-	ctx, stop := context.WithCancel(context.Background())
-	n = 0
-	err = Run(ctx, units, 2, proof.Options{Err: ctx.Err}, func(o Outcome) error {
-		if n++; n == 2 {
-			stop()
+	for range 6 {
+		ctx, stop := context.WithCancel(context.Background())
+		n = 0
+		err = Run(ctx, units, 2, proof.Options{Err: ctx.Err}, func(o Outcome) error {
+			if n++; n == 2 {
+				time.Sleep(60 * time.Millisecond) // others are done meanwhile
+				stop()
+			}
+			return nil
+		})
+		if !errors.Is(err, context.Canceled) || n != 2 {
+			t.Fatalf("after %d units: %v, want 2 and %v", n, err, context.Canceled)
 		}
-		if o.Err != nil {
-			t.Errorf("%s: %v, want no unit half done", o.Unit.Serial, o.Err)
-		}
-		return nil
-	})
-	if !errors.Is(err, context.Canceled) || n != 2 {
-		t.Errorf("after %d units: %v, want 2 and %v", n, err, context.Canceled)
 	}
 }
 
