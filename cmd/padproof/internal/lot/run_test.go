@@ -162,12 +162,12 @@ func TestRunEnds(t *testing.T) {
 	if !errors.Is(err, full) || n != 2 {
 		t.Errorf("after %d units: %v, want 2 and %v", n, err, full)
 	}
-	for range 6 {
+	for range 5 {
 		ctx, stop := context.WithCancel(context.Background())
 		n = 0
 		err = Run(ctx, units, 2, proof.Options{Err: ctx.Err}, func(o Outcome) error {
 			if n++; n == 2 {
-				time.Sleep(60 * time.Millisecond) // others are done meanwhile
+				time.Sleep(300 * time.Millisecond) // others are done meanwhile
 				stop()
 			}
 			return nil

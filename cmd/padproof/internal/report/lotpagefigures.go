@@ -133,7 +133,7 @@ func chartTable(field string, figures []result.LotFigure) notedTable {
 }
 
 func breakTable(figures []result.LotFigure) notedTable {
-	t := &table{Caption: "Where the chart breaks a rule", Head: []string{"check", "rule", "units", "what"}}
+	t := &table{Class: "long", Caption: "Where the chart breaks a rule", Head: []string{"check", "rule", "units", "what"}}
 	for _, f := range figures {
 		if f.Chart == nil {
 			continue
