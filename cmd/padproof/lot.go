@@ -99,6 +99,9 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 			return err
 		}
 	}
+	if dir := filepath.Dir(f.csv); f.csv != "" && !isFolder(dir) {
+		return &result.Error{File: f.csv, Text: "there is no folder " + dir, Hint: "make it first, or name another"}
+	}
 	units, tally, err := f.open(folder)
 	if err != nil {
 		return err
