@@ -6,7 +6,7 @@
 // Each page is validated, opened from its file in headless Chromium (a request or
 // a console message is wrong), gone through by an accessibility checker in light
 // and dark, on a phone and on a desk, and printed on A4 and Letter: no table row
-// is cut, no table or figure is cut, no heading is parted from what follows it, and a
+// is cut, no table (but of the class long) or figure is cut, no heading is parted from what follows it, and a
 // page that is SIMULATED says so on every sheet. With --into, pictures and prints of
 // each page are kept in FOLDER, to be looked at.
 import { execFileSync } from "node:child_process";

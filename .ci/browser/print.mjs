@@ -21,7 +21,7 @@ export async function mark(tab) {
     };
     const names = new Map([...document.querySelectorAll("table,tr,figure,h1,h2,h3,h4,.hash")].map((e) => [e, e.textContent]));
     for (const t of document.querySelectorAll("table")) {
-      pair("table", names.get(t), t.caption, t.rows[t.rows.length - 1].cells[0]);
+      if (!t.classList.contains("long")) pair("table", names.get(t), t.caption, t.rows[t.rows.length - 1].cells[0]);
       for (const r of t.tBodies[0].rows) pair("row", names.get(r), r.cells[0], r.cells[r.cells.length - 1]);
     }
     for (const f of document.querySelectorAll("figure")) pair("figure", names.get(f), f, f.querySelector("figcaption"));

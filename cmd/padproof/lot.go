@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"encoding/json"
 	"io"
 	"path/filepath"
@@ -9,6 +10,7 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/lot"
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
@@ -22,13 +24,17 @@ import (
 type lotFlags struct {
 	pad, rig string
 	csv      string
+	report   string
+	reports  string
+	plots    string
 	workers  int
+	now      func() time.Time
 
 	recording recordFlags
 }
 
 func newLot() *cobra.Command {
-	var f lotFlags
+	f := lotFlags{now: time.Now}
 	cmd := &cobra.Command{
 		Use:   "lot FOLDER",
 		Short: "Check every unit in a folder",
@@ -48,13 +54,20 @@ With --ledger each unit is recorded before its line is printed. Where rig.toml a
 checks (required under [reference]), no unit passes without one in order in that ledger:
 padproof rigcheck --help says how.
 
+Units stand in the order of their serials, figures in them taken as numbers (SM-9 before
+SM-10), and that counts as the order of making: chart, trend, step and the capability within
+rest on it; yield, mean and spread do not. Where serials do not follow the making, read those
+with care.
+
 A unit that cannot be checked is named, and the rest go on. With --json there is a line for
-each unit, as check prints it, and a last one for the lot.
+each unit, as check prints it, and a last one for the lot. --report writes a page for whoever
+must know how the lot went, --reports one for each unit besides, to which the lot's page leads.
 
 Exit status: 3 if a unit could not be checked, else 1 if one fails, else 2 if one is
 unproven, else 0.`,
 		Example: `  padproof lot testdata/saltmarsh
-  padproof lot lot12 --csv lot12.csv`,
+  padproof lot lot12 --csv lot12.csv
+  padproof lot lot12 --report lot12.html --reports lot12-units`,
 		Args: func(cmd *cobra.Command, args []string) error {
 			switch {
 			case len(args) == 0:
@@ -69,11 +82,16 @@ unproven, else 0.`,
 	flags := cmd.Flags()
 	flags.SortFlags = false
 	flags.StringVar(&f.csv, "csv", "", "write a table of all units to this file")
+	flags.StringVar(&f.report, "report", "", "write the lot as a page to keep and to send, FILE.html")
+	flags.StringVar(&f.reports, "reports", "", "write each unit's page into this folder, SERIAL.html")
+	addPlots(cmd, &f.plots)
 	flags.StringVar(&f.pad, "pad", "", "the drawing of all units, in place of their own")
 	flags.StringVar(&f.rig, "rig", "", "the bench of all units, in place of their own")
 	flags.IntVar(&f.workers, "workers", runtime.NumCPU(), "units checked at a time")
 	f.recording.addTo(cmd)
 	_ = cmd.MarkFlagFilename("csv", "csv")
+	_ = cmd.MarkFlagFilename("report", "html", "htm")
+	_ = cmd.MarkFlagDirname("reports")
 	_ = cmd.MarkFlagFilename("pad", "toml")
 	_ = cmd.MarkFlagFilename("rig", "toml")
 	return cmd
@@ -83,7 +101,19 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	if f.workers < 1 {
 		return usageError(cmd, "--workers counts from 1, not %d", f.workers)
 	}
+	if cmd.Flags().Changed("report") {
+		if err := checkReportPath(cmd, f.report); err != nil {
+			return err
+		}
+	}
+	if dir := filepath.Dir(f.csv); f.csv != "" && !isFolder(dir) {
+		return &result.Error{File: f.csv, Text: "there is no folder " + dir, Hint: "make it first, or name another"}
+	}
 	units, tally, err := f.open(folder)
+	if err != nil {
+		return err
+	}
+	pages, err := f.unitPages(cmd, units)
 	if err != nil {
 		return err
 	}
@@ -96,40 +126,84 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 		return err
 	}
 	defer recorder.close()
-	out := coloured(cmd.OutOrStdout())
-	show := lotLines(out, wantsJSON(cmd), units)
-	err = lot.Run(ctx, units, f.workers, proof.Options{}, func(o lot.Outcome) error {
+	settle := func(o lot.Outcome) {
 		_ = gate.Hold(ctx, o.Unit, o.Answer, time.Now()) // what it met stands in the answer
 		recorder.record(ctx, o.Answer)
-		return show(o, tally.Add(o, describe))
-	})
-	if err != nil {
-		return afterInterrupt(err)
+	}
+	if err := f.check(ctx, cmd, units, tally, pages, settle); err != nil {
+		return pages.afterInterrupt(err)
 	}
 	tally.Warn(gate.Notes()...)
-	together, err := tally.Lot()
+	checked, err := tally.Lot()
 	if err != nil {
 		return err
 	}
-	together.Recorded = recorder.head
+	checked.Recorded = recorder.head
+	unwritten := f.write(ctx, cmd, checked)
+	if wantsJSON(cmd) {
+		err = writeLine(cmd.OutOrStdout(), checked)
+	} else {
+		err = report.LotText(coloured(cmd.OutOrStdout()), checked)
+	}
+	if err != nil {
+		return err
+	}
+	return endLot(cmd, checked, pages.afterInterrupt(unwritten), recorder.failure())
+}
+
+// endLot is the exit status of a lot that was printed.
+func endLot(cmd *cobra.Command, l *result.Lot, unwritten error, lost *result.Error) error {
+	switch {
+	case unwritten != nil:
+		printError(cmd.ErrOrStderr(), describe(unwritten))
+	case lost != nil:
+		printError(cmd.ErrOrStderr(), lost)
+	default:
+		return lotStatus(l)
+	}
+	return exitStatus(exitNoCheck)
+}
+
+// check checks all units, settles what becomes of each, and shows it.
+func (f lotFlags) check(ctx context.Context, cmd *cobra.Command, units []*unit.Unit, tally *lot.Tally, pages *unitPages, settle func(lot.Outcome)) error {
+	out := cmd.OutOrStdout()
+	show := lotLines(coloured(out), wantsJSON(cmd), units)
+	var shown *progress
+	if !isTerminal(out) { // there the lines themselves show how far it is
+		shown = progressOn(cmd.ErrOrStderr(), "checking units")
+	}
+	defer shown.clear()
+	done := int64(0)
+	o := proof.Options{Err: ctx.Err, Curves: pages != nil}
+	return lot.Run(ctx, units, f.workers, o, func(o lot.Outcome) error {
+		settle(o)
+		row := tally.Add(o, describe)
+		if o.Answer != nil && pages != nil {
+			path, err := pages.write(ctx, o.Unit, o.Answer)
+			if err != nil {
+				return err
+			}
+			row.Report, o.Answer.Curves = path, nil
+		}
+		done++
+		shown.tell(done, int64(len(units)))
+		return show(o, row)
+	})
+}
+
+// write writes the files that were asked for.
+func (f lotFlags) write(ctx context.Context, cmd *cobra.Command, l *result.Lot) error {
 	if f.csv != "" {
-		if err := whole.Write(ctx, f.csv, func(w io.Writer) error { return report.LotCSV(w, together) }); err != nil {
+		if err := whole.Write(ctx, f.csv, func(w io.Writer) error { return report.LotCSV(w, l) }); err != nil {
 			return err
 		}
 	}
-	if wantsJSON(cmd) {
-		err = writeLine(out, together)
-	} else {
-		err = report.LotText(out, together)
+	if f.report != "" {
+		if err := writeLotReport(ctx, f.report, l, f.now()); err != nil {
+			return err
+		}
 	}
-	if err != nil {
-		return err
-	}
-	if lost := recorder.failure(); lost != nil {
-		printError(cmd.ErrOrStderr(), lost)
-		return exitStatus(exitNoCheck)
-	}
-	return lotStatus(together)
+	return writePlots(cmd, f.plots, func() []*draw.Picture { return lotPictures(l) })
 }
 
 // open finds the units of a folder and begins the tally.
@@ -169,6 +243,7 @@ func lotLines(w io.Writer, asJSON bool, units []*unit.Unit) func(lot.Outcome, *r
 	if asJSON {
 		return func(o lot.Outcome, row *result.LotRow) error {
 			if o.Answer != nil {
+				o.Answer.Curves = nil // they are for pictures; check does not print them either
 				return writeLine(w, o.Answer)
 			}
 			return writeLine(w, result.Failure{Schema: result.CheckSchema, Unit: row.Unit, Error: *row.Error})

@@ -21,6 +21,24 @@ const browserChecks = "../../.ci/browser"
 // checker, on the screen and on paper. PADPROOF_PAGES names a folder to keep the
 // pages in, with pictures and prints of each.
 func TestPagesInABrowser(t *testing.T) {
+	lookAt(t, func(folder string) []string {
+		var paths []string
+		for name, a := range pagesToLookAt(t) {
+			path := filepath.Join(folder, name+".html")
+			if err := writeReport(context.Background(), path, a, pageTime); err != nil {
+				t.Fatal(err)
+			}
+			paths = append(paths, path)
+		}
+		return paths
+	})
+}
+
+var pageTime = time.Date(2026, 3, 1, 9, 30, 0, 0, time.FixedZone("", 3600))
+
+// lookAt has the pages looked at that are written into a folder.
+func lookAt(t *testing.T, write func(folder string) []string) {
+	t.Helper()
 	for what, missing := range map[string]bool{
 		"node": !onPath("node"), "pdftotext (poppler-utils)": !onPath("pdftotext"),
 		"/usr/bin/chromium": !exists("/usr/bin/chromium"), "npm ci in .ci/browser": !exists(filepath.Join(browserChecks, "node_modules")),
@@ -36,13 +54,9 @@ func TestPagesInABrowser(t *testing.T) {
 	} else {
 		args = append(args, "--into", folder)
 	}
-	for name, a := range pagesToLookAt(t) {
-		path := filepath.Join(folder, name+".html")
-		if err := writeReport(context.Background(), path, a, time.Date(2026, 3, 1, 9, 30, 0, 0, time.FixedZone("", 3600))); err != nil {
-			t.Fatal(err)
-		}
+	for _, path := range write(folder) {
 		if info, err := os.Stat(path); err != nil || info.Size() > 1<<20 {
-			t.Errorf("page %s has %d bytes (%v), want under a megabyte", name, info.Size(), err)
+			t.Errorf("page %s has %d bytes (%v), want under a megabyte", path, info.Size(), err)
 		}
 		args = append(args, path)
 	}

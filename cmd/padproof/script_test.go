@@ -2,6 +2,7 @@ package main
 
 import (
 	"errors"
+	"io"
 	"math"
 	"math/rand/v2"
 	"os"
@@ -33,6 +34,7 @@ func TestScripts(t *testing.T) {
 		Cmds: map[string]func(ts *testscript.TestScript, neg bool, args []string){
 			"exits":   exits,
 			"tonewav": toneWAV,
+			"joinwav": joinWAV,
 		},
 	})
 }
@@ -93,6 +95,39 @@ func toneWAV(ts *testscript.TestScript, neg bool, args []string) {
 			frame[c] = sigma * rng.NormFloat64()
 			if (int(v["channel"]) == c+1 || v["channel"] == 0) && i >= lead && i < lead+tone {
 				frame[c] += peak * math.Sin(2*math.Pi*v["hz"]*float64(i)/v["rate"])
+			}
+		}
+		ts.Check(w.Write(frame))
+	}
+	ts.Check(w.Close())
+}
+
+// joinWAV FILE TAKE... writes a take that has the first channel of each take as one
+// of its own. Shorter ones end in silence.
+func joinWAV(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) < 2 {
+		ts.Fatalf("usage: joinwav FILE TAKE...")
+	}
+	var all [][]float64
+	rateHz, longest := 0, 0
+	for _, path := range args[1:] {
+		take, err := capture.Open(ts.MkAbs(path))
+		ts.Check(err)
+		samples := make([]float64, take.Facts().Frames)
+		if _, err := take.Channel(1).ReadAt(samples, 0); err != io.EOF {
+			ts.Check(err)
+		}
+		ts.Check(take.Close())
+		all, rateHz, longest = append(all, samples), take.Facts().RateHz, max(longest, len(samples))
+	}
+	w, err := capture.Create(ts.MkAbs(args[0]), capture.Format{RateHz: rateHz, Channels: len(all), Bits: 24})
+	ts.Check(err)
+	frame := make([]float64, len(all))
+	for i := range longest {
+		for c, samples := range all {
+			frame[c] = 0
+			if i < len(samples) {
+				frame[c] = samples[i]
 			}
 		}
 		ts.Check(w.Write(frame))

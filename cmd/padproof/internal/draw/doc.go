@@ -4,7 +4,8 @@
 //
 //  1. [OfAnswer] or [OfPrediction] gives the pictures that there is something to
 //     show for; or one is asked for by itself: [Response], [Flatness], [Noise],
-//     [Level], [Spectrum], [Legs], [Predicted], [Schematic].
+//     [Level], [Spectrum], [Legs], [Predicted], [Schematic]. [OfLot] gives those of
+//     a lot: [LotSpread] and [LotChart] of each figure.
 //  2. [Picture.WriteSVG], [Picture.WritePNG] and [Picture.WritePDF] write a file;
 //     [Picture.WriteInline] writes the element for a page.
 //

@@ -9,7 +9,7 @@ import (
 
 // A Picture is one picture, ready to be written in any form.
 type Picture struct {
-	Name      string // the stem of its file: response, noise, level, spectrum, legs, predicted, schematic
+	Name      string // the stem of its file: response, noise, level, spectrum, legs, predicted, schematic; spread-loss, chart-loss
 	Title     string // a few words
 	Says      string // one sentence: what is shown and what was found; for the caption and the screen reader
 	Simulated bool   // SIMULATED stands in it

@@ -91,6 +91,7 @@ func sampleCondition(lossDB float64) result.Condition {
 // samplePictures are one of each.
 func samplePictures() []*Picture {
 	pictures := append(OfAnswer(sampleAnswer()), OfPrediction(samplePrediction())...)
+	pictures = append(pictures, sampleLotPictures()...)
 	for _, name := range []string{"L", "T", "pi", "O", "bridged-T"} {
 		d := standard(name)
 		pictures = append(pictures, Schematic(d, SchematicOptions{Title: name, Marked: []string{"R1", "R3"}}))

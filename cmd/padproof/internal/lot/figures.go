@@ -83,7 +83,7 @@ func (f *figure) statistics() (result.LotFigure, error) {
 		if err != nil {
 			return one, err
 		}
-		one.Overall, one.Within = capability(c.Overall), capability(c.Within)
+		one.Overall, one.Within, one.Differ = capability(c.Overall), capability(c.Within), c.Differ
 	}
 	one.Chart, err = f.chart()
 	return one, err
@@ -98,29 +98,4 @@ func capability(i lotstat.Indices) *result.Capability {
 		return nil
 	}
 	return &result.Capability{SD: result.Number(i.StdDev), Cp: ranged(i.Cp, i.CpInterval), Cpk: ranged(i.Cpk, i.CpkInterval)}
-}
-
-// chart is the figure's chart of single readings.
-func (f *figure) chart() (*result.Chart, error) {
-	limits, err := lotstat.FindChartLimits(f.values)
-	if err != nil {
-		return nil, err
-	}
-	read, err := lotstat.ReadChart(f.values, limits, rules)
-	if err != nil {
-		return nil, err
-	}
-	chart := &result.Chart{
-		Centre: result.Number(limits.Centre), Low: result.Number(limits.Low), High: result.Number(limits.High),
-		MeanRange: result.Number(limits.MeanRange), RangeHigh: result.Number(limits.RangeHigh),
-		Provisional: limits.Provisional, Rules: string(rules), FalseBreaks: result.Number(read.FalseBreaks), Breaks: []result.Break{},
-	}
-	for _, b := range read.Breaks {
-		one := result.Break{Rule: b.Rule, Text: b.Text, Units: []string{}}
-		for _, i := range b.Points {
-			one.Units = append(one.Units, f.units[i])
-		}
-		chart.Breaks = append(chart.Breaks, one)
-	}
-	return chart, nil
 }

@@ -65,6 +65,9 @@ func Run(ctx context.Context, units []*unit.Unit, workers int, o proof.Options, 
 	for i := range units {
 		select {
 		case done := <-slots[i]:
+			if ctx.Err() != nil { // it may be half done
+				return ctx.Err()
+			}
 			<-room
 			if err := each(done); err != nil {
 				return err

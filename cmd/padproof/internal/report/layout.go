@@ -30,11 +30,14 @@ func (p *page) heading(text string) {
 
 // item writes a paragraph behind a mark, wrapped, its further lines under its
 // first word.
-func (p *page) item(mark, text string) {
+func (p *page) item(mark, text string) { p.itemAs(mark, mark, text) }
+
+// itemAs is the same with a mark that is shown in another form, as wide as itself.
+func (p *page) itemAs(mark, shown, text string) {
 	indent := strings.Repeat(" ", utf8.RuneCountInString(mark))
 	for i, row := range wrap(clean(text), lineWidth-len(indent)) {
 		if i == 0 {
-			p.line("%s%s", mark, row)
+			p.line("%s%s", shown, row)
 		} else {
 			p.line("%s%s", indent, row)
 		}

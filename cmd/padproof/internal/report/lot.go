@@ -36,12 +36,13 @@ func LotRows(w io.Writer, serials []string) func(*result.LotRow) error {
 			}
 		}
 		head := cell(r.Unit, wide) + cell(verdict, 11) + cell(loss, 8) + cell(u, 6)
+		shown := cell(r.Unit, wide) + p.hue(verdict) + cell(verdict, 11)[len(verdict):] + cell(loss, 8) + cell(u, 6)
 		text := wrong(r)
 		if text == "" {
-			p.line("%s", strings.TrimRight(head, " "))
+			p.line("%s", strings.TrimRight(shown, " "))
 			return p.err
 		}
-		p.item(head, text)
+		p.itemAs(head, shown, text)
 		return p.err
 	}
 }
@@ -82,7 +83,7 @@ func LotText(w io.Writer, l *result.Lot) error {
 	}
 	for _, d := range l.Drawings {
 		if len(l.Drawings) > 1 {
-			p.heading(fmt.Sprintf("%s, %d units", d.Pad, d.Units))
+			p.heading(clean(fmt.Sprintf("%s, %d %s", d.Pad, d.Units, unitWord(d.Units))))
 		}
 		bullets(p, "What it means", d.Says)
 		figures(p, d.Figures)
@@ -98,11 +99,18 @@ func LotText(w io.Writer, l *result.Lot) error {
 }
 
 func counts(l *result.Lot) string {
-	text := fmt.Sprintf("%d units, %d PASS, %d FAIL, %d UNPROVEN", l.Units, l.Passed, l.Failed, l.Unproven)
+	text := fmt.Sprintf("%d %s, %d PASS, %d FAIL, %d UNPROVEN", l.Units, unitWord(l.Units), l.Passed, l.Failed, l.Unproven)
 	if l.NotChecked > 0 {
 		text += fmt.Sprintf(", %d not checked", l.NotChecked)
 	}
 	return text
+}
+
+func unitWord(n int) string {
+	if n == 1 {
+		return "unit"
+	}
+	return "units"
 }
 
 func percent(n result.Number) string {
@@ -155,11 +163,18 @@ func lotChart(p *page, f result.LotFigure) {
 	if c.Provisional {
 		text += " (of fewer than 20 units: provisional)"
 	}
-	if len(c.Breaks) == 0 {
+	if len(c.LeftOut) > 0 {
+		text += ", made without " + strings.Join(c.LeftOut, ", ")
+	}
+	found := "not steady"
+	switch {
+	case len(c.Breaks) == 0:
 		p.item("  ", text+": steady.")
 		return
+	case c.Steady:
+		found = "as steady as can be told"
 	}
-	p.item("  ", fmt.Sprintf("%s: broken %d times; a steady line of as many units does so about %s times by chance.", text, len(c.Breaks), fixed(c.FalseBreaks, 1)))
+	p.item("  ", fmt.Sprintf("%s: %s; broken %d times, where a steady line of as many units shows about %s by chance.", text, found, len(c.Breaks), fixed(c.FalseBreaks, 1)))
 	for _, b := range c.Breaks {
 		p.item("  - ", fmt.Sprintf("%s at %s: %s", b.Rule, strings.Join(b.Units, ", "), b.Text))
 	}

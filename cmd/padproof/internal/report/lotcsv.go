@@ -11,7 +11,8 @@ import (
 
 // LotCSV writes a lot as a table (RFC 4180): a line a unit; of each check that any
 // unit has, its verdict, the figure and its expanded uncertainty, in the checks'
-// own order. What there is none of is empty; a decimal has a point.
+// own order. Figures are those of the JSON, with all their digits; what there is none
+// of is empty; a decimal has a point.
 func LotCSV(w io.Writer, l *result.Lot) error {
 	names := checkNames(l)
 	head := []string{"unit", "verdict"}
@@ -54,7 +55,7 @@ func csvNumber(n *result.Number) string {
 	if n == nil || !n.OK() {
 		return ""
 	}
-	return strconv.FormatFloat(float64(*n), 'g', 8, 64)
+	return strconv.FormatFloat(float64(*n), 'g', -1, 64)
 }
 
 // checkNames are the checks that any unit has, in the order in which they are made.

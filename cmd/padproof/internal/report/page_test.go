@@ -106,7 +106,7 @@ func numbers(v any, at string, into map[string]any) {
 	}
 }
 
-func jsonOf(t *testing.T, a *result.Answer) (any, map[string]any) {
+func jsonOf(t *testing.T, a any) (any, map[string]any) {
 	t.Helper()
 	text, err := json.Marshal(a)
 	if err != nil {
@@ -190,7 +190,7 @@ func TestPageFiguresAreTheJSONs(t *testing.T) {
 }
 
 // figureText is a rounded figure: under, a number, a prefix of its unit.
-var figureText = regexp.MustCompile(`^(<|over )?(-?[0-9.]+(?:e[-+][0-9]+)?) ?([kM]?)(?:Ω|Hz)?$`)
+var figureText = regexp.MustCompile(`^(<|over )?(-?[0-9.]+(?:e[-+][0-9]+)?) ?([kM%]?)(?:Ω|Hz)?$`)
 
 // sameFigure holds what the page says of a field against what the JSON says.
 func sameFigure(t *testing.T, field, want, value, text string) {
@@ -206,7 +206,7 @@ func sameFigure(t *testing.T, field, want, value, text string) {
 		t.Errorf("%s is shown as %q, which is no figure", field, text)
 		return
 	}
-	scale := map[string]float64{"": 1, "k": 1e3, "M": 1e6}[m[3]]
+	scale := map[string]float64{"": 1, "k": 1e3, "M": 1e6, "%": 0.01}[m[3]]
 	shown, _ := strconv.ParseFloat(m[2], 64)
 	shown *= scale
 	switch m[1] {

@@ -14,6 +14,7 @@ type piece struct {
 	Field string // "" for words
 	Value string // of a figure; "" where the field is null
 	Name  bool   // words that a sheet, a folder or a recorder chose
+	Link  string // where a name leads to, "" for nowhere
 }
 
 // A phrase is a row of pieces.

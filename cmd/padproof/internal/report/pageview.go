@@ -14,14 +14,11 @@ import (
 // which it is read.
 type pageView struct {
 	*result.Answer
+	stamp
 	CSS      template.CSS
 	Title    string
-	Version  string
 	Class    string // of the verdict
 	Mark     string // a sign that stands before the verdict's word
-	UTC      string
-	Local    string
-	ISO      string
 	Why      []phrase
 	Facts    []fact
 	Checks   *table
@@ -91,13 +88,8 @@ func viewOf(a *result.Answer, info PageInfo) (*pageView, error) {
 	if err != nil {
 		return nil, err
 	}
-	v := &pageView{Answer: a, CSS: template.CSS(css), Version: info.Version, Title: titleOf(a)}
-	v.Class, v.Mark = strings.ToLower(a.Verdict), map[string]string{"PASS": "✓", "FAIL": "✕", "UNPROVEN": "?"}[a.Verdict]
-	v.UTC = info.Made.UTC().Format("2006-01-02 15:04:05") + " UTC"
-	if _, offset := info.Made.Zone(); offset != 0 {
-		v.Local = info.Made.Format("2006-01-02 15:04:05 -07:00")
-	}
-	v.ISO = info.Made.UTC().Format(time.RFC3339)
+	v := &pageView{Answer: a, CSS: template.CSS(css), stamp: stampOf(info.Made, info.Version), Title: titleOf(a)}
+	v.Class, v.Mark = strings.ToLower(a.Verdict), marks[a.Verdict]
 	v.Why, v.Facts = whyOf(a), factsOf(a)
 	v.Checks, v.Details = checksTable(a), checkDetails(a)
 	v.Tones, v.Octaves = tonesTable(a), octaveTable(a)
@@ -129,6 +121,23 @@ func viewOf(a *result.Answer, info PageInfo) (*pageView, error) {
 		v.Handling = append(v.Handling, result.SolderCaution)
 	}
 	return v, nil
+}
+
+// marks are the signs of the verdicts.
+var marks = map[string]string{"PASS": "✓", "FAIL": "✕", "UNPROVEN": "?"}
+
+// A stamp says when and by what a page was made.
+type stamp struct {
+	UTC, Local, ISO string
+	Version         string
+}
+
+func stampOf(made time.Time, version string) stamp {
+	s := stamp{UTC: made.UTC().Format("2006-01-02 15:04:05") + " UTC", ISO: made.UTC().Format(time.RFC3339), Version: version}
+	if _, offset := made.Zone(); offset != 0 {
+		s.Local = made.Format("2006-01-02 15:04:05 -07:00")
+	}
+	return s
 }
 
 // titleOf names the page in a list of windows and files.

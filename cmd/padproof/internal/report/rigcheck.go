@@ -33,7 +33,7 @@ func RigCheckText(w io.Writer, c *result.RigCheck, verbose bool) error {
 	}
 	p.line("")
 	p.item("  ", referenceText(c.Reference))
-	chartTable(p, c.Readings, verbose)
+	rigChartTable(p, c.Readings, verbose)
 	if c.Answer != nil {
 		problems(p, c.Answer)
 		bullets(p, "Taken for granted, since rig.toml leaves it out", c.Answer.Assumed)
@@ -85,7 +85,7 @@ func hoursText(h float64) string {
 	return significant(h) + " hours"
 }
 
-func chartTable(p *page, readings []result.RigReading, all bool) {
+func rigChartTable(p *page, readings []result.RigReading, all bool) {
 	if len(readings) == 0 {
 		return
 	}

@@ -82,6 +82,7 @@ type LotFigure struct {
 
 	Overall *Capability `json:"overall,omitempty"` // by the spread of all units
 	Within  *Capability `json:"within,omitempty"`  // by the mean moving range
+	Differ  bool        `json:"differ,omitempty"`  // overall is worse than within: the level moves, beyond chance
 	Chart   *Chart      `json:"chart,omitempty"`
 }
 
@@ -101,15 +102,17 @@ type Capability struct {
 
 // A Chart is an individuals and moving-range chart.
 type Chart struct {
-	Centre      Number  `json:"centre"`
-	Low         Number  `json:"low"`
-	High        Number  `json:"high"`
-	MeanRange   Number  `json:"mean_moving_range"`
-	RangeHigh   Number  `json:"moving_range_high"`
-	Provisional bool    `json:"provisional"` // fewer than 20 units made it
-	Rules       string  `json:"rules"`       // the book they are from
-	Breaks      []Break `json:"breaks"`
-	FalseBreaks Number  `json:"breaks_by_chance"` // about how many a steady line shows
+	Centre      Number   `json:"centre"`
+	Low         Number   `json:"low"`
+	High        Number   `json:"high"`
+	MeanRange   Number   `json:"mean_moving_range"`
+	RangeHigh   Number   `json:"moving_range_high"`
+	Provisional bool     `json:"provisional"` // fewer than 20 units made it
+	LeftOut     []string `json:"left_out"`    // units that lie far from all others: the limits are made without them
+	Steady      bool     `json:"steady"`      // no more breaks than chance may bring
+	Rules       string   `json:"rules"`       // the book they are from
+	Breaks      []Break  `json:"breaks"`
+	FalseBreaks Number   `json:"breaks_by_chance"` // about how many a steady line shows
 }
 
 // A Break is one place where a chart breaks a rule.

@@ -83,7 +83,7 @@ func Flat(folder string) (units []*Unit, warnings []string, err error) {
 			Hint: "name takes like 0417.after.wav, or give each unit a folder of its own"}
 	}
 	warnings = s.warnFlat(bySerial)
-	for _, key := range slices.Sorted(maps.Keys(bySerial)) {
+	for _, key := range slices.SortedFunc(maps.Keys(bySerial), CompareSerials) {
 		units = append(units, bySerial[key])
 	}
 	return units, warnings, nil

@@ -3,7 +3,6 @@ package unit
 import (
 	"path/filepath"
 	"slices"
-	"strconv"
 	"strings"
 )
 
@@ -98,7 +97,7 @@ func channelLot(folder string, channels map[int]string) (*Lot, error) {
 		u.Serial, u.Channel = serial, channel
 		lot.Units = append(lot.Units, u)
 	}
-	slices.SortFunc(lot.Units, func(a, b *Unit) int { return a.Channel - b.Channel })
+	slices.SortFunc(lot.Units, func(a, b *Unit) int { return CompareSerials(a.Serial, b.Serial) })
 	if len(lot.Units) > 0 {
 		lot.Warnings, lot.Units[0].Warnings = lot.Units[0].Warnings, nil
 		for _, u := range lot.Units[1:] {
@@ -106,16 +105,6 @@ func channelLot(folder string, channels map[int]string) (*Lot, error) {
 		}
 	}
 	return lot, nil
-}
-
-// CompareSerials puts numbers in their order, 9 before 10, and all else by name.
-func CompareSerials(a, b string) int {
-	m, errA := strconv.Atoi(a)
-	n, errB := strconv.Atoi(b)
-	if errA == nil && errB == nil && m != n {
-		return m - n
-	}
-	return strings.Compare(strings.ToLower(a), strings.ToLower(b))
 }
 
 // LotSheet returns the path of a folder's lot.toml, "" if there is none.
