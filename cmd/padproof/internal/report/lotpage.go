@@ -59,6 +59,7 @@ type lotView struct {
 	LookAt       *table
 	MoreToLookAt bool
 	All          *table
+	InLedger     []fact // the last record of the lot
 }
 
 // A lotGroup is the units of one drawing.

@@ -27,17 +27,17 @@ func foundFacts(a *result.Answer) []fact {
 	return facts
 }
 
-// recordedFacts are where the answer stands in the ledger, or why it does not.
-func recordedFacts(a *result.Answer) []fact {
+// recordedFacts are where an answer stands in the ledger, or why it does not.
+func recordedFacts(r *result.Recorded, e *result.Error) []fact {
 	var facts []fact
-	if e := a.RecordError; e != nil {
+	if e != nil {
 		why := phrase{name(e.File)}
 		if e.Line > 0 {
 			why = append(why, words(", line "), count("/record_error/line", e.Line))
 		}
 		facts = append(facts, fact{"Not recorded", append(why, words(": "+e.Text+"; "+e.Hint))})
 	}
-	if r := a.Recorded; r != nil {
+	if r != nil {
 		facts = append(facts, fact{"Station", phrase{name(r.Station)}},
 			fact{"Record", phrase{count("/recorded/sequence", int(r.Sequence))}},
 			fact{"Hash, the head of the station", say(r.Hash)})

@@ -93,7 +93,7 @@ func viewOf(a *result.Answer, info PageInfo) (*pageView, error) {
 	v.Why, v.Facts = whyOf(a), factsOf(a)
 	v.Checks, v.Details = checksTable(a), checkDetails(a)
 	v.Tones, v.Octaves = tonesTable(a), octaveTable(a)
-	v.Problems, v.Found, v.Recorded = problemViews(a), foundFacts(a), recordedFacts(a)
+	v.Problems, v.Found, v.Recorded = problemViews(a), foundFacts(a), recordedFacts(a.Recorded, a.RecordError)
 	v.Budgets, v.Takes = budgetTables(a), takeTables(a)
 	if v.Suspects, err = suspectViews(a, info.Marked); err != nil {
 		return nil, err
