@@ -3,7 +3,6 @@ package main
 import (
 	"encoding/json"
 	"io"
-	"path/filepath"
 	"runtime"
 	"time"
 
@@ -13,7 +12,6 @@ import (
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/result"
-	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/cmd/padproof/internal/whole"
 )
@@ -134,14 +132,7 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 
 // open finds the units of a folder and begins the tally.
 func (f lotFlags) open(folder string) ([]*unit.Unit, *lot.Tally, error) {
-	named := &sheet.Lot{}
-	if path := unit.LotSheet(folder); path != "" {
-		var err error
-		if named, err = sheet.ReadLot(path); err != nil {
-			return nil, nil, err
-		}
-	}
-	found, err := unit.OpenLot(folder, named.Channels)
+	found, name, err := lot.Open(folder)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -151,12 +142,6 @@ func (f lotFlags) open(folder string) ([]*unit.Unit, *lot.Tally, error) {
 		}
 		if f.rig != "" {
 			u.RigFile = f.rig
-		}
-	}
-	name := named.Name
-	if name == "" {
-		if full, err := filepath.Abs(folder); err == nil {
-			name = filepath.Base(full)
 		}
 	}
 	tally := lot.NewTally(name)
@@ -191,13 +176,8 @@ func writeLine(w io.Writer, v any) error {
 
 // lotStatus is the exit status of a lot.
 func lotStatus(l *result.Lot) error {
-	switch {
-	case l.NotChecked > 0 || l.Units == 0:
+	if l.Verdict == "" {
 		return exitStatus(exitNoCheck)
-	case l.Failed > 0:
-		return exitStatus(exitFail)
-	case l.Unproven > 0:
-		return exitStatus(exitUnproven)
 	}
-	return nil
+	return statusOf(l.Verdict)
 }
