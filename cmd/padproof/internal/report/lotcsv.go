@@ -11,7 +11,8 @@ import (
 
 // LotCSV writes a lot as a table (RFC 4180): a line a unit; of each check that any
 // unit has, its verdict, the figure and its expanded uncertainty, in the checks'
-// own order. What there is none of is empty; a decimal has a point.
+// own order. What there is none of is empty; a decimal has a point; a name that a
+// spreadsheet would take for a formula has an apostrophe before it.
 func LotCSV(w io.Writer, l *result.Lot) error {
 	names := checkNames(l)
 	head := []string{"unit", "verdict"}
@@ -33,7 +34,7 @@ func LotCSV(w io.Writer, l *result.Lot) error {
 }
 
 func lotCSVRow(r result.LotRow, names []string, simulated bool) []string {
-	row := []string{r.Unit, r.Verdict}
+	row := []string{noFormula(r.Unit), r.Verdict}
 	for _, n := range names {
 		cells := []string{"", "", ""}
 		for _, c := range r.Checks {
@@ -47,7 +48,7 @@ func lotCSVRow(r result.LotRow, names []string, simulated bool) []string {
 	if r.Error != nil {
 		failure = r.Error.Error()
 	}
-	return append(row, r.Suspect, csvNumber(r.Weight), strings.Join(r.Problems, "; "), r.Reason, failure, strconv.FormatBool(simulated))
+	return append(row, noFormula(r.Suspect), csvNumber(r.Weight), strings.Join(r.Problems, "; "), noFormula(r.Reason), noFormula(failure), strconv.FormatBool(simulated))
 }
 
 func csvNumber(n *result.Number) string {
@@ -60,7 +61,7 @@ func csvNumber(n *result.Number) string {
 // checkNames are the checks that any unit has, in the order in which they are made.
 func checkNames(l *result.Lot) []string {
 	var names []string
-	for _, n := range []string{"loss", "response", "flatness", "noise", "noise-level", "polarity", "distortion", "hum", "legs", "steadiness", "bypass"} {
+	for _, n := range exportedChecks {
 		for _, r := range l.Rows {
 			if hasCheck(r, n) {
 				names = append(names, n)
