@@ -58,7 +58,7 @@ func bestReading(sound, wrong *network.Circuit, taken []OhmSeen) OhmReading {
 			continue
 		}
 		r.GoodOhms, r.WrongOhms = r.On(sound), r.On(wrong)
-		if change := readingChange(r.GoodOhms, r.WrongOhms); change > most {
+		if change := ReadingChange(r.GoodOhms, r.WrongOhms); change > most {
 			best, most = r, change
 		}
 	}
@@ -69,9 +69,9 @@ func bestReading(sound, wrong *network.Circuit, taken []OhmSeen) OhmReading {
 // end.
 func OhmsText(ohms float64) string { return valueTo(network.Resistor, ohms, 4) }
 
-// readingChange is how far two readings lie apart on a meter: the logarithm of
-// their ratio, an open counting as 10 megohms and a short as 0.1 ohm.
-func readingChange(a, b float64) float64 {
+// ReadingChange is how far two readings in ohms lie apart on a meter: the logarithm
+// of their ratio, 0 or more, an open counting as 10 megohms and a short as 0.1 ohm.
+func ReadingChange(a, b float64) float64 {
 	const shortOhms, openOhms = 0.1, 1e7
 	clamp := func(x float64) float64 { return math.Min(math.Max(x, shortOhms), openOhms) }
 	return math.Abs(math.Log(clamp(a) / clamp(b)))

@@ -15,7 +15,6 @@ import (
 	"padproof/cmd/padproof/internal/proof"
 	"padproof/cmd/padproof/internal/report"
 	"padproof/cmd/padproof/internal/result"
-	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
 	"padproof/cmd/padproof/internal/whole"
 )
@@ -208,14 +207,7 @@ func (f lotFlags) write(ctx context.Context, cmd *cobra.Command, l *result.Lot) 
 
 // open finds the units of a folder and begins the tally.
 func (f lotFlags) open(folder string) ([]*unit.Unit, *lot.Tally, error) {
-	named := &sheet.Lot{}
-	if path := unit.LotSheet(folder); path != "" {
-		var err error
-		if named, err = sheet.ReadLot(path); err != nil {
-			return nil, nil, err
-		}
-	}
-	found, err := unit.OpenLot(folder, named.Channels)
+	found, name, err := lot.Open(folder)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -225,12 +217,6 @@ func (f lotFlags) open(folder string) ([]*unit.Unit, *lot.Tally, error) {
 		}
 		if f.rig != "" {
 			u.RigFile = f.rig
-		}
-	}
-	name := named.Name
-	if name == "" {
-		if full, err := filepath.Abs(folder); err == nil {
-			name = filepath.Base(full)
 		}
 	}
 	tally := lot.NewTally(name)
@@ -266,13 +252,8 @@ func writeLine(w io.Writer, v any) error {
 
 // lotStatus is the exit status of a lot.
 func lotStatus(l *result.Lot) error {
-	switch {
-	case l.NotChecked > 0 || l.Units == 0:
+	if l.Verdict == "" {
 		return exitStatus(exitNoCheck)
-	case l.Failed > 0:
-		return exitStatus(exitFail)
-	case l.Unproven > 0:
-		return exitStatus(exitUnproven)
 	}
-	return nil
+	return statusOf(l.Verdict)
 }

@@ -2,8 +2,10 @@ package main
 
 import (
 	"bytes"
+	"context"
 	"errors"
 	"fmt"
+	"io"
 	"io/fs"
 	"maps"
 	"os"
@@ -15,6 +17,7 @@ import (
 
 	"padproof/cmd/padproof/internal/draw"
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/whole"
 )
 
 // addPlots adds the flag that asks for pictures.
@@ -60,7 +63,11 @@ func writePlots(cmd *cobra.Command, dir string, pictures func() []*draw.Picture)
 		return notWritten(dir, err)
 	}
 	for _, path := range slices.Sorted(maps.Keys(files)) {
-		if err := replaceFile(path, files[path]); err != nil {
+		err := whole.Write(context.WithoutCancel(ctx), path, func(w io.Writer) error { // one set: too late to end it
+			_, err := w.Write(files[path])
+			return err
+		})
+		if err != nil {
 			return notWritten(path, err)
 		}
 	}
@@ -74,18 +81,4 @@ func notWritten(path string, err error) error {
 		err = inPath.Err
 	}
 	return &result.Error{File: path, Text: "could not be written: " + err.Error(), Hint: "name with --plots a folder that you may write to, on a disk with room"}
-}
-
-// replaceFile writes a file beside its place and moves it there once it is whole.
-func replaceFile(path string, data []byte) error {
-	part := path + ".part"
-	if err := os.WriteFile(part, data, 0o666); err != nil {
-		os.Remove(part)
-		return err
-	}
-	if err := os.Rename(part, path); err != nil {
-		os.Remove(part)
-		return err
-	}
-	return nil
 }

@@ -59,7 +59,7 @@ func bestReading(faults []hypothesis) (best compare.OhmReading, most float64) {
 	for _, r := range compare.Readings(faults[0].sound) {
 		least := math.Log(plainFactor)
 		for _, h := range faults {
-			least = math.Min(least, apart(r.On(h.sound), r.On(h.faulty)))
+			least = math.Min(least, compare.ReadingChange(r.On(h.sound), r.On(h.faulty)))
 		}
 		if least > most {
 			best, most = r, least
@@ -90,13 +90,6 @@ func otherLeg(r compare.OhmReading, balanced bool) string {
 	}
 	mirror := strings.NewReplacer(".hot", ".cold", ".cold", ".hot")
 	return mirror.Replace(r.PinA) + " to " + mirror.Replace(r.PinB)
-}
-
-// apart is how far two readings lie apart on a meter, as the logarithm of their ratio: an open counts
-// as 10 megohms, a short as 0.1 ohm.
-func apart(a, b float64) float64 {
-	clamp := func(x float64) float64 { return math.Min(math.Max(x, 0.1), 1e7) }
-	return math.Abs(math.Log(clamp(a) / clamp(b)))
 }
 
 // ohmsRange prints readings, lowest to highest.

@@ -1,7 +1,6 @@
 package draw
 
 import (
-	"strconv"
 	"strings"
 
 	"gonum.org/v1/plot/vg"
@@ -191,17 +190,10 @@ func (h hand) wrapAll(texts []string, width vg.Length) []string {
 	return lines
 }
 
-// ohms writes a resistance to three digits, as the trade does: 330 Ω, 10 kΩ.
+// ohms writes a resistance to three digits; beyond a gigohm it is as good as open.
 func ohms(n result.Number) string {
-	digits := func(v float64) string { return strconv.FormatFloat(v, 'g', 3, 64) }
-	switch v := float64(n); {
-	case !n.OK() || v < 0 || v >= 999.5e6:
+	if n < 0 || n >= 999.5e6 {
 		return "open"
-	case v >= 999.5e3:
-		return digits(v/1e6) + " MΩ"
-	case v >= 999.5:
-		return digits(v/1e3) + " kΩ"
-	default:
-		return digits(v) + " Ω"
 	}
+	return n.Ohms(3)
 }

@@ -63,23 +63,9 @@ func largest(n, u result.Number) string {
 	return text + " at the most"
 }
 
-func places(u result.Number) int {
-	if !u.OK() || u <= 0 {
-		return 3
-	}
-	return max(0, min(3, 1-int(math.Floor(math.Log10(float64(u))))))
-}
+func places(u result.Number) int { return result.Places(u) }
 
-func fixed(n result.Number, places int) string {
-	if !n.OK() {
-		return "not known"
-	}
-	text := strconv.FormatFloat(float64(n), 'f', places, 64)
-	if strings.Trim(text, "-0.") == "" {
-		text = strings.TrimPrefix(text, "-")
-	}
-	return text
-}
+func fixed(n result.Number, places int) string { return n.Fixed(places, "not known") }
 
 // give writes a number with as many digits as it was set with.
 func give(n result.Number) string { return strconv.FormatFloat(float64(n), 'g', 6, 64) }

@@ -2,6 +2,7 @@ package ledger
 
 import (
 	"context"
+	"database/sql/driver"
 	"errors"
 	"io"
 	"net"
@@ -33,7 +34,7 @@ func (p *postgres) explain(err error) error {
 func isAway(err error) bool {
 	var connect *pgconn.ConnectError
 	var network net.Error
-	return errors.As(err, &connect) || errors.As(err, &network) || errors.Is(err, io.EOF) ||
+	return errors.As(err, &connect) || errors.As(err, &network) || errors.Is(err, io.EOF) || errors.Is(err, driver.ErrBadConn) ||
 		errors.Is(err, io.ErrUnexpectedEOF) || errors.Is(err, net.ErrClosed) || errors.Is(err, context.DeadlineExceeded) ||
 		errors.Is(err, syscall.ECONNRESET) || errors.Is(err, syscall.EPIPE) || strings.Contains(err.Error(), "conn closed")
 }

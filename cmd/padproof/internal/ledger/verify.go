@@ -96,8 +96,8 @@ func (l *Ledger) verifyStation(ctx context.Context, station string, v *Verificat
 			return w.last, l.engine.explain(err)
 		}
 		w.step(r, text)
-		if _, asked := wanted[hashOf(text)]; asked {
-			wanted[hashOf(text)] = true
+		if _, asked := wanted[w.last.Hash]; asked {
+			wanted[w.last.Hash] = true
 		}
 	}
 	return w.last, l.engine.explain(rows.Err())

@@ -1,7 +1,9 @@
 package lot
 
 import (
+	"fmt"
 	"math"
+	"slices"
 
 	"padproof/cmd/padproof/internal/result"
 	"padproof/compare"
@@ -12,9 +14,11 @@ import (
 // rules is the book of run rules that a lot's chart is read by.
 const rules = lotstat.WesternElectric
 
-// Lot works out what the units show together.
+// Lot works out what the units show together. Figures that make no statistics are
+// named in the warnings, and cost the lot nothing else.
 func (t *Tally) Lot() (*result.Lot, error) {
 	lot := t.lot
+	lot.Warnings = slices.Clip(lot.Warnings)
 	yield, err := lotstat.YieldOf(lot.Passed, lot.Units, compare.Coverage)
 	if err != nil {
 		return nil, err
@@ -26,12 +30,15 @@ func (t *Tally) Lot() (*result.Lot, error) {
 		for _, f := range g.figures {
 			one, err := f.statistics()
 			if err != nil {
-				return nil, err
+				lot.Warnings = append(lot.Warnings, fmt.Sprintf("%s of %s has no statistics: %v", f.name, g.pad, err))
+				continue
 			}
 			d.Figures = append(d.Figures, one)
 		}
-		if d.Says, err = g.says(); err != nil {
-			return nil, err
+		if says, err := g.says(); err != nil {
+			lot.Warnings = append(lot.Warnings, fmt.Sprintf("what the losses of %s mean together cannot be told: %v", g.pad, err))
+		} else {
+			d.Says = says
 		}
 		lot.Drawings = append(lot.Drawings, d)
 	}

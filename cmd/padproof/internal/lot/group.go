@@ -33,7 +33,7 @@ func (g *group) add(c result.Check, a *result.Answer, o Outcome) {
 	i := slices.IndexFunc(g.figures, func(f *figure) bool { return f.name == c.Name })
 	if i < 0 {
 		i = len(g.figures)
-		g.figures = append(g.figures, &figure{name: c.Name, unit: c.Unit, limit: limitOf(c), expected: float64(c.Expected)})
+		g.figures = append(g.figures, &figure{name: c.Name, unit: c.Unit, limit: LimitOf(c), expected: float64(c.Expected)})
 	}
 	f := g.figures[i]
 	f.units, f.values = append(f.units, a.Unit), append(f.values, float64(c.Measured))
@@ -46,8 +46,8 @@ func (g *group) add(c result.Check, a *result.Answer, o Outcome) {
 	}
 }
 
-// limitOf is the limit of a check; an end that is not set is infinite.
-func limitOf(c result.Check) compare.Limit {
+// LimitOf is the limit of a check; an end that is not set is infinite.
+func LimitOf(c result.Check) compare.Limit {
 	limit := compare.NoLimit()
 	if c.Low.OK() {
 		limit.Low = float64(c.Low)

@@ -23,7 +23,9 @@ const ahead = 64
 
 // Run checks units, so many at a time, and hands each outcome to each, in the
 // order of the units and one at a time. An error of each ends the run, and so
-// does the end of ctx; units that are being checked then are finished and dropped.
+// does the end of ctx; units that are being checked then are dropped. No goroutine
+// is left when it returns. Where o.Err is nil, the end of ctx ends the reading of
+// takes as well, so that long ones keep nobody waiting.
 func Run(ctx context.Context, units []*unit.Unit, workers int, o proof.Options, each func(Outcome) error) error {
 	if o.Shared == nil {
 		o.Shared = &proof.Shared{}
@@ -32,6 +34,9 @@ func Run(ctx context.Context, units []*unit.Unit, workers int, o proof.Options, 
 	o.Workers = max(1, 2/workers)
 	ctx, stop := context.WithCancel(ctx)
 	defer stop()
+	if o.Err == nil {
+		o.Err = ctx.Err
+	}
 	slots := make([]chan Outcome, len(units))
 	for i := range slots {
 		slots[i] = make(chan Outcome, 1)
@@ -69,6 +74,9 @@ func Run(ctx context.Context, units []*unit.Unit, workers int, o proof.Options, 
 				return ctx.Err()
 			}
 			<-room
+			if err := ctx.Err(); err != nil {
+				return err // the unit may have been dropped half-way
+			}
 			if err := each(done); err != nil {
 				return err
 			}

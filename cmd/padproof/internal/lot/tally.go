@@ -81,7 +81,8 @@ func (t *Tally) fill(row *result.LotRow, o Outcome) {
 		row.Checks = append(row.Checks, result.LotCheck{Name: c.Name, Verdict: c.Verdict, Measured: c.Measured, Uncertainty: c.Uncertainty})
 	}
 	if len(a.Suspects) > 0 {
-		row.Suspect, row.Weight = a.Suspects[0].Fault, &a.Suspects[0].Weight
+		weight := a.Suspects[0].Weight // a copy: the row must not keep the answer
+		row.Suspect, row.Weight = a.Suspects[0].Fault, &weight
 	}
 	for _, take := range a.Captures {
 		for _, p := range take.Problems {

@@ -169,7 +169,7 @@ func (c *check) humSources(tone *take, noiseRole string, gainDB float64) (compar
 		s.Noise = compare.HumReading{Hum: t.noise.Hum, FullScaleDBu: c.found.noiseDBu}
 	}
 	if s.Noise.Hum == nil && tone.placed != nil {
-		hum, err := recall(c.takes.shared, tone.key(fmt.Sprint("silence", c.Sheet.MainsHz)), func() (*analysis.Hum, error) {
+		hum, err := recall(c.takes.shared, tone, fmt.Sprint("silence", c.Sheet.MainsHz), func() (*analysis.Hum, error) {
 			return silenceHum(tone, c.Sheet.MainsHz)
 		})
 		if err != nil {

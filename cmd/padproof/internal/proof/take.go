@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io/fs"
 	"math"
+	"os"
 
 	"padproof/analysis"
 	"padproof/capture"
@@ -18,6 +19,7 @@ type take struct {
 	role      string
 	path      string
 	inherited bool // it serves other units too
+	stamp     stamp
 	file      *capture.Take
 	facts     capture.Facts
 	channel   int
@@ -34,7 +36,17 @@ type take struct {
 	problems  []compare.Problem
 }
 
+// A stamp tells a file from one recorded anew in its place; it is zero where the
+// file was not seen.
+type stamp struct{ bytes, atNanos int64 }
+
+// openTake opens a take. Its stamp is taken first: a file that is replaced
+// meanwhile gets the stamp of the old one, which no later unit sees.
 func openTake(role, path string) (*take, error) {
+	var at stamp
+	if info, err := os.Stat(path); err == nil {
+		at = stamp{info.Size(), info.ModTime().UnixNano()}
+	}
 	file, err := capture.Open(path)
 	if errors.Is(err, fs.ErrNotExist) {
 		return nil, &result.Error{File: path, Text: "no such file", Hint: "look at the spelling of the path"}
@@ -42,7 +54,7 @@ func openTake(role, path string) (*take, error) {
 	if err != nil {
 		return nil, err
 	}
-	t := &take{role: role, path: path, file: file, facts: file.Facts()}
+	t := &take{role: role, path: path, stamp: at, file: file, facts: file.Facts()}
 	for _, p := range t.facts.Problems {
 		t.problems = append(t.problems, compare.Problem{Name: p.Problem, AtSec: p.AtSec, Text: p.Text})
 	}

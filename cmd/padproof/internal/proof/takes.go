@@ -179,7 +179,7 @@ func (ts *takes) settleFirst(channel int, matchDB float64) (*take, error) {
 		}
 		t.use(1)
 		if t.facts.Channels >= 2 {
-			other := &take{role: role, path: t.path, file: t.file, facts: t.facts}
+			other := &take{role: role, path: t.path, inherited: t.inherited, stamp: t.stamp, file: t.file, facts: t.facts}
 			other.use(2)
 			ts.by[second(role)] = other
 		} else if role == unit.Both {

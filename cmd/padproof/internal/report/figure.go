@@ -11,27 +11,11 @@ import (
 
 const dash = "-"
 
-// decimals is how many places a figure with expanded uncertainty u deserves:
-// two significant digits of u, three places at most for decibels.
-func decimals(u result.Number) int {
-	if !u.OK() || u <= 0 {
-		return 3
-	}
-	places := 1 - int(math.Floor(math.Log10(float64(u))))
-	return max(0, min(3, places))
-}
+// decimals is how many places a figure with expanded uncertainty u deserves.
+func decimals(u result.Number) int { return result.Places(u) }
 
 // fixed prints a figure with the given places, a dash where there is none.
-func fixed(n result.Number, places int) string {
-	if !n.OK() {
-		return dash
-	}
-	text := strconv.FormatFloat(float64(n), 'f', places, 64)
-	if strings.Trim(text, "-0.") == "" {
-		text = strings.TrimPrefix(text, "-")
-	}
-	return text
-}
+func fixed(n result.Number, places int) string { return n.Fixed(places, dash) }
 
 // doubt prints an uncertainty; one that is there never looks like none.
 func doubt(u result.Number, places int) string {
@@ -60,42 +44,17 @@ func limits(c result.Check, places int) string {
 	return dash
 }
 
-// ohms prints a resistance as the trade writes it: 4.7 Ω, 330 Ω, 10 kΩ.
-func ohms(n result.Number) string { return ohmsTo(n, 3) }
+// ohms prints a resistance to three digits.
+func ohms(n result.Number) string { return n.Ohms(3) }
 
 // metered prints a resistance as a meter of four digits shows it.
-func metered(n result.Number) string { return ohmsTo(n, 4) }
-
-func ohmsTo(n result.Number, digits int) string {
-	v := float64(n)
-	just := 1 - 0.5*math.Pow(10, -float64(digits)) // rounds up to the next prefix
-	switch {
-	case math.IsNaN(v) || math.IsInf(v, 0):
-		return "open"
-	case v >= just*1e6:
-		return toDigits(v/1e6, digits) + " MΩ"
-	case v >= just*1e3:
-		return toDigits(v/1e3, digits) + " kΩ"
-	}
-	return toDigits(v, digits) + " Ω"
-}
+func metered(n result.Number) string { return n.Ohms(4) }
 
 // significant prints three significant digits.
 func significant(v float64) string { return toDigits(v, 3) }
 
-// toDigits prints so many significant digits, all that stand before the point,
-// and no zeros at the end.
-func toDigits(v float64, digits int) string {
-	if v == 0 {
-		return "0"
-	}
-	places := max(0, digits-1-int(math.Floor(math.Log10(math.Abs(v)))))
-	text := strconv.FormatFloat(v, 'f', places, 64)
-	if strings.Contains(text, ".") {
-		text = strings.TrimRight(strings.TrimRight(text, "0"), ".")
-	}
-	return text
-}
+// toDigits prints so many significant digits.
+func toDigits(v float64, digits int) string { return result.Digits(v, digits) }
 
 // scaled prints a value with the SI prefix that suits it.
 func scaled(n result.Number, unit string) string {

@@ -12,7 +12,8 @@ import (
 // LotCSV writes a lot as a table (RFC 4180): a line a unit; of each check that any
 // unit has, its verdict, the figure and its expanded uncertainty, in the checks'
 // own order. Figures are those of the JSON, with all their digits; what there is none
-// of is empty; a decimal has a point.
+// of is empty; a decimal has a point; a name that a spreadsheet would take for a
+// formula has an apostrophe before it.
 func LotCSV(w io.Writer, l *result.Lot) error {
 	names := checkNames(l)
 	head := []string{"unit", "verdict"}
@@ -34,7 +35,7 @@ func LotCSV(w io.Writer, l *result.Lot) error {
 }
 
 func lotCSVRow(r result.LotRow, names []string, simulated bool) []string {
-	row := []string{r.Unit, r.Verdict}
+	row := []string{noFormula(r.Unit), r.Verdict}
 	for _, n := range names {
 		cells := []string{"", "", ""}
 		for _, c := range r.Checks {
@@ -48,7 +49,7 @@ func lotCSVRow(r result.LotRow, names []string, simulated bool) []string {
 	if r.Error != nil {
 		failure = r.Error.Error()
 	}
-	return append(row, r.Suspect, csvNumber(r.Weight), strings.Join(r.Problems, "; "), r.Reason, failure, strconv.FormatBool(simulated))
+	return append(row, noFormula(r.Suspect), csvNumber(r.Weight), strings.Join(r.Problems, "; "), noFormula(r.Reason), noFormula(failure), strconv.FormatBool(simulated))
 }
 
 func csvNumber(n *result.Number) string {
@@ -61,7 +62,7 @@ func csvNumber(n *result.Number) string {
 // checkNames are the checks that any unit has, in the order in which they are made.
 func checkNames(l *result.Lot) []string {
 	var names []string
-	for _, n := range []string{"loss", "response", "flatness", "noise", "noise-level", "polarity", "distortion", "hum", "legs", "steadiness", "bypass"} {
+	for _, n := range exportedChecks {
 		for _, r := range l.Rows {
 			if hasCheck(r, n) {
 				names = append(names, n)

@@ -90,7 +90,7 @@ func lotViewOf(l *result.Lot, info LotPageInfo) (*lotView, error) {
 	if l.Simulated {
 		v.Title = "SIMULATED - " + v.Title
 	}
-	v.Why, v.Facts = lotCounts(l), lotFacts(l)
+	v.Why, v.Facts, v.InLedger = lotCounts(l), lotFacts(l), recordedFacts(l.Recorded, nil)
 	for i, d := range l.Drawings {
 		g := lotGroup{ID: strconv.Itoa(i), Pad: d.Pad, Tables: lotTables(at("/drawings", i)+"/figures", d.Figures)}
 		for _, s := range d.Says {

@@ -25,7 +25,7 @@ func ohmReadings(p *page, r *result.Prediction) {
 			band = metered(o.Low) + " to " + metered(o.High)
 		}
 		if o.Meter.OK() {
-			meter = "±" + ohmsTo(o.Meter, 2)
+			meter = "±" + o.Meter.Ohms(2)
 		}
 		rows = append(rows, []string{strings.Join(o.Pins, " to "), joinedPins(o.Joined), metered(o.Ohms), band, meter})
 	}

@@ -3,6 +3,8 @@ package report
 import (
 	"fmt"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"padproof/cmd/padproof/internal/result"
 )
@@ -68,17 +70,15 @@ func predicted(s result.Suspect) string {
 }
 
 // lower takes a text into a sentence.
-func lower(text string) string {
-	if text == "" {
-		return text
-	}
-	return strings.ToLower(text[:1]) + text[1:]
-}
+func lower(text string) string { return withFirst(text, unicode.ToLower) }
 
 // capital begins a sentence.
-func capital(text string) string {
-	if text == "" {
+func capital(text string) string { return withFirst(text, unicode.ToUpper) }
+
+func withFirst(text string, as func(rune) rune) string {
+	first, size := utf8.DecodeRuneInString(text)
+	if size == 0 {
 		return text
 	}
-	return strings.ToUpper(text[:1]) + text[1:]
+	return string(as(first)) + text[size:]
 }

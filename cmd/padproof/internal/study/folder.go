@@ -57,7 +57,7 @@ func gather(folder string, sheets Sheets) ([]*unit.Unit, map[*unit.Unit]name, []
 			return nil, nil, nil, err
 		}
 		for _, round := range rounds {
-			found, err := openRound(filepath.Join(folder, operator, round))
+			found, _, err := lot.Open(filepath.Join(folder, operator, round))
 			if err != nil {
 				return nil, nil, nil, err
 			}
@@ -74,17 +74,6 @@ func gather(folder string, sheets Sheets) ([]*unit.Unit, map[*unit.Unit]name, []
 			Hint: "each operator has a folder, with a folder for each round inside that is laid out as a lot: anna/1/0417.after.wav"}
 	}
 	return all, names, warnings, nil
-}
-
-func openRound(folder string) (*unit.Lot, error) {
-	named := &sheet.Lot{}
-	if path := unit.LotSheet(folder); path != "" {
-		var err error
-		if named, err = sheet.ReadLot(path); err != nil {
-			return nil, err
-		}
-	}
-	return unit.OpenLot(folder, named.Channels)
 }
 
 // useSheets gives a unit the sheets asked for, or those of the study where its
@@ -184,11 +173,10 @@ func hintOf(err error) string {
 
 // limitOf is the limit of an answer's loss.
 func limitOf(a *result.Answer) compare.Limit {
-	limit := compare.NoLimit()
 	for _, c := range a.Checks {
-		if c.Name == "loss" && c.Low.OK() && c.High.OK() {
-			limit = compare.Limit{Low: float64(c.Low), High: float64(c.High)}
+		if c.Name == "loss" {
+			return lot.LimitOf(c)
 		}
 	}
-	return limit
+	return compare.NoLimit()
 }

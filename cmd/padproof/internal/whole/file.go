@@ -23,19 +23,22 @@ func Write(ctx context.Context, path string, fill func(w io.Writer) error) error
 	if err != nil {
 		return atPath(path, err)
 	}
-	err = complete(ctx, part, fill)
-	if err == nil {
+	there := false
+	defer func() {
+		if !there { // fill may have panicked, too
+			_ = os.Remove(part.Name())
+		}
+	}()
+	if err = complete(ctx, part, fill); err == nil {
 		err = os.Rename(part.Name(), path)
 	}
-	if err != nil {
-		os.Remove(part.Name())
-		return atPath(path, err)
-	}
-	return nil
+	there = err == nil
+	return atPath(path, err)
 }
 
 // complete fills and closes the file.
 func complete(ctx context.Context, part *os.File, fill func(w io.Writer) error) error {
+	defer part.Close() // once more does no harm
 	out := bufio.NewWriter(until{ctx, part})
 	err := fill(out)
 	if err == nil {
@@ -77,7 +80,8 @@ func beside(path string) (*os.File, error) {
 	return nil, err
 }
 
-// atPath names the file that was asked for in an error about the one beside it.
+// atPath names the file that was asked for in an error about the one beside it; nil
+// stays nil.
 func atPath(path string, err error) error {
 	var inPath *fs.PathError
 	if errors.As(err, &inPath) {

@@ -87,3 +87,19 @@ func TestWriteNamesTheFileItWasAskedFor(t *testing.T) {
 		t.Errorf("left behind: %v", left)
 	}
 }
+
+// A fault of the program leaves no more behind than a full disk does.
+func TestWritePanics(t *testing.T) {
+	folder := t.TempDir()
+	func() {
+		defer func() {
+			if recover() == nil {
+				t.Error("the panic was swallowed")
+			}
+		}()
+		_ = whole.Write(t.Context(), filepath.Join(folder, "report.html"), func(io.Writer) error { panic("odd") })
+	}()
+	if left, _ := os.ReadDir(folder); len(left) != 0 {
+		t.Errorf("left behind: %v", left)
+	}
+}
