@@ -87,7 +87,9 @@ func (w *watching) endOnce(ctx context.Context, seen *arrival.Seen) error {
 	w.pages.settle(ctx, w, true)
 	w.say("padproof: " + w.count.text())
 	c := w.count
-	status := lotStatus(&result.Lot{Units: seen.Units, NotChecked: c.notChecked, Failed: c.failed, Unproven: c.unproven})
+	found := result.Lot{Units: seen.Units, NotChecked: c.notChecked, Failed: c.failed, Unproven: c.unproven}
+	found.Verdict = found.Worst()
+	status := lotStatus(&found)
 	if text := w.pages.unwritten(); text != "" {
 		w.say(text)
 		return exitStatus(exitNoCheck)

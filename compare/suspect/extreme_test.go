@@ -73,7 +73,11 @@ func anyEvidence(rng *rand.Rand) Evidence {
 		e.Hum = &Hum{UnitDBu: odd(-70), RigDBu: odd(-100), UDB: odd(1)}
 	}
 	for range rng.IntN(3) {
-		r := compare.Readings(e.Circuit)[rng.IntN(5)]
+		all := compare.Readings(e.Circuit)
+		if len(all) == 0 {
+			break
+		}
+		r := all[rng.IntN(len(all))]
 		e.Ohms = append(e.Ohms, Ohms{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined, Ohms: odd(330, 1), TolFrac: odd(0.005), PlusOhms: odd(0.2)})
 	}
 	return e

@@ -24,7 +24,7 @@ func (t *Tally) Lot() (*result.Lot, error) {
 		return nil, err
 	}
 	lot.Yield = result.Share{Value: result.Number(yield.Frac), Low: result.Number(yield.Interval.Low), High: result.Number(yield.Interval.High)}
-	lot.Verdict = worst(lot)
+	lot.Verdict = lot.Worst()
 	for _, g := range t.groups {
 		d := result.LotDrawing{Pad: g.pad, Rig: g.rig, Units: len(g.rows), Figures: []result.LotFigure{}, Says: []string{}}
 		for _, f := range g.figures {
@@ -43,19 +43,6 @@ func (t *Tally) Lot() (*result.Lot, error) {
 		lot.Drawings = append(lot.Drawings, d)
 	}
 	return &lot, nil
-}
-
-// worst is the verdict of the worst unit.
-func worst(l result.Lot) string {
-	switch {
-	case l.NotChecked > 0 || l.Units == 0:
-		return ""
-	case l.Failed > 0:
-		return string(compare.Fail)
-	case l.Unproven > 0:
-		return string(compare.Unproven)
-	}
-	return string(compare.Pass)
 }
 
 // charted are the checks that a process makes and that spread like one.

@@ -24,6 +24,20 @@ type Lot struct {
 	Recorded *Recorded    `json:"recorded,omitempty"` // the last record of the lot, where it was recorded
 }
 
+// Worst is the verdict of the worst unit, by the counts; "" where one could not be
+// checked or there is none.
+func (l *Lot) Worst() string {
+	switch {
+	case l.NotChecked > 0 || l.Units == 0:
+		return ""
+	case l.Failed > 0:
+		return "FAIL"
+	case l.Unproven > 0:
+		return "UNPROVEN"
+	}
+	return "PASS"
+}
+
 // A Share is a part of a whole, with its 95 % interval: 0 to 1.
 type Share struct {
 	Value Number `json:"value"`
