@@ -165,18 +165,33 @@ func (c *confirmer) confirm(g group, all []class, first bool) Confirm {
 	}
 	r := c.readings[i]
 	r.GoodOhms, r.WrongOhms = c.sound.reads[i].ohms, suspect.reads[i].ohms
-	return Confirm{Reading: r, NextOhms: c.next(g, others, i)}
+	confirm := Confirm{Reading: r, NextOhms: math.NaN()}
+	if next, ok := nextOf(g, others); ok {
+		confirm.Next, confirm.NextOhms = next.first().fault, c.candidate(next).reads[i].ohms
+	}
+	return confirm
+}
+
+// Tells reports whether the reading parts the suspect or the next one from a sound unit, on a meter of
+// the usual doubt: nothing but the wiring shows of a capacitor, and nothing of the bench.
+func (c Confirm) Tells() bool {
+	return c.Reading.PinA != "" && (c.shows(c.Reading.WrongOhms) || !math.IsNaN(c.NextOhms) && c.shows(c.NextOhms))
+}
+
+func (c Confirm) shows(ohms float64) bool {
+	o := ohmsOf(c.Reading)
+	return math.Abs(o.scale(ohms)-o.scale(c.Reading.GoodOhms)) > 2*o.TolFrac
 }
 
 const mostCandidates = 12
 
-// next is what a reading gives with the next suspect: the next of the group, or of the others.
-func (c *confirmer) next(g group, others []class, i int) float64 {
+// nextOf is the next of a group, or of the others.
+func nextOf(g group, others []class) (class, bool) {
 	switch {
 	case len(g.classes) > 1:
-		return c.candidate(g.classes[1]).reads[i].ohms
+		return g.classes[1], true
 	case len(others) > 0:
-		return c.candidate(others[0]).reads[i].ohms
+		return others[0], true
 	}
-	return math.NaN()
+	return class{}, false
 }

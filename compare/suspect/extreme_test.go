@@ -73,7 +73,8 @@ func anyEvidence(rng *rand.Rand) Evidence {
 		e.Hum = &Hum{UnitDBu: odd(-70), RigDBu: odd(-100), UDB: odd(1)}
 	}
 	for range rng.IntN(3) {
-		r := compare.Readings(e.Circuit)[rng.IntN(5)]
+		readings := compare.Readings(e.Circuit)
+		r := readings[rng.IntN(len(readings))]
 		e.Ohms = append(e.Ohms, Ohms{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined, Ohms: odd(330, 1), TolFrac: odd(0.005), PlusOhms: odd(0.2)})
 	}
 	return e
