@@ -30,9 +30,22 @@ type confirmer struct {
 }
 
 func (s *search) newConfirmer(soundWeight float64) *confirmer {
-	c := &confirmer{search: s, readings: compare.Readings(s.e.Circuit)}
+	c := &confirmer{search: s}
+	for _, r := range compare.Readings(s.e.Circuit) {
+		if !s.read(r) {
+			c.readings = append(c.readings, r)
+		}
+	}
 	c.sound = candidate{weight: soundWeight, reads: c.readsOf(s.e.Circuit, "", 0)}
 	return c
+}
+
+// read tells whether a reading was taken: taken again it says no more.
+func (s *search) read(r compare.OhmReading) bool {
+	at := compare.OhmSeen{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined}
+	return slices.ContainsFunc(s.e.Ohms, func(o Ohms) bool {
+		return at.Same(s.e.Circuit, compare.OhmSeen{PinA: o.PinA, PinB: o.PinB, Joined: o.Joined})
+	})
 }
 
 // readsOf are the readings of a circuit; drifting is a part whose amount is in doubt.

@@ -32,8 +32,8 @@ type Suspect struct {
 	Confirm Confirm
 }
 
-// A Confirm is the reading of an ohmmeter, unit unplugged, that best parts a suspect from a sound
-// unit and from the other suspects.
+// A Confirm is the reading of an ohmmeter, unit unplugged, of those not taken yet, that best parts a
+// suspect from a sound unit and from the other suspects.
 type Confirm struct {
 	Reading  compare.OhmReading // PinA is empty where no reading tells anything
 	NextOhms float64            // what it reads with Next; NaN where there is none

@@ -13,14 +13,18 @@ import (
 )
 
 // confirmOf is the reading that tells a suspect, in the form of the result, and what
-// shows the faults that no ohmmeter does.
-func confirmOf(s suspect.Suspect, circuit *network.Circuit) result.Confirm {
+// shows the faults that no ohmmeter does. Some reading may have been taken already.
+func confirmOf(s suspect.Suspect, circuit *network.Circuit, anyTaken bool) result.Confirm {
 	c := s.Confirm
 	r := c.Reading
 	one := result.Confirm{Pins: []string{}, Joined: []string{}, GoodOhms: result.Missing, FaultOhms: result.Missing}
 	otherwise := withoutOhmmeter(s.Faults, circuit)
 	if !c.Tells() {
-		how := append([]string{"no reading between the pins tells this from a sound unit"}, otherwise...)
+		none := "no reading between the pins tells this from a sound unit"
+		if anyTaken {
+			none = "no further reading between the pins tells more"
+		}
+		how := append([]string{none}, otherwise...)
 		one.How = strings.Join(how, "; ")
 		return one
 	}

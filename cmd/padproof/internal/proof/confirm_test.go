@@ -48,7 +48,7 @@ func TestConfirmNamesWhatShowsIt(t *testing.T) {
 			t.Errorf("%s: the first suspect is not it: %+v", tt.fault, all)
 			continue
 		}
-		if got := confirmOf(all[0], sound); (len(got.Pins) == 2) != tt.pins || !strings.Contains(got.How, tt.says) {
+		if got := confirmOf(all[0], sound, false); (len(got.Pins) == 2) != tt.pins || !strings.Contains(got.How, tt.says) {
 			t.Errorf("%s: pins %q, %q; want pins %v and %q", tt.fault, got.Pins, got.How, tt.pins, tt.says)
 		}
 	}

@@ -6,7 +6,6 @@ import (
 
 	"padproof/cmd/padproof/internal/result"
 	"padproof/compare"
-	"padproof/compare/network"
 	"padproof/compare/suspect"
 )
 
@@ -32,12 +31,12 @@ func (c *check) seek(verdict compare.Verdict) {
 	c.ranking = &ranking
 	c.answer.Unexplained = result.NumberOf(ranking.NoneWeight)
 	for _, s := range ranking.Suspects {
-		c.answer.Suspects = append(c.answer.Suspects, suspectOf(s, c.Circuit, c.Service != c.Rig.Ends))
+		c.answer.Suspects = append(c.answer.Suspects, c.suspectOf(s))
 	}
 }
 
 // suspectOf is a suspect in the form of the result.
-func suspectOf(s suspect.Suspect, circuit *network.Circuit, carried bool) result.Suspect {
+func (c *check) suspectOf(s suspect.Suspect) result.Suspect {
 	var names []string
 	one := result.Suspect{Weight: result.Number(s.Weight), Parts: []string{}, Predicted: map[string]result.Number{}}
 	for _, f := range s.Faults {
@@ -49,7 +48,7 @@ func suspectOf(s suspect.Suspect, circuit *network.Circuit, carried bool) result
 		one.Parts = []string{}
 	}
 	one.Predicted["loss_db"] = result.Number(s.BenchLossDB)
-	if carried {
+	if c.Service != c.Rig.Ends {
 		one.Predicted["service_loss_db"] = result.Number(s.ServiceLossDB)
 	}
 	if !math.IsNaN(s.LegsOverDB) {
@@ -58,6 +57,6 @@ func suspectOf(s suspect.Suspect, circuit *network.Circuit, carried bool) result
 	if !math.IsNaN(s.DriftFrac) {
 		one.ByPercent, one.ByPercentU = result.NumberOf(100*s.DriftFrac), result.NumberOf(200*s.DriftStdU)
 	}
-	one.Confirm = confirmOf(s, circuit)
+	one.Confirm = confirmOf(s, c.Circuit, len(c.answer.Ohms) > 0)
 	return one
 }
