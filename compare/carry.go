@@ -96,12 +96,7 @@ type fitting struct {
 // then for one with a wrong part too.
 func (k LossCase) valuesThatFit(index int, benchDB, uDB, believedDB float64) []fitting {
 	part := k.Circuit.Parts()[index]
-	own := uncertainty.Budget{Terms: k.Reading.Terms}.CombinedU()
-	factor := 2.0
-	if drawn := math.Hypot(own, k.Rig.cornerDB(k.Circuit, k.Reading.FreqHz)/math.Sqrt(3)); drawn > 0 && uDB > 2*drawn {
-		factor = uDB / drawn // few degrees of freedom
-	}
-	w := width{own, factor, believedDB}
+	w := k.widthOf(uDB, believedDB)
 	nominal := uDB + math.Max(believedDB, othersDB(k.Circuit, k.Rig.Ends, k.Reading.FreqHz, index))
 	var fits []fitting
 	read := k.readAllows(part)
@@ -114,6 +109,16 @@ func (k LossCase) valuesThatFit(index int, benchDB, uDB, believedDB float64) []f
 		}
 	}
 	return fits
+}
+
+// widthOf is how far the bench loss may be off.
+func (k LossCase) widthOf(uDB, believedDB float64) width {
+	own := uncertainty.Budget{Terms: k.Reading.Terms}.CombinedU()
+	factor := 2.0
+	if drawn := math.Hypot(own, k.Rig.cornerDB(k.Circuit, k.Reading.FreqHz)/math.Sqrt(3)); drawn > 0 && uDB > 2*drawn {
+		factor = uDB / drawn // few degrees of freedom
+	}
+	return width{own, factor, believedDB}
 }
 
 // A width is what a bench loss may be off by and still be explained.

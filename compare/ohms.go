@@ -65,6 +65,24 @@ func bestReading(sound, wrong *network.Circuit, taken []OhmSeen) OhmReading {
 	return best
 }
 
+// eitherSide is what the reading gives nearest below and above a sound unit's on wrong circuits; NaN
+// where none reads there.
+func (r OhmReading) eitherSide(wrong []*network.Circuit) (belowOhms, aboveOhms float64) {
+	belowOhms, aboveOhms = math.NaN(), math.NaN()
+	if r.PinA == "" {
+		return belowOhms, aboveOhms
+	}
+	for _, c := range wrong {
+		switch ohms := r.On(c); {
+		case ohms < r.GoodOhms && !(ohms <= belowOhms):
+			belowOhms = ohms
+		case ohms > r.GoodOhms && !(ohms >= aboveOhms):
+			aboveOhms = ohms
+		}
+	}
+	return belowOhms, aboveOhms
+}
+
 // OhmsText is a resistance with four digits, as a meter has them, and its unit; "open" where it has no
 // end.
 func OhmsText(ohms float64) string { return valueTo(network.Resistor, ohms, 4) }

@@ -2,6 +2,7 @@ package compare
 
 import (
 	"math"
+	"slices"
 
 	"padproof/compare/network"
 )
@@ -16,6 +17,8 @@ type Unseen struct {
 	WithinDB                    float64 // how closely the bench reading would be the same
 	Read                        int     // how many ohmmeter readings it fits as well
 	Reading                     OhmReading
+	BelowOhms, AboveOhms        float64 // what Reading gives nearest to a sound unit's, either side, where the limit may break; NaN for none
+	Broken                      bool    // every value that fits breaks the limit
 	SourceOhms, LoadOhms        float64 // a bench with these sees what service sees; NaN where the bench's own serves
 }
 
@@ -42,6 +45,12 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 			ServiceLowDB: math.Inf(1), ServiceHighDB: math.Inf(-1), WithinDB: breaking.withinDB,
 			Read: len(k.Ohms), Reading: bestReading(k.Circuit, k.Circuit.With(p.Ref, breaking.value), k.Ohms),
 		}
+		breaks := func(value float64) bool {
+			f, ok := k.fit(i, value, benchDB, k.widthOf(benchUDB, believedDB))
+			return ok && f.mayBreak(p, limit)
+		}
+		u.BelowOhms, u.AboveOhms = u.Reading.eitherSide(breakingCircuits(k.Circuit, fits, p, limit, breaks))
+		u.Broken = !slices.ContainsFunc(fits, func(f fitting) bool { return f.mayKeep(limit) })
 		for _, f := range fits {
 			u.ServiceLowDB, u.ServiceHighDB = math.Min(u.ServiceLowDB, f.carriedDB), math.Max(u.ServiceHighDB, f.carriedDB)
 		}
@@ -56,8 +65,7 @@ func FindUnseen(k LossCase, benchDB, benchUDB float64, limit Limit) []Unseen {
 func nearestBreaking(fits []fitting, p network.Part, limit Limit) (best fitting, found bool) {
 	least := math.Inf(1)
 	for _, f := range fits {
-		if math.Abs(f.value-p.Value) <= p.TolFrac*p.Value*(1+1e-9) ||
-			limit.Holds(f.carriedDB-f.carriedUDB) && limit.Holds(f.carriedDB+f.carriedUDB) {
+		if !f.mayBreak(p, limit) {
 			continue
 		}
 		far := math.Abs(math.Log(f.value / p.Value)) // 0, open and a nominal link are all far
@@ -66,6 +74,55 @@ func nearestBreaking(fits []fitting, p network.Part, limit Limit) (best fitting,
 		}
 	}
 	return best, found
+}
+
+// mayBreak reports whether the limit may break at a value outside a part's tolerance.
+func (f fitting) mayBreak(p network.Part, limit Limit) bool {
+	within := math.Abs(f.value-p.Value) <= p.TolFrac*p.Value*(1+1e-9)
+	return !within && !(limit.Holds(f.carriedDB-f.carriedUDB) && limit.Holds(f.carriedDB+f.carriedUDB))
+}
+
+// mayKeep reports whether the limit may hold at a value.
+func (f fitting) mayKeep(limit Limit) bool {
+	return f.carriedDB+f.carriedUDB >= limit.Low && f.carriedDB-f.carriedUDB <= limit.High
+}
+
+// breakingCircuits are the drawing with a part at the values nearest the drawn one, either side, at
+// which the limit may break. The values tried lie some way apart, so that the last step towards the
+// drawn one is halved again and again.
+func breakingCircuits(c *network.Circuit, fits []fitting, p network.Part, limit Limit, breaks func(value float64) bool) []*network.Circuit {
+	var all []*network.Circuit
+	for _, side := range []float64{-1, 1} {
+		nearest, found := 0.0, false
+		for _, f := range fits {
+			nearer := !found || side*(nearest-f.value) > 0
+			if side*(f.value-p.Value) > 0 && nearer && f.mayBreak(p, limit) {
+				nearest, found = f.value, true
+			}
+		}
+		if !found {
+			continue
+		}
+		kept := p.Value * (1 + side*p.TolFrac)
+		if kept > 0 && nearest > 0 && !math.IsInf(nearest, 1) {
+			nearest = edge(kept, nearest, breaks)
+		}
+		all = append(all, c.With(p.Ref, nearest))
+	}
+	return all
+}
+
+// edge closes in on the first of the values from kept to broken at which the limit breaks.
+func edge(kept, broken float64, breaks func(value float64) bool) float64 {
+	for range 12 {
+		middle := math.Sqrt(kept * broken)
+		if breaks(middle) {
+			broken = middle
+		} else {
+			kept = middle
+		}
+	}
+	return broken
 }
 
 // betterEnds are the service's source, load or both: the least change of the
@@ -91,6 +148,8 @@ func (k LossCase) unseenSwaps(benchDB, benchUDB, believedDB float64, limit Limit
 	var all []Unseen
 	for _, w := range k.swapsThatFit(benchDB, benchUDB, believedDB) {
 		over := carryOver(w.circuit, k.Rig.Ends, k.Service, k.Reading.FreqHz, doubtsOf(w.circuit))
+		reading := bestReading(k.Circuit, w.circuit, k.Ohms)
+		below, above := reading.eitherSide([]*network.Circuit{w.circuit})
 		service := w.serviceDB + over.beta*(benchDB-w.benchDB)
 		doubt := math.Hypot(1.96*over.leftDB, over.beta*benchUDB)
 		if limit.Holds(service-doubt) && limit.Holds(service+doubt) {
@@ -98,7 +157,7 @@ func (k LossCase) unseenSwaps(benchDB, benchUDB, believedDB float64, limit Limit
 		}
 		all = append(all, Unseen{
 			Refs: w.refs, Kind: w.kind, ServiceLowDB: service, ServiceHighDB: service, WithinDB: w.withinDB,
-			Read: len(k.Ohms), Reading: bestReading(k.Circuit, w.circuit, k.Ohms), SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
+			Read: len(k.Ohms), Reading: reading, BelowOhms: below, AboveOhms: above, SourceOhms: k.Service.SourceOhms, LoadOhms: k.Service.LoadOhms,
 		})
 	}
 	return all

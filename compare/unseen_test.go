@@ -134,3 +134,27 @@ func TestRigDoubtCovered(t *testing.T) {
 		}
 	}
 }
+
+// The cold leg of a U between unbalanced ends hardly shows. Every value of it that alone breaks the
+// limit in service lies where the reading is said to break it, not only those tried first.
+func TestReadingsThatBreakTheLimit(t *testing.T) {
+	sound := circuit(t, "U", 0.01, 560, 560, 330)
+	service := network.Ends{SourceOhms: 120, LoadOhms: 2700}
+	limit := PlusMinus(sound.LossDB(service, toneHz), 0.3)
+	rig := Rig{Ends: unbalanced(100, 10000), SourceTolFrac: 0.02, LoadTolFrac: 0.02}
+	k := LossCase{Circuit: sound, Rig: rig, Service: service, Reading: read(sound, rig.Ends, 0.005)}
+	all := FindUnseen(k, k.Reading.LossDB, 0.03, limit)
+	if len(all) != 1 || all[0].Name() != "R2" {
+		t.Fatalf("FindUnseen() = %+v, want R2", all)
+	}
+	u := all[0]
+	if !(u.BelowOhms > 0 && u.BelowOhms < u.Reading.GoodOhms && u.AboveOhms > u.Reading.GoodOhms) {
+		t.Errorf("breaks at %v Ω or less, or %v Ω or more; a sound unit reads %v Ω", u.BelowOhms, u.AboveOhms, u.Reading.GoodOhms)
+	}
+	for ratio := 0.5; ratio < 2; ratio *= 1.01 {
+		wrong := sound.With("R2", 560*ratio)
+		if ohms := u.Reading.On(wrong); !limit.Holds(wrong.LossDB(service, toneHz)) && ohms > u.BelowOhms && ohms < u.AboveOhms {
+			t.Errorf("R2 of %.0f Ω breaks the limit; it reads %.0f Ω, said to keep it from %.0f Ω to %.0f Ω", 560*ratio, ohms, u.BelowOhms, u.AboveOhms)
+		}
+	}
+}

@@ -25,14 +25,36 @@ func (u Unseen) Text() string {
 		fmt.Fprintf(&b, "anything from %s to %s would read the same here within %.2g dB%s, but the loss in service might be %s.",
 			partValue(u.Kind, u.LowValue), partValue(u.Kind, u.HighValue), u.WithinDB, u.alsoRead(), loss)
 	}
+	if u.Broken && u.Read > 0 {
+		return b.String() + " Each breaks the limit: put in what the drawing says, and record again."
+	}
 	if r := u.Reading; r.PinA != "" {
-		fmt.Fprintf(&b, " To settle it, unplug the unit (power, phantom and signal off) and read %s; a sound unit reads %s, one that breaks the limit %s or beyond.",
-			r.How(), partValue(network.Resistor, r.GoodOhms), partValue(network.Resistor, r.WrongOhms))
+		fmt.Fprintf(&b, " To settle it, unplug the unit (power, phantom and signal off) and read %s; a sound unit reads %s, one that may break the limit %s.",
+			r.How(), partValue(network.Resistor, r.GoodOhms), u.wrongOhms())
 	}
 	if ends := u.ends(); ends != "" {
 		fmt.Fprintf(&b, " Or record both takes again with %s on the bench, and say so in rig.toml.", ends)
 	}
 	return b.String()
+}
+
+// wrongOhms is what the reading gives where the limit breaks.
+func (u Unseen) wrongOhms() string {
+	ohms := func(v float64) string { return partValue(network.Resistor, v) }
+	one := func(v float64, or string) string {
+		if len(u.Refs) == 2 || v == 0 || math.IsInf(v, 1) {
+			return ohms(v) // two parts swapped read what they read
+		}
+		return ohms(v) + or
+	}
+	below, above := one(u.BelowOhms, " or less"), one(u.AboveOhms, " or more")
+	switch {
+	case math.IsNaN(u.BelowOhms):
+		return above
+	case math.IsNaN(u.AboveOhms):
+		return below
+	}
+	return below + ", or " + above
 }
 
 // alsoRead says that ohmmeter readings were taken and did not settle it.

@@ -71,6 +71,10 @@ func (c *Circuit) dependence(values []float64, i int, e Ends, omega float64) Bil
 		b.AtInf = b.AtZero
 		return b
 	}
+	if omega == 0 && c.parts[i].Kind != Resistor {
+		b.Knee = cmplx.Inf() // any capacitor is open there and any coil a link, short of one of +Inf
+		return b
+	}
 	low, high := finiteRange(c.parts[i].Kind, omega)
 	x := was
 	if !(x > low && x < high) {

@@ -52,15 +52,21 @@ func between(a, b uint8, kind Kind, value, omega float64) branch {
 		}
 	case Inductor:
 		ohms := omega * value
-		if omega == 0 {
-			ohms = 0 // an infinite inductor too: the direct current has had its time
+		switch {
+		case math.IsInf(value, 1):
+			ohms = value // its wire is broken, for direct current too
+		case omega == 0:
+			ohms = 0
 		}
 		if br.what = kindOfOhms(ohms); br.what == finite {
 			br.y = complex(0, -1/ohms)
 		}
 	case Capacitor:
 		siemens := omega * value
-		if omega == 0 {
+		switch {
+		case math.IsInf(value, 1):
+			siemens = value // shorted, for direct current too
+		case omega == 0:
 			siemens = 0
 		}
 		if br.what = kindOfOhms(1 / siemens); br.what == finite {

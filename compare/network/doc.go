@@ -44,7 +44,8 @@
 // 1 % high lowers the loss by 0.02 dB.
 //
 // A resistor of 0 is a link and one of +Inf is open. At frequency 0 capacitors are
-// open and inductors are links.
+// open and inductors are links; but a capacitor of +Inf is shorted and an inductor of
+// +Inf broken at any frequency.
 //
 // # Limits
 //

@@ -6,7 +6,7 @@ import (
 )
 
 // Ohms returns what an ohmmeter reads between two nodes of the unit alone, everything
-// else open: direct current, so capacitors are open and inductors links. The joined
+// else open: direct current, so capacitors are open, unless shorted, and inductors links, unless broken. The joined
 // pairs are shorted together first, the other end for example:
 //
 //	c.Ohms("in.hot", "in.cold", [2]string{"out.hot", "out.cold"})

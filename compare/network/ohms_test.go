@@ -77,3 +77,28 @@ func joinedTie(toHot, toCold, toScreen float64) float64 {
 	// Between mid.cold and the star's point lie its ray, and beside it the bridge and the ray to mid.hot.
 	return 120 + besideOhms(toCold, 150+220+toHot) + toScreen
 }
+
+// A shorted capacitor and a broken inductor are what they are for direct current too: links and gaps, by
+// series and parallel.
+func TestOhmsOfShortedAndBroken(t *testing.T) {
+	c := mustNew(t, Custom,
+		at("R1", Resistor, 1000, "in.hot", "out.hot"), at("R2", Resistor, 470, "out.hot", "screen"),
+		at("C1", Capacitor, 2.2e-9, "out.hot", "screen"), at("L1", Inductor, 0.01, "in.hot", "x"), at("R3", Resistor, 330, "x", "screen"))
+	for _, tt := range []struct {
+		what string
+		c    *Circuit
+		want float64
+	}{
+		{"sound", c, besideOhms(1470, 330)},
+		{"C1 shorted", c.With("C1", math.Inf(1)), besideOhms(1000, 330)},
+		{"L1 broken", c.With("L1", math.Inf(1)), 1470},
+	} {
+		if got := tt.c.Ohms("in.hot", "screen"); !near(got, tt.want, 1e-9*tt.want) {
+			t.Errorf("%s: in.hot to screen = %v Ω, want %v", tt.what, got, tt.want)
+		}
+	}
+	b := c.Dependence(Ends{SourceOhms: 100, LoadOhms: 10000}, 0, "C1")
+	if got, want := b.At(1e-6), b.At(0); got != want {
+		t.Errorf("transfer at 0 Hz with a capacitor of 1 µF = %v, want %v as without", got, want)
+	}
+}

@@ -26,24 +26,25 @@ func (r reads) open() bool { return r.ohms >= openOhms }
 type confirmer struct {
 	*search
 	readings []compare.OhmReading
-	taken    []bool // of the readings: what was read tells nothing new
 	sound    candidate
 }
 
 func (s *search) newConfirmer(soundWeight float64) *confirmer {
-	c := &confirmer{search: s, readings: compare.Readings(s.e.Circuit)}
-	c.sound = candidate{weight: soundWeight, reads: c.readsOf(s.e.Circuit, "", 0)}
-	for _, r := range c.readings {
-		c.taken = append(c.taken, s.hasRead(r))
+	c := &confirmer{search: s}
+	for _, r := range compare.Readings(s.e.Circuit) {
+		if !s.read(r) {
+			c.readings = append(c.readings, r)
+		}
 	}
+	c.sound = candidate{weight: soundWeight, reads: c.readsOf(s.e.Circuit, "", 0)}
 	return c
 }
 
-// hasRead tells whether a reading was taken.
-func (s *search) hasRead(r compare.OhmReading) bool {
-	one := compare.OhmSeen{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined}
+// read tells whether a reading was taken: taken again it says no more.
+func (s *search) read(r compare.OhmReading) bool {
+	at := compare.OhmSeen{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined}
 	return slices.ContainsFunc(s.e.Ohms, func(o Ohms) bool {
-		return one.Same(s.e.Circuit, compare.OhmSeen{PinA: o.PinA, PinB: o.PinB, Joined: o.Joined})
+		return at.Same(s.e.Circuit, compare.OhmSeen{PinA: o.PinA, PinB: o.PinB, Joined: o.Joined})
 	})
 }
 
@@ -123,9 +124,6 @@ func (c *confirmer) best(all []candidate, suspect candidate) (reading int, ok bo
 	chances := make([]float64, len(c.readings))
 	most := 0.0
 	for i := range c.readings {
-		if c.taken[i] {
-			continue
-		}
 		chances[i] = naming(all, i)
 		if c.readings[i].Joined != [2]string{} {
 			chances[i] -= joining
@@ -134,7 +132,7 @@ func (c *confirmer) best(all []candidate, suspect candidate) (reading int, ok bo
 	}
 	reading, furthest := -1, -1.0
 	for i, chance := range chances {
-		if chance < most-asGood || c.taken[i] {
+		if chance < most-asGood {
 			continue
 		}
 		if far := apart(c.sound.reads[i], suspect.reads[i]); far > furthest {
@@ -180,18 +178,33 @@ func (c *confirmer) confirm(g group, all []class, first bool) Confirm {
 	}
 	r := c.readings[i]
 	r.GoodOhms, r.WrongOhms = c.sound.reads[i].ohms, suspect.reads[i].ohms
-	return Confirm{Reading: r, NextOhms: c.next(g, others, i)}
+	confirm := Confirm{Reading: r, NextOhms: math.NaN()}
+	if next, ok := nextOf(g, others); ok {
+		confirm.Next, confirm.NextOhms = next.first().fault, c.candidate(next).reads[i].ohms
+	}
+	return confirm
+}
+
+// Tells reports whether the reading parts the suspect or the next one from a sound unit, on a meter of
+// the usual doubt: nothing but the wiring shows of a capacitor, and nothing of the bench.
+func (c Confirm) Tells() bool {
+	return c.Reading.PinA != "" && (c.shows(c.Reading.WrongOhms) || !math.IsNaN(c.NextOhms) && c.shows(c.NextOhms))
+}
+
+func (c Confirm) shows(ohms float64) bool {
+	o := ohmsOf(c.Reading)
+	return math.Abs(o.scale(ohms)-o.scale(c.Reading.GoodOhms)) > 2*o.TolFrac
 }
 
 const mostCandidates = 12
 
-// next is what a reading gives with the next suspect: the next of the group, or of the others.
-func (c *confirmer) next(g group, others []class, i int) float64 {
+// nextOf is the next of a group, or of the others.
+func nextOf(g group, others []class) (class, bool) {
 	switch {
 	case len(g.classes) > 1:
-		return c.candidate(g.classes[1]).reads[i].ohms
+		return g.classes[1], true
 	case len(others) > 0:
-		return c.candidate(others[0]).reads[i].ohms
+		return others[0], true
 	}
-	return math.NaN()
+	return class{}, false
 }

@@ -20,10 +20,10 @@
 //
 // Of each part: open, short, ten times, a tenth, either neighbour in E24 (IEC 60063), and a drift by
 // an amount that is not known: log-uniform in the size of the logarithm of its ratio, from 3 % to
-// threefold, up or down. Two parts of one kind that share a node, swapped. A leg open or down to
-// screen at either end, legs crossed, in and out swapped. The bench's source or its load other than
-// stated: log-uniform in the ratio from the tolerance to tenfold, up or down. What leaves every pin as
-// it is, is no fault.
+// threefold, up or down. Two parts of one kind, swapped, that share a node or are of six or
+// fewer. A leg open or down to screen at either end, legs crossed, in and out swapped. The bench's
+// source or its load other than stated: log-uniform in the ratio from the tolerance to tenfold, up or
+// down. What leaves every pin as it is, is no fault.
 //
 // # Score
 //

@@ -19,7 +19,7 @@ func Faults(c *network.Circuit) []Fault {
 	}
 	for i, b := range parts {
 		for _, a := range parts[:i] {
-			if a.Kind == b.Kind && a.Value != b.Value && neighbouring(c, a, b) {
+			if a.Kind == b.Kind && a.Value != b.Value && (len(parts) <= fewParts || neighbouring(c, a, b)) {
 				all = append(all, Fault{Fault: network.Fault{Form: network.PartsSwapped, Ref: a.Ref, Other: b.Ref}})
 			}
 		}
@@ -29,6 +29,10 @@ func Faults(c *network.Circuit) []Fault {
 	}
 	return all
 }
+
+// In a drawing of so few parts any two may have been taken for one another; in a larger one those
+// that share a node. Common practice, no source.
+const fewParts = 6
 
 // partFaults are those of one part.
 func partFaults(p network.Part) []network.Fault {

@@ -33,6 +33,19 @@ func TestFaultsOfAPad(t *testing.T) {
 	}
 }
 
+// The bridge and the shunt of a bridged T share no node, and sit side by side all the same.
+func TestSwapOfFewParts(t *testing.T) {
+	names := func(fs []Fault) (all []string) {
+		for _, f := range fs {
+			all = append(all, f.String())
+		}
+		return all
+	}
+	if got := names(Faults(circuit(t, "bridged-T", 0.01, 600, 600, 1300, 270))); !slices.Contains(got, "R3 and R4 swapped") {
+		t.Errorf("R3 and R4 swapped is not looked for among %q", got)
+	}
+}
+
 // Turned round, a symmetrical T pad is the same pad: that is no fault.
 func TestSameCircuitIsNoFault(t *testing.T) {
 	s := newSearch(Evidence{Circuit: circuit(t, "T", 0.01, 300, 300, 430), Rig: compare.Rig{Ends: network.Ends{SourceOhms: 600, LoadOhms: 600, Drive: network.DriveUnbalanced, Sense: network.SenseUnbalanced}},

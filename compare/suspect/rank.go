@@ -32,11 +32,12 @@ type Suspect struct {
 	Confirm Confirm
 }
 
-// A Confirm is the reading of an ohmmeter, unit unplugged, that best parts a suspect from a sound
-// unit and from the other suspects.
+// A Confirm is the reading of an ohmmeter, unit unplugged, of those not taken yet, that best parts a
+// suspect from a sound unit and from the other suspects.
 type Confirm struct {
 	Reading  compare.OhmReading // PinA is empty where no reading tells anything
-	NextOhms float64            // what it reads with the next suspect; NaN where there is none
+	NextOhms float64            // what it reads with Next; NaN where there is none
+	Next     Fault              // the next of the group, or else the next suspect
 }
 
 // Rank scores every single fault of the drawing against what was measured. A Circuit that is nil, or

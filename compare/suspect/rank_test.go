@@ -248,3 +248,22 @@ func TestLegsBefore(t *testing.T) {
 		t.Errorf("chi-square of the true fault = %v for two figures, without legs-before %v, want under 6, and over twice as much", known, unknown)
 	}
 }
+
+// A reading that was taken is not asked for again.
+func TestReadingNotTakenYet(t *testing.T) {
+	c := circuit(t, "U", 0.01, 560, 560, 330)
+	ends := network.Ends{SourceOhms: 100, LoadOhms: 10000}
+	e := Evidence{Circuit: c, Rig: compare.Rig{Ends: ends}, Loss: []Point{{FreqHz: 997, LossDB: c.With("R3", 370).LossDB(ends, 997), StdUDB: 0.02}}}
+	for range len(compare.Readings(c)) {
+		r := Rank(e).Suspects[0].Confirm.Reading
+		for _, o := range e.Ohms {
+			if o.PinA == r.PinA && o.PinB == r.PinB && o.Joined == r.Joined {
+				t.Fatalf("after %d readings %s is asked for again", len(e.Ohms), r.How())
+			}
+		}
+		e.Ohms = append(e.Ohms, Ohms{PinA: r.PinA, PinB: r.PinB, Joined: r.Joined, Ohms: r.On(c.With("R3", 370))})
+	}
+	if got := Rank(e).Suspects[0].Confirm; got.Reading.PinA != "" || got.Tells() {
+		t.Errorf("with every reading taken %s is asked for", got.Reading.How())
+	}
+}

@@ -39,7 +39,9 @@ READINGS = {
            "out.hot,screen|in.hot,screen"],
     False: ["in.hot,in.cold", "out.hot,out.cold", "in.hot,out.hot", "in.cold,out.cold",
             "in.hot,in.cold|out.hot,out.cold", "out.hot,out.cold|in.hot,in.cold",
-            "in.hot,screen", "in.cold,screen", "out.hot,screen", "out.cold,screen"],
+            "in.hot,screen", "in.cold,screen", "out.hot,screen", "out.cold,screen",
+            "in.hot,screen|out.hot,screen", "in.cold,screen|out.cold,screen",
+            "out.hot,screen|in.hot,screen", "out.cold,screen|in.cold,screen"],
 }
 
 # How often each form comes, one fault of it against one of another.

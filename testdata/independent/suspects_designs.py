@@ -109,7 +109,7 @@ def neighbours(value):
 
 def discrete_faults(d):
     """Every single fault that has no amount, those that change nothing among them."""
-    all_ = []
+    all_, far = [], []
     for p in d.parts:
         all_ += [Fault("open", f"{p.ref} open", p.ref), Fault("short", f"{p.ref} short", p.ref),
                  Fault("x10", f"{p.ref} x10", p.ref), Fault("/10", f"{p.ref} /10", p.ref)]
@@ -117,15 +117,16 @@ def discrete_faults(d):
     for i, p in enumerate(d.parts):
         for j in range(i + 1, len(d.parts)):
             q = d.parts[j]
-            if p.kind == q.kind and {p.a, p.b} & {q.a, q.b}:
-                all_.append(Fault("swap", f"{p.ref} and {q.ref} swapped", p.ref, q.ref))
+            shared = {p.a, p.b} & {q.a, q.b}
+            if p.kind == q.kind and (len(d.parts) <= 6 or shared):
+                (all_ if shared else far).append(Fault("swap", f"{p.ref} and {q.ref} swapped", p.ref, q.ref))
     for end in ("in", "out"):
         for leg in ("hot",) if d.unbalanced else ("hot", "cold"):
             all_ += [Fault("leg", f"{leg} leg open at {end}", pin=f"{end}.{leg}"),
                      Fault("leg", f"{leg} leg to screen at {end}", pin=f"{end}.{leg}")]
     if not d.unbalanced:
         all_.append(Fault("crossed", "legs crossed"))
-    return all_ + [Fault("turned", "in and out swapped")]
+    return all_ + [Fault("turned", "in and out swapped")] + far
 
 
 def build(d, fault, values):

@@ -86,8 +86,11 @@ def ohms():
             cold = ("in.cold", "out.cold") if d.unbalanced else ()
             fold = {**{n: "the-screen" for n in cold}, "screen": "the-screen", b: "screen"} if b != "screen" else \
                 {n: "screen" for n in cold}
+            if joined:      # one node, no link: between floating nodes a link beside the leaks is singular
+                one, other = sorted((fold.get(n, n) for n in joined.split(",")), key=lambda n: n == "screen")
+                fold = {**{n: other if to == one else to for n, to in fold.items()}, one: other}
             net = Netlist(f"m{len(wants)}", fold)
-            for p in parts_of(unit) + ([Part("joined", "R", tuple(joined.split(",")), 0.0)] if joined else []):
+            for p in parts_of(unit):
                 net.part(p.at(p.value or LINK_OHMS))    # a link beside a link would be a loop of sources
             na, nb = net.node(a), net.node(b)
             net.lines.append(f"im{len(wants)} {nb} {na} dc 0 ac 1")

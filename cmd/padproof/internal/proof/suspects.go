@@ -1,7 +1,6 @@
 package proof
 
 import (
-	"fmt"
 	"math"
 	"strings"
 
@@ -32,12 +31,12 @@ func (c *check) seek(verdict compare.Verdict) {
 	c.ranking = &ranking
 	c.answer.Unexplained = result.NumberOf(ranking.NoneWeight)
 	for _, s := range ranking.Suspects {
-		c.answer.Suspects = append(c.answer.Suspects, suspectOf(s, c.Service != c.Rig.Ends))
+		c.answer.Suspects = append(c.answer.Suspects, c.suspectOf(s))
 	}
 }
 
 // suspectOf is a suspect in the form of the result.
-func suspectOf(s suspect.Suspect, carried bool) result.Suspect {
+func (c *check) suspectOf(s suspect.Suspect) result.Suspect {
 	var names []string
 	one := result.Suspect{Weight: result.Number(s.Weight), Parts: []string{}, Predicted: map[string]result.Number{}}
 	for _, f := range s.Faults {
@@ -49,7 +48,7 @@ func suspectOf(s suspect.Suspect, carried bool) result.Suspect {
 		one.Parts = []string{}
 	}
 	one.Predicted["loss_db"] = result.Number(s.BenchLossDB)
-	if carried {
+	if c.Service != c.Rig.Ends {
 		one.Predicted["service_loss_db"] = result.Number(s.ServiceLossDB)
 	}
 	if !math.IsNaN(s.LegsOverDB) {
@@ -58,38 +57,6 @@ func suspectOf(s suspect.Suspect, carried bool) result.Suspect {
 	if !math.IsNaN(s.DriftFrac) {
 		one.ByPercent, one.ByPercentU = result.NumberOf(100*s.DriftFrac), result.NumberOf(200*s.DriftStdU)
 	}
-	one.Confirm = confirmOf(s.Confirm, firstOf(names))
-	return one
-}
-
-// firstOf is the fault that a reading is for, in a sentence.
-func firstOf(names []string) string {
-	if len(names) > 1 {
-		return "the first of these"
-	}
-	return "this fault"
-}
-
-// confirmOf is the reading that tells a suspect, in the form of the result.
-func confirmOf(c suspect.Confirm, name string) result.Confirm {
-	r := c.Reading
-	if r.PinA == "" {
-		return result.Confirm{Pins: []string{}, GoodOhms: result.Missing, FaultOhms: result.Missing,
-			How: "no reading between the pins tells this from a sound unit"}
-	}
-	one := result.Confirm{
-		Pins: []string{r.PinA, r.PinB}, Joined: []string{},
-		GoodOhms: result.Number(r.GoodOhms), FaultOhms: result.Number(r.WrongOhms),
-	}
-	if r.Joined != [2]string{} {
-		one.Joined = r.Joined[:]
-	}
-	if !math.IsNaN(c.NextOhms) {
-		one.NextOhms = result.NumberOf(c.NextOhms)
-	}
-	one.How = fmt.Sprintf("read %s: a sound unit reads %s; with %s %s", r.How(), compare.OhmsText(r.GoodOhms), name, compare.OhmsText(r.WrongOhms))
-	if one.NextOhms != nil {
-		one.How += "; with the next suspect " + compare.OhmsText(c.NextOhms)
-	}
+	one.Confirm = confirmOf(s, c.Circuit, len(c.answer.Ohms) > 0)
 	return one
 }

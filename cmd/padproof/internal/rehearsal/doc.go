@@ -42,7 +42,7 @@
 // the circuit shapes them, within 0.0001 dB. The recorder's own noise comes on top.
 //
 // The circuit is a filter whose taps are the inverse transform of its frequency response,
-// applied by overlap-save (common practice). From 10 Hz to 0.45 of the sample rate it keeps
+// applied by overlap-save (common practice). From 10 Hz to 0.47 of the sample rate it keeps
 // to the response within 0.0005 dB, and far closer unless the drawing settles slowly; above
 // that the phase bends so that it is real at half the rate. It adds no delay.
 //

@@ -13,9 +13,10 @@ const (
 	leastTaps = 1 << 11
 	mostTaps  = 1 << 20
 
-	// The response is kept between these, of the rate above.
+	// The response is kept between these, of the rate above. At 44.1 kHz that must reach past the
+	// last twelfth of an octave below 20 kHz, 20.5 kHz at its upper edge.
 	keptFromHz = 10.0
-	keptToFrac = 0.45
+	keptToFrac = 0.47
 
 	// How far off the response may be, relative: within the first the kernel is long
 	// enough, and with the most taps the second (0.0004 dB) will do. What lies 120 dB under

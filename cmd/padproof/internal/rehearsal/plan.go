@@ -104,9 +104,12 @@ func (p Plan) sec(role string) float64 {
 	return p.steadySec(role) + 2*SilenceSec
 }
 
+// highestToneFrac is how far up a tone may lie, of the sample rate.
+const highestToneFrac = 0.45
+
 // Check returns what is wrong with a plan, or nil.
 func (p Plan) Check() error {
-	highest := keptToFrac * float64(p.RateHz)
+	highest := highestToneFrac * float64(p.RateHz)
 	switch {
 	case p.Pad == nil:
 		return fmt.Errorf("there is no pad to rehearse")

@@ -85,7 +85,7 @@ func confirmFacts(field string, c result.Confirm) []fact {
 	}
 	facts = append(facts, fact{"A sound unit reads", reads("good_ohms", c.GoodOhms)}, fact{"With this fault", reads("fault_ohms", c.FaultOhms)})
 	if c.NextOhms != nil {
-		facts = append(facts, fact{"With the next suspect", reads("next_ohms", *c.NextOhms)})
+		facts = append(facts, fact{"With “" + c.Next + "”", reads("next_ohms", *c.NextOhms)})
 	}
 	return facts
 }

@@ -27,6 +27,9 @@ type pageView struct {
 	Octaves  *table
 	Problems []problemView
 	Suspects []suspectView
+
+	SuspectsHeading, SuspectsRemark string
+
 	NoSingle bool     // none of the suspects explains the figures well
 	None     phrase   // the weight of that
 	Handling []string // cautions before an ohmmeter or a soldering iron goes on
@@ -112,6 +115,7 @@ func viewOf(a *result.Answer, info PageInfo) (*pageView, error) {
 	if len(a.Suspects)+len(a.Unseen)+len(v.Problems) > 0 || a.Verdict != "PASS" { // something is to be done
 		v.Cautions = result.Cautions
 	}
+	v.SuspectsHeading, v.SuspectsRemark = suspectsHeading(a)
 	v.NoSingle, v.None = unexplained(a), noneWeight(a)
 	v.Reworks, v.Likely, v.Readings = reworkViews(a), likelihoodTable(a), ohmsTable(a)
 	if len(v.Suspects)+len(a.Unseen)+len(a.WithoutDrawing) > 0 {

@@ -14,11 +14,10 @@ func suspects(p *page, a *result.Answer) {
 	if a.Unexplained == nil {
 		return
 	}
-	if len(a.Suspects) == 0 || *a.Unexplained > a.Suspects[0].Weight {
-		p.heading("No single fault explains this well")
-		p.item("  ", "Two things may be wrong, or the bench may not be what rig.toml says.")
-	} else {
-		p.heading("Most likely wrong")
+	heading, remark := suspectsHeading(a)
+	p.heading(heading)
+	if remark != "" {
+		p.item("  ", remark)
 	}
 	for i, s := range a.Suspects {
 		mark := fmt.Sprintf("  %d. ", i+1)
@@ -31,6 +30,24 @@ func suspects(p *page, a *result.Answer) {
 		p.item("  -  ", fmt.Sprintf("None of these, weight %s.", fixed(*a.Unexplained, 2)))
 		p.item("  ", "Weights add up to 1 over all faults looked at; small ones are left out. To take a reading: "+lower(result.OhmCaution)+"; then check again with --ohms.")
 	}
+}
+
+// suspectsHeading heads the suspects, with a remark where there is one. Where nothing
+// comes through, the takes can't tell a broken unit from a cable left out.
+func suspectsHeading(a *result.Answer) (heading, remark string) {
+	switch {
+	case len(a.Suspects) > 0 && silent(a.Suspects[0]):
+		return "Most likely wrong", "Next to nothing came through. A cable left out, the wrong channel, or a tone that was not played looks the same: look there first."
+	case unexplained(a):
+		return "No single fault explains this well", "Two things may be wrong, or the bench may not be what rig.toml says."
+	}
+	return "Most likely wrong", ""
+}
+
+// silent reports whether a suspect lets nothing through.
+func silent(s result.Suspect) bool {
+	loss, known := s.Predicted["loss_db"]
+	return known && !loss.OK()
 }
 
 // suspectName is the fault, and how far it is off where that is an estimate of one

@@ -140,7 +140,8 @@ type Confirm struct {
 	Joined    []string `json:"joined"`    // pins to join meanwhile
 	GoodOhms  Number   `json:"good_ohms"` // null for an open circuit
 	FaultOhms Number   `json:"fault_ohms"`
-	NextOhms  *Number  `json:"next_ohms,omitempty"` // with the next suspect
+	NextOhms  *Number  `json:"next_ohms,omitempty"` // with Next
+	Next      string   `json:"next,omitempty"`      // the next of the group, or else the next suspect
 	How       string   `json:"how"`
 }
 
