@@ -92,7 +92,7 @@ func pathHint(err error) string {
 	case errors.Is(err, fs.ErrNotExist):
 		return "look at the spelling of the path"
 	case errors.Is(err, fs.ErrPermission):
-		return "make the file readable for you, or copy it to where it is"
+		return "see that you may read and write there, or choose another place"
 	case errors.Is(err, fs.ErrExist):
 		return "choose another name, or remove what is there"
 	}

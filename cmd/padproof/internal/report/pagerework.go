@@ -37,6 +37,9 @@ func reworkViews(a *result.Answer) []reworkView {
 
 func foretoldPhrase(field string, f result.ForetoldDB) phrase {
 	places := decimals(f.U)
+	if !f.U.OK() {
+		return phrase{words("about "), figure(field+"/loss", f.Loss, fixed(f.Loss, 2)), words(" dB")}
+	}
 	return phrase{figure(field+"/loss", f.Loss, fixed(f.Loss, places)), words(" dB ± "), figure(field+"/u", f.U, doubt(f.U, places)), words(" dB")}
 }
 

@@ -56,6 +56,9 @@ func suspectName(s result.Suspect) string {
 	if strings.Contains(s.Fault, " or ") || s.ByPercent == nil || s.ByPercentU == nil || !s.ByPercent.OK() || !s.ByPercentU.OK() {
 		return s.Fault
 	}
+	if strings.Contains(s.Fault, " drifted ") { // the fault's name has the amount
+		return fmt.Sprintf("%s (± %s %%)", s.Fault, toDigits(float64(*s.ByPercentU), 2))
+	}
 	return fmt.Sprintf("%s (%s %% ± %s %%)", s.Fault, withSign(*s.ByPercent), toDigits(float64(*s.ByPercentU), 2))
 }
 
