@@ -11,18 +11,43 @@ import (
 	"padproof/compare"
 )
 
-// limitsOf are all limits of an answer, as text.
-func limitsOf(a *result.Answer) string {
+// AlikeDB is how far the computed losses of one drawing may lie apart from take to
+// take: they are computed at the tone as it was recorded, which no two takes hold
+// alike to the last digit. The check of one unit lets a tone that differs between
+// its takes change the designed loss by as much.
+const AlikeDB = 0.01
+
+// limits are all that an answer's checks are held against.
+type limits struct {
+	lossLowDB, lossHighDB, drawnDB float64 // NaN where there is none
+	others                         string
+}
+
+func limitsOf(a *result.Answer) limits {
+	l := limits{lossLowDB: math.NaN(), lossHighDB: math.NaN(), drawnDB: math.NaN()}
 	var b strings.Builder
 	for _, c := range a.Checks {
-		if c.Low.OK() || c.High.OK() {
+		switch {
+		case c.Name == "loss":
+			l.lossLowDB, l.lossHighDB, l.drawnDB = float64(c.Low), float64(c.High), float64(c.Expected)
+		case c.Low.OK() || c.High.OK():
 			fmt.Fprintf(&b, "%s %.9g %.9g;", c.Name, float64(c.Low), float64(c.High))
 		}
-		if c.Name == "loss" {
-			fmt.Fprintf(&b, "drawn %.9g;", float64(c.Expected))
-		}
 	}
-	return b.String()
+	l.others = b.String()
+	return l
+}
+
+// alike reports whether two sets of limits are those of one drawing.
+func (l limits) alike(m limits) bool {
+	return l.others == m.others && AlikeLoss(l.lossLowDB, m.lossLowDB) && AlikeLoss(l.lossHighDB, m.lossHighDB) && AlikeLoss(l.drawnDB, m.drawnDB)
+}
+
+// AlikeLoss reports whether two computed losses, or limits about them, are those of
+// one drawing, to within [AlikeDB]. One that is not there (NaN, or infinite) is like
+// another that is not there.
+func AlikeLoss(a, b float64) bool {
+	return a == b || math.IsNaN(a) && math.IsNaN(b) || math.Abs(a-b) <= AlikeDB
 }
 
 // add takes a check of one unit in.

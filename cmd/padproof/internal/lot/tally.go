@@ -19,7 +19,7 @@ type Tally struct {
 // A group is the units of one drawing and one set of limits.
 type group struct {
 	pad, rig string
-	limits   string // all limits, as text: what tells groups of one pad apart
+	limits   limits // what tells groups of one pad apart
 	rows     []int  // of the lot
 	figures  []*figure
 	first    *unit.Unit // the sheets are its
@@ -120,11 +120,11 @@ func reasonOf(a *result.Answer) string {
 
 // groupOf finds the group of an answer, or begins it.
 func (t *Tally) groupOf(a *result.Answer, u *unit.Unit) (int, *group) {
-	limits := limitsOf(a)
-	i := slices.IndexFunc(t.groups, func(g *group) bool { return g.pad == a.Pad && g.rig == a.Rig && g.limits == limits })
+	own := limitsOf(a)
+	i := slices.IndexFunc(t.groups, func(g *group) bool { return g.pad == a.Pad && g.rig == a.Rig && g.limits.alike(own) })
 	if i < 0 {
 		i = len(t.groups)
-		t.groups = append(t.groups, &group{pad: a.Pad, rig: a.Rig, limits: limits, first: u})
+		t.groups = append(t.groups, &group{pad: a.Pad, rig: a.Rig, limits: own, first: u})
 	}
 	return i, t.groups[i]
 }

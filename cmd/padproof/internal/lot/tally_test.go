@@ -57,3 +57,30 @@ func TestLotOfOddFigures(t *testing.T) {
 		})
 	}
 }
+
+// Units whose takes hold the tone a little differently are still of one drawing,
+// though its loss is computed at their own tone; those of another drawing of the
+// same name are not.
+func TestLotOfOneDrawing(t *testing.T) {
+	for _, c := range []struct {
+		apartDB float64
+		want    int
+	}{{0, 1}, {1e-14, 1}, {3e-5, 1}, {0.009, 1}, {0.02, 2}, {math.NaN(), 2}} {
+		tally := NewTally("tones")
+		for i, apartDB := range []float64{0, c.apartDB, 0} {
+			o := outcome(fmt.Sprint(i), "PASS", 14, 0.05)
+			loss := &o.Answer.Checks[0]
+			loss.Expected += result.Number(apartDB)
+			loss.Low += result.Number(apartDB)
+			loss.High += result.Number(apartDB)
+			tally.Add(o, fault)
+		}
+		l, err := tally.Lot()
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(l.Drawings) != c.want {
+			t.Errorf("losses drawn %g dB apart: %d drawings, want %d", c.apartDB, len(l.Drawings), c.want)
+		}
+	}
+}

@@ -135,7 +135,7 @@ func (m *measured) add(o lot.Outcome) {
 		m.fail(o.Unit.Folder, where+" is the recording of "+m.takes[key]+" once more", "record it anew, with everything unplugged in between")
 	case len(m.data.Readings) == 0:
 		m.data.Limit, m.pad = limit, o.Answer.Pad
-	case limit != m.data.Limit || m.pad != o.Answer.Pad:
+	case !lot.AlikeLoss(limit.Low, m.data.Limit.Low) || !lot.AlikeLoss(limit.High, m.data.Limit.High) || m.pad != o.Answer.Pad:
 		m.fail(o.Unit.Folder, where+" has another drawing or other limits than the first", "a study is of units of one drawing")
 	}
 	m.takes[key] = where
