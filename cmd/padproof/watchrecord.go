@@ -12,7 +12,9 @@ import (
 
 	"padproof/cmd/padproof/internal/ledger"
 	"padproof/cmd/padproof/internal/result"
+	"padproof/cmd/padproof/internal/sheet"
 	"padproof/cmd/padproof/internal/unit"
+	"padproof/compare"
 )
 
 // A book is the ledger as watch uses it.
@@ -167,10 +169,17 @@ func findRecord(ctx context.Context, b book, p pending, takes func() map[string]
 }
 
 // madeOf reports whether a record was made of such takes, by role, and of the
-// unit's own sheets.
+// unit's own sheets, and stands here: a PASS of check, which asks for no rig check,
+// does not where the bench's sheet asks for one.
 func madeOf(r ledger.Record, own map[string]string, p pending) bool {
-	var a struct{ Captures []result.Capture }
+	var a struct {
+		Captures []result.Capture
+		RigCheck *result.RigHeld `json:"rig_check"`
+	}
 	if json.Unmarshal(r.Answer, &a) != nil {
+		return false
+	}
+	if r.Verdict == string(compare.Pass) && a.RigCheck == nil && asksForRigCheck(r) {
 		return false
 	}
 	for role, hash := range own {
@@ -186,6 +195,19 @@ func madeOf(r ledger.Record, own map[string]string, p pending) bool {
 		}
 	}
 	return true
+}
+
+// asksForRigCheck reports whether the bench's sheet, as a record keeps it, lets no
+// unit pass without a rig check.
+func asksForRigCheck(r ledger.Record) bool {
+	for _, f := range r.Files {
+		if f.Role != "rig" {
+			continue
+		}
+		rig, err := sheet.ParseRig(f.File, []byte(f.Text))
+		return err == nil && rig.Reference != nil && rig.Reference.Required
+	}
+	return false
 }
 
 // isOwn reports whether a file is the unit's own rather than shared.
