@@ -2,6 +2,7 @@ package main
 
 import (
 	"cmp"
+	"fmt"
 	"runtime"
 	"strings"
 	"time"
@@ -10,6 +11,7 @@ import (
 
 	"padproof/cmd/padproof/internal/ledger"
 	"padproof/cmd/padproof/internal/nearest"
+	"padproof/cmd/padproof/internal/result"
 	"padproof/cmd/padproof/internal/unit"
 )
 
@@ -100,7 +102,7 @@ func (f *watchFlags) check(cmd *cobra.Command) error {
 	case f.settle < least || f.settle > most:
 		return usageError(cmd, "--settle wants %v to %v, not %v", least, most, f.settle)
 	case cmd.Flags().Changed("reports") && !isFolder(f.reports):
-		return usageError(cmd, "--reports names a folder that is there; %q is none", f.reports)
+		return &result.Error{Text: fmt.Sprintf("--reports names a folder that is there; %q is none", f.reports), Hint: "make it first, or name another"}
 	}
 	for i, role := range f.expect {
 		known, ok := unit.RoleOf(strings.TrimSpace(role))

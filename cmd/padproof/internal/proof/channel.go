@@ -20,7 +20,7 @@ const (
 func (t *take) pickChannel(asked int, atHz []float64, matchDB float64) error {
 	switch {
 	case asked > t.facts.Channels:
-		return &result.Error{File: t.path, Text: fmt.Sprintf("there is no channel %d among %d", asked, t.facts.Channels), Hint: "--channel counts from 1"}
+		return &result.Error{File: t.path, Text: fmt.Sprintf("there is no channel %d among %d", asked, t.facts.Channels), Hint: "name one that is there, with --channel, or in lot.toml where that names the channels; they count from 1"}
 	case asked > 0:
 		t.use(asked)
 		return nil
