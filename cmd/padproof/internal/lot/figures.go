@@ -18,7 +18,7 @@ const rules = lotstat.WesternElectric
 // named in the warnings, and cost the lot nothing else.
 func (t *Tally) Lot() (*result.Lot, error) {
 	lot := t.lot
-	lot.Warnings = slices.Clip(lot.Warnings)
+	lot.Warnings = append(slices.Clip(lot.Warnings), t.copies()...)
 	yield, err := lotstat.YieldOf(lot.Passed, lot.Units, compare.Coverage)
 	if err != nil {
 		return nil, err

@@ -2,6 +2,7 @@ package lot
 
 import (
 	"errors"
+	"fmt"
 	"slices"
 	"strings"
 
@@ -14,6 +15,9 @@ import (
 type Tally struct {
 	lot    result.Lot
 	groups []*group
+
+	through map[string][]string // whose a recording through the pad is, by hash and channel
+	copied  []string            // the keys of those that more than one unit has
 }
 
 // A group is the units of one drawing and one set of limits.
@@ -38,7 +42,7 @@ type figure struct {
 
 // NewTally begins the tally of a lot by its name.
 func NewTally(name string) *Tally {
-	return &Tally{lot: result.Lot{Schema: result.LotSchema, Lot: name, Drawings: []result.LotDrawing{}, Rows: []result.LotRow{}, Warnings: []string{}}}
+	return &Tally{through: map[string][]string{}, lot: result.Lot{Schema: result.LotSchema, Lot: name, Drawings: []result.LotDrawing{}, Rows: []result.LotRow{}, Warnings: []string{}}}
 }
 
 // Add takes in what became of a unit and returns its row. describe turns an error
@@ -89,6 +93,7 @@ func (t *Tally) fill(row *result.LotRow, o Outcome) {
 			row.Problems = append(row.Problems, take.Role+": "+p.Problem)
 		}
 	}
+	t.keepCopies(a)
 	n, g := t.groupOf(a, o.Unit)
 	row.Drawing = n
 	g.rows = append(g.rows, len(t.lot.Rows))
@@ -116,6 +121,37 @@ func reasonOf(a *result.Answer) string {
 		}
 	}
 	return strings.Join(reasons, "; ")
+}
+
+// keepCopies enters whose recording through the pad a unit's is.
+func (t *Tally) keepCopies(a *result.Answer) {
+	for _, c := range a.Captures {
+		if (c.Role != unit.After && c.Role != unit.Both) || c.SHA256 == "" {
+			continue
+		}
+		key := fmt.Sprint(c.SHA256, " ", c.Channel)
+		units := t.through[key]
+		if len(units) == 1 {
+			t.copied = append(t.copied, key)
+		}
+		t.through[key] = append(units, a.Unit)
+	}
+}
+
+// copies says which units share one recording through the pad: all but one of them
+// were never recorded. Which, no recording can tell.
+func (t *Tally) copies() []string {
+	const most = 5
+	var notes []string
+	for _, key := range t.copied {
+		units := t.through[key]
+		named := strings.Join(units[:min(most, len(units))], ", ")
+		if more := len(units) - most; more > 0 {
+			named += fmt.Sprintf(" and %d more", more)
+		}
+		notes = append(notes, fmt.Sprintf("one recording through the pad stands for %d units, %s: record each anew", len(units), named))
+	}
+	return notes
 }
 
 // groupOf finds the group of an answer, or begins it.

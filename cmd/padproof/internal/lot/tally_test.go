@@ -84,3 +84,34 @@ func TestLotOfOneDrawing(t *testing.T) {
 		}
 	}
 }
+
+// A recording that stands for more than one unit is noted, once; units
+// in the channels of one take, and shared takes, are not.
+func TestLotOfCopies(t *testing.T) {
+	after := func(hash string, channel int) []result.Capture {
+		return []result.Capture{{Role: "before", SHA256: "shared", Channel: 1}, {Role: "after", SHA256: hash, Channel: channel}}
+	}
+	for name, c := range map[string]struct {
+		takes [][]result.Capture
+		want  int
+	}{
+		"own":      {[][]result.Capture{after("a", 1), after("b", 1), after("c", 1)}, 0},
+		"channels": {[][]result.Capture{after("a", 1), after("a", 2), after("a", 3)}, 0},
+		"no hash":  {[][]result.Capture{after("", 1), after("", 1)}, 0},
+		"copied":   {[][]result.Capture{after("a", 1), after("b", 1), after("a", 1), after("a", 1)}, 1},
+	} {
+		tally := NewTally("copies")
+		for i, takes := range c.takes {
+			o := outcome(fmt.Sprint("041", i), "PASS", 14, 0.05)
+			o.Answer.Captures = takes
+			tally.Add(o, fault)
+		}
+		l, err := tally.Lot()
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(l.Warnings) != c.want {
+			t.Errorf("%s: %d notes, want %d: %q", name, len(l.Warnings), c.want, l.Warnings)
+		}
+	}
+}
