@@ -80,7 +80,7 @@ func (f *watchFlags) addTo(cmd *cobra.Command) {
 	flags.DurationVar(&f.settle, "settle", 2*time.Second, "a file that has not changed for so long is done")
 	flags.StringSliceVar(&f.expect, "expect", nil, "takes that a unit is waited for until it has them, such as pad-noise,legs")
 	flags.BoolVar(&f.once, "once", false, "check what is there now, then end")
-	flags.StringVar(&f.reports, "reports", "", "write the page of each unit, SERIAL.html, into this folder")
+	flags.StringVar(&f.reports, "reports", "", "write the page of each unit, SERIAL.html, into this folder, which must be there")
 	flags.StringVar(&f.pad, "pad", "", "the drawing of all units, in place of their own")
 	flags.StringVar(&f.rig, "rig", "", "the bench of all units, in place of their own")
 	flags.IntVar(&f.workers, "workers", runtime.NumCPU(), "units checked at a time")
