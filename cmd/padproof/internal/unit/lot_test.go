@@ -97,6 +97,31 @@ func TestFlatErrors(t *testing.T) {
 	}
 }
 
+// Takes of one unit beside the folders of others leave none of them out.
+func TestMixedLot(t *testing.T) {
+	lay(t, "lot/before.wav", "lot/0419.after.wav", "lot/0420.after.wav", "lot/0417/after.wav", "lot/0418/both.wav", "lot/0420/after.wav", "lot/pictures/")
+	lot, err := OpenLot("lot", nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var got []string
+	for _, u := range lot.Units {
+		got = append(got, u.Serial)
+	}
+	if want := "0417 0418 0419 0420"; strings.Join(got, " ") != want {
+		t.Fatalf("units %q, want %s", got, want)
+	}
+	if shown := shown(lot.Units[0]); !strings.Contains(shown, "before=lot/before.wav*") {
+		t.Errorf("0417: %s, want the shared before", shown)
+	}
+	if err := lot.Units[3].Ready(); err == nil || !strings.Contains(err.Error(), "two units of one serial") {
+		t.Errorf("0420, there both ways: %v", err)
+	}
+	if w := strings.Join(lot.Warnings, "; "); !strings.Contains(w, "pictures") {
+		t.Errorf("warnings %q, want one of the folder pictures", w)
+	}
+}
+
 // One unit with two files for a role spoils no other.
 func TestFlatTwoFiles(t *testing.T) {
 	lay(t, "lot/before.wav", "lot/0417.after.wav", "lot/0417.After.wav", "lot/0418.after.wav")

@@ -14,7 +14,7 @@ type Lot struct {
 }
 
 // OpenLot finds the units of a lot folder: folders, one a unit; takes named
-// SERIAL.ROLE.wav; or, where channels names a unit for each channel (from 1, as
+// SERIAL.ROLE.wav, or both at once; or, where channels names a unit for each channel (from 1, as
 // lot.toml does), one set of takes whose channels are units. A unit that lacks
 // something is among them: ask [Unit.Ready]. It is an error, an [*Error], if the
 // folder cannot be read or holds no lot.
@@ -30,8 +30,7 @@ func OpenLot(folder string, channels map[int]string) (*Lot, error) {
 		return nil, &Error{File: folder, Text: "lot.toml names a unit for each channel, but the takes here are not one set of before.wav and after.wav",
 			Hint: "take [channels] out of lot.toml, or put the takes of all channels into this folder"}
 	case layout == FlatLot:
-		units, warnings, err := Flat(folder)
-		return &Lot{layout, units, warnings}, err
+		return mixedLot(folder)
 	case layout == FolderLot:
 		return folderLot(folder)
 	case layout == OneUnit:
@@ -63,6 +62,36 @@ func folderLot(folder string) (*Lot, error) {
 	if len(empty) > 0 {
 		lot.Warnings = append(lot.Warnings, "no takes in the folders "+strings.Join(empty, ", ")+": they were left out")
 	}
+	return lot, nil
+}
+
+// mixedLot finds the units of takes named SERIAL.ROLE.wav, and those of folders
+// beside them. One that is there both ways is so once, and cannot be checked: which
+// takes are its own is not known.
+func mixedLot(folder string) (*Lot, error) {
+	units, warnings, err := Flat(folder)
+	if err != nil {
+		return nil, err
+	}
+	lot, err := folderLot(folder)
+	if err != nil {
+		return nil, err
+	}
+	lot.Layout, lot.Warnings = FlatLot, append(warnings, lot.Warnings...)
+	flat := map[string]*Unit{}
+	for _, u := range units {
+		flat[strings.ToLower(u.Serial)] = u
+	}
+	for _, u := range lot.Units {
+		if twin := flat[strings.ToLower(u.Serial)]; twin == nil {
+			units = append(units, u)
+		} else {
+			twin.fault = &Error{File: u.Folder, Text: "and the takes " + twin.Serial + ".ROLE.wav are two units of one serial",
+				Hint: "keep one of them here, move or rename the other"}
+		}
+	}
+	slices.SortFunc(units, func(a, b *Unit) int { return CompareSerials(a.Serial, b.Serial) })
+	lot.Units = units
 	return lot, nil
 }
 
