@@ -41,6 +41,11 @@ in the line. The heads of all chains go to stderr: keep them elsewhere, for veri
 }
 
 func runLedgerExport(cmd *cobra.Command, read readFlags, f ledger.Filter, output string) error {
+	if output != "" {
+		if err := checkTablePath(output); err != nil {
+			return err
+		}
+	}
 	ctx, stop := untilInterrupted(cmd)
 	defer stop()
 	l, err := read.open(ctx)

@@ -108,6 +108,11 @@ func runLot(cmd *cobra.Command, folder string, f lotFlags) error {
 	if dir := filepath.Dir(f.csv); f.csv != "" && !isFolder(dir) {
 		return &result.Error{File: f.csv, Text: "there is no folder " + dir, Hint: "make it first, or name another"}
 	}
+	if f.csv != "" {
+		if err := checkTablePath(f.csv); err != nil {
+			return err
+		}
+	}
 	units, tally, err := f.open(folder)
 	if err != nil {
 		return err
