@@ -56,7 +56,7 @@ func folderLot(folder string) (*Lot, error) {
 			empty = append(empty, name)
 			continue
 		}
-		lot.Units = append(lot.Units, openFaulty(path, name))
+		lot.Units = append(lot.Units, openFaulty(path, name, in, s))
 	}
 	slices.SortFunc(lot.Units, func(a, b *Unit) int { return CompareSerials(a.Serial, b.Serial) })
 	if len(empty) > 0 {
@@ -95,10 +95,16 @@ func mixedLot(folder string) (*Lot, error) {
 	return lot, nil
 }
 
-// openFaulty opens a unit's folder; what keeps it from being opened is the
-// unit's fault.
-func openFaulty(path, name string) *Unit {
-	u, err := Open(path)
+// openFaulty opens a unit's folder, which holds own, in a folder that was looked
+// into once for all units; what keeps it from being opened is the unit's fault.
+func openFaulty(path, name string, own, shared *shelf) *Unit {
+	var u *Unit
+	var err error
+	if own != nil {
+		u, err = openWith(own, shared)
+	} else {
+		u, err = Open(path)
+	}
 	if err == nil {
 		return u
 	}

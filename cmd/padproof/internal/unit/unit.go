@@ -40,13 +40,22 @@ func Open(folder string) (*Unit, error) {
 	if err != nil {
 		return nil, err
 	}
+	return openWith(own, nil)
+}
+
+// openWith finds the files of the unit whose folder was looked into. shared is the
+// folder above where that was looked into as well, or nil.
+func openWith(own, shared *shelf) (*Unit, error) {
+	folder := own.folder
 	u := newUnit(serialOf(folder), folder)
 	u.looked = []string{folder}
 	u.takes(own, "", false)
 	u.sheets(own, false)
 	u.readings(own, "")
 	u.warn(own)
-	if above := parent(folder); above != "" {
+	if above := parent(folder); shared != nil && above == shared.folder {
+		u.inheritFrom(shared)
+	} else if above != "" {
 		u.inherit(above)
 	}
 	u.Warnings = append(u.Warnings, own.oddSheets(append(u.lacking(), u.lackingOhms()...))...)
@@ -155,7 +164,12 @@ func (u *Unit) inherit(above string) {
 		u.looked = append(u.looked, above+" (which cannot be read)")
 		return
 	}
-	u.looked = append(u.looked, above)
+	u.inheritFrom(s)
+}
+
+// inheritFrom adds what a folder above shares that was looked into.
+func (u *Unit) inheritFrom(s *shelf) {
+	u.looked = append(u.looked, s.folder)
 	u.takes(s, "", true)
 	u.sheets(s, true)
 	u.dropBefore()
