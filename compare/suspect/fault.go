@@ -1,6 +1,8 @@
 package suspect
 
 import (
+	"math"
+
 	"padproof/compare/network"
 )
 
@@ -23,11 +25,8 @@ type Fault struct {
 
 // String returns the fault as people read it: "R3 open", "R3 drifted +12 %", "source not as stated".
 func (f Fault) String() string {
-	switch f.End {
-	case SourceEnd:
-		return "source not as stated"
-	case LoadEnd:
-		return "load not as stated"
+	if f.End != NoEnd {
+		return network.EndFault{Load: f.End == LoadEnd, Ohms: math.NaN()}.String()
 	}
 	return f.Fault.String()
 }
