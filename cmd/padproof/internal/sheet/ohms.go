@@ -94,26 +94,8 @@ func (o *Ohms) Errorf(r Reading, hint, format string, args ...any) *Error {
 
 // readings reads the list of readings, those that can be read.
 func (t *table) readings() []Reading {
-	v, there := t.ask("readings")
-	items, fits := v.([]any)
-	switch {
-	case there && !fits:
-		t.fail("readings", "is "+kindOf(v)+", not a list", "write readings = [ "+readingExample+", ... ]")
-		return nil
-	case len(items) > mostReadings:
-		t.fail("readings", fmt.Sprintf("has %d readings", len(items)), fmt.Sprintf("a unit can have up to %d", mostReadings))
-		return nil
-	}
 	var all []Reading
-	for i, of := range items {
-		path := item("readings", i)
-		fields, fits := of.(map[string]any)
-		if !fits {
-			t.doc.fail(path, fmt.Sprintf("reading %d is %s, not a reading", i+1, kindOf(of)), "write "+readingExample)
-			continue
-		}
-		rt := t.doc.table(path, fields)
-		rt.label = fmt.Sprintf("reading %d", i+1)
+	for _, rt := range t.listed("reading", readingExample, "a unit", mostReadings) {
 		all = append(all, rt.reading())
 	}
 	return all

@@ -47,28 +47,10 @@ func (p Part) Placed() bool { return p.Between != [2]string{} }
 
 // parts reads the list of parts, those that can be read.
 func (t *table) parts() []Part {
-	v, there := t.ask("parts")
-	items, fits := v.([]any)
-	switch {
-	case there && !fits:
-		t.fail("parts", "is "+kindOf(v)+", not a list", `write parts = [ { ref = "R1", value = "560" }, ... ]`)
-		return nil
-	case len(items) > MaxParts:
-		t.fail("parts", fmt.Sprintf("has %d parts", len(items)), fmt.Sprintf("a pad can have up to %d", MaxParts))
-		return nil
-	}
 	var parts []Part
-	for i, of := range items {
-		path := item("parts", i)
-		values, fits := of.(map[string]any)
-		if !fits {
-			t.doc.fail(path, fmt.Sprintf("part %d is %s, not a part", i+1, kindOf(of)), `write { ref = "R1", value = "560" }`)
-			continue
-		}
-		pt := t.doc.table(path, values)
-		pt.label = fmt.Sprintf("part %d", i+1)
+	for _, pt := range t.listed("part", `{ ref = "R1", value = "560" }`, "a pad", MaxParts) {
 		part := pt.part()
-		part.Line = t.doc.lines[path]
+		part.Line = t.doc.lines[pt.path]
 		parts = append(parts, part)
 	}
 	return parts

@@ -37,6 +37,36 @@ func (t *table) section(key string) (*table, bool) {
 	return t.doc.table(join(t.path, key), values), there
 }
 
+// listed returns the tables of the list whose key is a noun in the plural, "parts" of
+// "part"; what is no table is a fault and left out. example is how one is written,
+// owner what may have up to most of them.
+func (t *table) listed(noun, example, owner string, most int) []*table {
+	key := noun + "s"
+	v, there := t.ask(key)
+	items, fits := v.([]any)
+	switch {
+	case there && !fits:
+		t.fail(key, "is "+kindOf(v)+", not a list", fmt.Sprintf("write %s = [ %s, ... ]", key, example))
+		return nil
+	case len(items) > most:
+		t.fail(key, fmt.Sprintf("has %d %s", len(items), key), fmt.Sprintf("%s can have up to %d", owner, most))
+		return nil
+	}
+	var all []*table
+	for i, of := range items {
+		path, label := item(key, i), fmt.Sprintf("%s %d", noun, i+1)
+		values, fits := of.(map[string]any)
+		if !fits {
+			t.doc.fail(path, fmt.Sprintf("%s is %s, not a %s", label, kindOf(of), noun), "write "+example)
+			continue
+		}
+		one := t.doc.table(path, values)
+		one.label = label
+		all = append(all, one)
+	}
+	return all
+}
+
 // ask returns the value of a key and marks the key as known.
 func (t *table) ask(key string) (any, bool) {
 	t.asked = append(t.asked, key)
