@@ -351,9 +351,18 @@ func TestPageHoldsAnyName(t *testing.T) {
 		a.Checks[0].Reason, a.Captures[1].Problems[0].Text = name, name
 		return a
 	}
-	want := shapeOf(parsed(t, pageOf(t, named("plain"))))
+	// The heading; unit, pad and rig; the fault and its part; three problems of one
+	// file, twice more among the takes; a sheet; what the bench cannot see.
+	holdsAnyName(t, 13, func(name string) string { return pageOf(t, named(name)) })
+}
+
+// holdsAnyName demands that no nasty name changes the elements of a page, and that
+// each stands in so many elements that isolate it.
+func holdsAnyName(t *testing.T, wantIsolated int, pageWith func(name string) string) {
+	t.Helper()
+	want := shapeOf(parsed(t, pageWith("plain")))
 	for _, name := range nasty {
-		page := pageOf(t, named(name))
+		page := pageWith(name)
 		if shapeOf(parsed(t, page)) != want {
 			t.Errorf("%q changes the page's elements", name)
 		}
@@ -366,10 +375,8 @@ func TestPageHoldsAnyName(t *testing.T) {
 				isolated++
 			}
 		}
-		// The heading; unit, pad and rig; the fault and its part; three problems of one
-		// file, twice more among the takes; a sheet; what the bench cannot see.
-		if isolated != 13 {
-			t.Errorf("%q stands in %d elements that isolate it, want 13", name, isolated)
+		if isolated != wantIsolated {
+			t.Errorf("%q stands in %d elements that isolate it, want %d", name, isolated, wantIsolated)
 		}
 	}
 }
